@@ -1,0 +1,7 @@
+export * from './act';
+export * from './bay';
+export * from './change';
+export * from './node';
+export * from './people';
+export * from './site';
+export * from './system';
