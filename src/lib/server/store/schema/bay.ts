@@ -96,6 +96,9 @@ export const history = mysqlTable(
 		decidedAtMs: atMs('decided_at_ms').notNull(),
 		/** Event time of what showed that it never happened (an echo found later); null = effective. */
 		voidedAtMs: atMs('voided_at_ms'),
+		/** Stamps of the batches that wrote the entry and that voided it (compare node_snapshot.taken_at_ms). */
+		recordedAtMs: atMs('recorded_at_ms').notNull(),
+		voidRecordedAtMs: atMs('void_recorded_at_ms'),
 		/** The feed's event that told this entry. */
 		eventId: atMs('event_id')
 	},

@@ -1,4 +1,5 @@
 import {
+	bigint,
 	boolean,
 	double,
 	float,
@@ -56,6 +57,8 @@ export const node = mysqlTable(
 		/** The reporting habit in force as last heard or assumed. */
 		periodS: int('period_s').notNull().default(60),
 		deltaMg: int('delta_mg').notNull().default(8),
+		/** The habit to go back to after learning or proving. */
+		usualPeriodS: int('usual_period_s').notNull().default(60),
 		createdAtMs: atMs('created_at_ms').notNull(),
 		placedAtMs: atMs('placed_at_ms'),
 		withdrawnAtMs: atMs('withdrawn_at_ms')
@@ -68,8 +71,37 @@ export const nodeFast = mysqlTable('node_fast', {
 	nodeId: int('node_id')
 		.primaryKey()
 		.references(() => node.id),
+	/** Arrival of the newest message. */
 	heardAtMs: atMs('heard_at_ms').notNull(),
+	/** Event time and order of the newest row that detection has taken; null before the first. */
+	rowAtMs: atMs('row_at_ms'),
+	boot: int('boot', { unsigned: true }),
+	seq: int('seq', { unsigned: true }),
+	row: tinyint('row', { unsigned: true }),
+	/** Event time of the oldest stored row that detection has yet to take; null = none waits. */
+	waitingFromMs: atMs('waiting_from_ms'),
+	/** Event time of the node's last decision (history entry or act); rows at or before it are late. */
+	decidedAtMs: atMs('decided_at_ms').notNull().default(0),
+	/** Newest row by event time, for lists: counts, 0.1 °C, and the last that came of the others. */
+	lastAtMs: atMs('last_at_ms'),
+	x: counts24('x'),
+	y: counts24('y'),
+	z: counts24('z'),
+	polarity: tinyint('polarity'),
+	tempDc: smallint('temp_dc'),
+	batteryMv: smallint('battery_mv', { unsigned: true }),
+	rssiDbm: smallint('rssi_dbm'),
+	/** Bit 0 clock off, 1 newest message unsigned, 2 fast reporting. */
+	marks: tinyint('marks', { unsigned: true }).notNull().default(0),
 	state: bytes('state', { length: 300 }).notNull()
+});
+
+/** The least (arrival - sent) of each of the last 24 hours, binary (protocol, server step 4). */
+export const nodeClock = mysqlTable('node_clock', {
+	nodeId: int('node_id')
+		.primaryKey()
+		.references(() => node.id),
+	skews: bytes('skews', { length: 240 }).notNull()
 });
 
 /** Written only when it changes: learning window, slopes, pass heights. Under 4 kB. */
@@ -80,7 +112,7 @@ export const nodeSlow = mysqlTable('node_slow', {
 	state: bytes('state', { length: 4096 }).notNull()
 });
 
-/** Fast and slow state of a node as of an event time; kept for 20 min, at most 5 min apart. */
+/** Fast and slow state of a node as of an event time; kept for 20 min, at most 5 min apart, and one a UTC day for 15 days. */
 export const nodeSnapshot = mysqlTable(
 	'node_snapshot',
 	{
@@ -88,6 +120,15 @@ export const nodeSnapshot = mysqlTable(
 			.notNull()
 			.references(() => node.id),
 		atMs: atMs('at_ms').notNull(),
+		/** The batch's stamp: a replay from here drops what history recorded after it. */
+		takenAtMs: atMs('taken_at_ms').notNull(),
+		daily: boolean('daily').notNull().default(false),
+		/** As in node_fast, at that moment. */
+		rowAtMs: atMs('row_at_ms'),
+		boot: int('boot', { unsigned: true }),
+		seq: int('seq', { unsigned: true }),
+		row: tinyint('row', { unsigned: true }),
+		decidedAtMs: atMs('decided_at_ms').notNull().default(0),
 		fast: bytes('fast', { length: 300 }).notNull(),
 		slow: bytes('slow', { length: 4096 })
 	},
@@ -129,10 +170,13 @@ export const reference = mysqlTable(
 export const received = mysqlTable(
 	'received',
 	{
-		nodeId: int('node_id').notNull(),
+		nodeId: int('node_id')
+			.notNull()
+			.references(() => node.id),
 		boot: atMs('boot').notNull(),
 		block: int('block', { unsigned: true }).notNull(),
-		bits: atMs('bits').notNull()
+		/** 64 flags: unsigned, and bigint in TypeScript, because a number holds only 53. */
+		bits: bigint('bits', { mode: 'bigint', unsigned: true }).notNull()
 	},
 	(t) => [primaryKey({ columns: [t.nodeId, t.boot, t.block] })]
 );
@@ -155,7 +199,7 @@ export const reading = mysqlTable(
 		/** On the first row of a message only. */
 		batteryMv: smallint('battery_mv', { unsigned: true }),
 		rssiDbm: smallint('rssi_dbm'),
-		/** Bit 0 clipped, 1 shifted by clock, 2 clockless, 3 unsigned, 4 older than 14 days (moves no state). */
+		/** Bit 0 clipped, 1 shifted by clock, 2 clockless, 3 unsigned, 4 moves no state (older than 14 days, or a late boot without a clock). */
 		flags: tinyint('flags', { unsigned: true }).notNull().default(0)
 	},
 	(t) => [primaryKey({ columns: [t.nodeId, t.atMs, t.boot, t.seq, t.row] })]
@@ -165,7 +209,9 @@ export const reading = mysqlTable(
 export const readingHour = mysqlTable(
 	'reading_hour',
 	{
-		nodeId: int('node_id').notNull(),
+		nodeId: int('node_id')
+			.notNull()
+			.references(() => node.id),
 		hourMs: atMs('hour_ms').notNull(),
 		n: int('n').notNull(),
 		xSum: double('x_sum').notNull(),
