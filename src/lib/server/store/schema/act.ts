@@ -1,5 +1,7 @@
 import { index, int, mysqlEnum, mysqlTable, text, varchar } from 'drizzle-orm/mysql-core';
+import { bay } from './bay';
 import { atMs } from './columns';
+import { node } from './node';
 import { site } from './site';
 
 export const ACT_KINDS = [
@@ -23,8 +25,8 @@ export const act = mysqlTable(
 		siteId: int('site_id')
 			.notNull()
 			.references(() => site.id),
-		nodeId: int('node_id'),
-		bayId: int('bay_id'),
+		nodeId: int('node_id').references(() => node.id),
+		bayId: int('bay_id').references(() => bay.id),
 		kind: mysqlEnum('kind', ACT_KINDS).notNull(),
 		/** Event time: when the person saw it or from when it holds. */
 		atMs: atMs('at_ms').notNull(),
@@ -53,7 +55,7 @@ export const parameter = mysqlTable(
 		siteId: int('site_id')
 			.notNull()
 			.references(() => site.id),
-		nodeId: int('node_id'),
+		nodeId: int('node_id').references(() => node.id),
 		name: varchar('name', { length: 64 }).notNull(),
 		value: varchar('value', { length: 64 }).notNull(),
 		fromMs: atMs('from_ms').notNull(),

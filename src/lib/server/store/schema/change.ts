@@ -10,6 +10,7 @@ import {
 } from 'drizzle-orm/mysql-core';
 import { BAY_STATES, bay } from './bay';
 import { atMs } from './columns';
+import { node } from './node';
 import { site } from './site';
 
 export const EVENT_TYPES = [
@@ -38,8 +39,8 @@ export const change = mysqlTable(
 			'removed',
 			'site'
 		]).notNull(),
-		bayId: int('bay_id'),
-		nodeId: int('node_id'),
+		bayId: int('bay_id').references(() => bay.id),
+		nodeId: int('node_id').references(() => node.id),
 		recordedAtMs: atMs('recorded_at_ms').notNull()
 	},
 	(t) => [primaryKey({ columns: [t.siteId, t.id] }), index('change_bay').on(t.bayId, t.id)]
