@@ -156,7 +156,18 @@ export interface NodeView {
  *   encodeSlow(group, nodeId): Uint8Array  bit-identically (state is kept in float32 where stored so)
  *   slowRevision(group, nodeId): number    changes only when the slow state did
  *   restore(members, fast[], slow[]): Group
- *   mustWait(group, item, heardToMs): boolean   see DEVELOPERS.md, 'Groups and waiting'
+ *   mustWait(group, item, heardTo: (nodeId: number) => number): boolean
+ *                                          true while the group is active and a bursting neighbour has not been
+ *                                          heard (heardTo = newest event time arrived, queued rows included) up
+ *                                          to item.atMs; the caller waits 2 s of arrival at the most
+ *   lastDecisionAtMs(group): number        0 when none
+ *   isLate(group, item): boolean           must be put in by snapshot and replay: before its node's last row, at or
+ *                                          before a decision it could have changed, or behind a neighbour that a
+ *                                          decision of it could touch. Ask it just before advance().
+ *   setMember(group, member): void         new parameters, period or grace of a node, from the next item on
+ *
+ * Evidence names nodes as `{node:12}`; callers put the bay's code there.
+ * A layout number that restore() does not know throws RangeError: rebuild that node from its readings.
  */
 export interface GroupMember {
 	nodeId: number;
