@@ -73,6 +73,8 @@ export const nodeFast = mysqlTable('node_fast', {
 		.references(() => node.id),
 	/** Arrival of the newest message. */
 	heardAtMs: atMs('heard_at_ms').notNull(),
+	/** The newest boot heard (commands are bound to it); null before the first message. */
+	heardBoot: int('heard_boot', { unsigned: true }),
 	/** Event time and order of the newest row that detection has taken; null before the first. */
 	rowAtMs: atMs('row_at_ms'),
 	boot: int('boot', { unsigned: true }),
