@@ -97,7 +97,7 @@ export const history = mysqlTable(
 		/** Event time of what showed that it never happened (an echo found later); null = effective. */
 		voidedAtMs: atMs('voided_at_ms'),
 		/** Stamps of the batches that wrote the entry and that voided it (compare node_snapshot.taken_at_ms). */
-		recordedAtMs: atMs('recorded_at_ms').notNull(),
+		recordedAtMs: atMs('recorded_at_ms').notNull().default(0),
 		voidRecordedAtMs: atMs('void_recorded_at_ms'),
 		/** The feed's event that told this entry. */
 		eventId: atMs('event_id')

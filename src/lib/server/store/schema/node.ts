@@ -82,8 +82,6 @@ export const nodeFast = mysqlTable('node_fast', {
 	row: tinyint('row', { unsigned: true }),
 	/** Event time of the oldest stored row that detection has yet to take; null = none waits. */
 	waitingFromMs: atMs('waiting_from_ms'),
-	/** Event time of the node's last decision (history entry or act); rows at or before it are late. */
-	decidedAtMs: atMs('decided_at_ms').notNull().default(0),
 	/** Newest row by event time, for lists: counts, 0.1 °C, and the last that came of the others. */
 	lastAtMs: atMs('last_at_ms'),
 	x: counts24('x'),
@@ -130,7 +128,6 @@ export const nodeSnapshot = mysqlTable(
 		boot: int('boot', { unsigned: true }),
 		seq: int('seq', { unsigned: true }),
 		row: tinyint('row', { unsigned: true }),
-		decidedAtMs: atMs('decided_at_ms').notNull().default(0),
 		fast: bytes('fast', { length: 300 }).notNull(),
 		slow: bytes('slow', { length: 4096 })
 	},
