@@ -163,13 +163,37 @@ function fieldProblems(input: Record<string, unknown>): ProfileProblem[] {
 	return problems;
 }
 
+function onlyKnown(profile: SensorProfile): SensorProfile {
+	const figures = Object.fromEntries(FIGURES.map(([field]) => [field, profile[field]]));
+	const capacityByTemp = profile.capacityByTemp.map(({ tempC, share }) => ({ tempC, share }));
+	const { code, name } = profile;
+	return { code, name, ...(figures as Pick<SensorProfile, FigureName>), capacityByTemp };
+}
+
 /** Checks a profile from outside (a form, a file, the store); every problem is named, none thrown. */
 export function parseProfile(value: unknown): ParsedProfile {
 	if (typeof value !== 'object' || value === null)
 		return { ok: false, problems: [{ field: 'code', problem: 'is no profile' }] };
 	const problems = fieldProblems(value as Record<string, unknown>);
 	if (problems.length > 0) return { ok: false, problems };
-	const profile = value as SensorProfile;
+	const profile = onlyKnown(value as SensorProfile);
 	const odd = spanProblems(profile);
 	return odd.length > 0 ? { ok: false, problems: odd } : { ok: true, profile };
+}
+
+/** Share of the cell's capacity to be had at a temperature: straight between the points, level beyond. */
+export function capacityShare(
+	{ capacityByTemp }: Pick<SensorProfile, 'capacityByTemp'>,
+	tempC: number
+): number {
+	let below = capacityByTemp[0];
+	for (const point of capacityByTemp) {
+		if (point.tempC >= tempC) {
+			if (below === undefined || below.tempC >= tempC) return point.share;
+			const along = (tempC - below.tempC) / (point.tempC - below.tempC);
+			return below.share + along * (point.share - below.share);
+		}
+		below = point;
+	}
+	return below?.share ?? 1;
 }
