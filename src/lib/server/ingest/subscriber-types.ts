@@ -1,3 +1,5 @@
+import type { BrokerStats } from '$lib/server/broker/counters';
+
 /** One message as the broker held it, waiting for its receipt. */
 export interface HeldMessage {
 	/** Position in the broker's order; opaque to the pipeline. */
@@ -18,8 +20,26 @@ export interface Subscriber {
 	take(max: number): Promise<HeldMessage[]>;
 	/** Committed (or rejected and kept): the broker may now write the PUBACKs. */
 	settle(messages: readonly HeldMessage[]): void;
-	/** Resolves when the broker took the command; false when not connected. */
+	/** Resolves true when the broker took the command; false when not connected or lost on the way. */
 	publishDown(serial: string, bytes: Uint8Array): Promise<boolean>;
+	/**
+	 * The whole list of nodes that may sign in; kept and told again after every reconnect. Nodes that are
+	 * not in it lose their connection. True when the broker has it. External broker: nothing to do, true.
+	 */
+	replaceDirectory(entries: readonly NodeDirectoryEntry[]): Promise<boolean>;
+	/**
+	 * Changes since: new and re-keyed nodes, withdrawn serials. Call it at least every 10 s while the
+	 * database answers, with empty lists too: each call vouches for the directory for 15 s. Without that an
+	 * unknown serial is told to come again (return code 3) instead of being refused (5).
+	 */
+	updateDirectory(
+		entries: readonly NodeDirectoryEntry[],
+		removed: readonly string[]
+	): Promise<boolean>;
+	/** `false` at once when the database stops answering. */
+	vouchDirectory(current: boolean): Promise<boolean>;
+	/** The embedded broker's counters, at most about 1 s old; null while not connected or with an external broker. */
+	stats(): BrokerStats | null;
 	readonly connected: boolean;
 	onConnected(listener: (connected: boolean) => void): void;
 	/** Forgets what was taken and not settled: it comes again, in order. */

@@ -1,0 +1,66 @@
+import { readFileSync } from 'node:fs';
+import { z } from 'zod';
+import { start } from '$lib/server/broker/start';
+
+/** The broker as a process: settings from the environment, one JSON line with its ports when ready. */
+const port = z.coerce.number().int().min(0).max(65_535);
+const environment = z
+	.object({
+		MQTT_HOST: z.string().min(1).default('127.0.0.1'),
+		MQTT_PORT: port.default(1883),
+		MQTT_TLS_PORT: port.optional(),
+		MQTT_TLS_CERT: z.string().optional(),
+		MQTT_TLS_KEY: z.string().optional(),
+		MQTT_RATE: z.coerce.number().positive().default(200),
+		LODEKEEP_LINK_SECRET: z.string().min(16)
+	})
+	.refine(
+		(env) =>
+			env.MQTT_TLS_PORT === undefined ||
+			(env.MQTT_TLS_CERT !== undefined && env.MQTT_TLS_KEY !== undefined),
+		{ message: 'MQTT_TLS_PORT needs MQTT_TLS_CERT and MQTT_TLS_KEY (paths of PEM files)' }
+	);
+
+function fail(sentence: string): never {
+	process.stderr.write(`${sentence}\n`);
+	process.exit(1);
+}
+
+const parsed = environment.safeParse(process.env);
+if (!parsed.success) {
+	fail(parsed.error.issues.map((issue) => `${issue.path.join('.')}: ${issue.message}`).join('\n'));
+}
+const env = parsed.data;
+const tls =
+	env.MQTT_TLS_PORT === undefined
+		? null
+		: {
+				port: env.MQTT_TLS_PORT,
+				cert: readFileSync(env.MQTT_TLS_CERT ?? '', 'utf8'),
+				key: readFileSync(env.MQTT_TLS_KEY ?? '', 'utf8')
+			};
+const broker = await start({
+	host: env.MQTT_HOST,
+	port: env.MQTT_PORT,
+	tls,
+	ratePerS: env.MQTT_RATE,
+	linkSecret: env.LODEKEEP_LINK_SECRET
+}).catch((error: NodeJS.ErrnoException) =>
+	fail(
+		error.code === 'EADDRINUSE'
+			? `The MQTT port is taken by another program: ${error.message}`
+			: `The broker could not start: ${error.message}`
+	)
+);
+process.stdout.write(
+	`${JSON.stringify({ part: 'broker', port: broker.port, tlsPort: broker.tlsPort })}\n`
+);
+
+let closing = false;
+for (const signal of ['SIGTERM', 'SIGINT'] as const) {
+	process.on(signal, () => {
+		if (closing) return;
+		closing = true;
+		void broker.close().then(() => process.exit(0));
+	});
+}

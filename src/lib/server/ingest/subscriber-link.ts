@@ -1,0 +1,48 @@
+import type { MqttClient } from 'mqtt';
+
+const FIRST_WAIT_MS = 100;
+const LONGEST_WAIT_MS = 5_000;
+
+/** Connection state with its listeners, and MQTT.js' own reconnecting made to back off. */
+export class LinkState {
+	connected = false;
+	readonly #listeners: ((connected: boolean) => void)[] = [];
+
+	onConnected(listener: (connected: boolean) => void): void {
+		this.#listeners.push(listener);
+	}
+
+	set(connected: boolean): void {
+		if (connected === this.connected) return;
+		this.connected = connected;
+		for (const listener of this.#listeners) listener(connected);
+	}
+
+	/** MQTT.js reads the period anew before each try. */
+	backOff(client: MqttClient): void {
+		client.options.reconnectPeriod = FIRST_WAIT_MS;
+		client.on('connect', () => (client.options.reconnectPeriod = FIRST_WAIT_MS));
+		client.on('reconnect', () => {
+			const waited = client.options.reconnectPeriod ?? FIRST_WAIT_MS;
+			client.options.reconnectPeriod = Math.min(waited * 2, LONGEST_WAIT_MS);
+		});
+	}
+}
+
+/** Publishes and tells whether the other end took it; false when not connected or lost on the way. */
+export async function publishTaken(
+	client: MqttClient,
+	state: LinkState,
+	topic: string,
+	payload: Buffer
+): Promise<boolean> {
+	if (!state.connected) return false;
+	return await new Promise<boolean>((resolve) => {
+		const lost = () => resolve(false);
+		client.once('close', lost);
+		client.publish(topic, payload, { qos: 1 }, (error) => {
+			client.removeListener('close', lost);
+			resolve(error === undefined || error === null);
+		});
+	});
+}
