@@ -267,6 +267,10 @@ export const pulse = mysqlTable(
 		afterX: counts24('after_x'),
 		afterY: counts24('after_y'),
 		afterZ: counts24('after_z'),
+		/** Polarity that the film holds afterwards: 1 after SET, pair and power-on, -1 after RESET. */
+		polarityAfter: tinyint('polarity_after').notNull().default(1),
+		/** false: too old, or a late boot without a clock; kept, moves no state. */
+		moving: boolean('moving').notNull().default(true),
 		tempDc: smallint('temp_dc'),
 		batteryMv: smallint('battery_mv', { unsigned: true }),
 		commandId: fixedBytes('command_id', { length: 8 }),
