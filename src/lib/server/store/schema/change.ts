@@ -71,6 +71,7 @@ export const event = mysqlTable(
 	(t) => [
 		primaryKey({ columns: [t.siteId, t.id] }),
 		index('event_bay_at').on(t.bayId, t.atMs),
-		index('event_site_at').on(t.siteId, t.atMs)
+		index('event_site_at').on(t.siteId, t.atMs),
+		index('event_voids').on(t.siteId, t.voids)
 	]
 );

@@ -1,0 +1,1 @@
+CREATE INDEX `event_voids` ON `event` (`site_id`,`voids`);
