@@ -40,6 +40,8 @@ export interface MariadbOptions {
 	cacheMib?: number;
 	/** InnoDB's redo log, MiB; only read when the folder is made or after a clean stop. */
 	redoMib?: number;
+	/** Called as soon as there is a process, long before it answers. */
+	onSpawn?: (pid: number) => Promise<void>;
 }
 
 /** A problem that a person can mend, in one sentence. */
@@ -111,6 +113,7 @@ export async function startMariadb(options: MariadbOptions): Promise<Mariadb> {
 			resolveEnd();
 		});
 	});
+	if (child.pid !== undefined) await options.onSpawn?.(child.pid);
 	await untilReady(child, url, dir);
 	await rm(join(dir, 'init.sql'), { force: true });
 	return {

@@ -1,0 +1,75 @@
+import { mkdir } from 'node:fs/promises';
+import { join } from 'node:path';
+import type { Config } from '../lib/server/config';
+import { makeKey } from '../lib/server/auth/make-key';
+import type { Database } from '../lib/server/store/connect';
+import * as firstStart from '../lib/server/store/queries/first-start';
+
+import { startNode, type Child } from './processes';
+
+const KEY_NAME = 'demo simulator';
+
+/** Whether this start runs the demo: 'make' on an empty installation, 'go on' with its site there. */
+export async function demoWanted(db: Database, config: Config): Promise<'make' | 'go on' | 'no'> {
+	if (!config.demo || config.databaseUrl !== null || config.mqttUrl !== null) return 'no';
+	const sites = await firstStart.countSites(db);
+	if (sites.all === 0) return 'make';
+	return sites.demo > 0 ? 'go on' : 'no';
+}
+
+/** A key for the simulator alone; the one of the former start ends. */
+async function simulatorKey(db: Database): Promise<string> {
+	await firstStart.revokeKeys(db, KEY_NAME, Date.now());
+	const made = await makeKey(db, {
+		name: KEY_NAME,
+		scopes: ['occupancy', 'telemetry', 'provision'],
+		sites: 'all'
+	});
+	if (!made.ok) throw new Error(made.reason);
+	return made.key;
+}
+
+export interface SimulatorOptions {
+	config: Config;
+	db: Database;
+	/** The app's address for other programs of this machine. */
+	apiUrl: string;
+	mqtt: { host: string; port: number };
+	logFile: string;
+}
+
+const STOP_MS = 5_000;
+
+/** The simulator makes the site over the API, sends a week of history and goes on living. */
+export async function startSimulator(options: SimulatorOptions): Promise<Child> {
+	const dir = join(options.config.dataDir, 'demo');
+	await mkdir(dir, { recursive: true, mode: 0o700 });
+	return startNode({
+		name: 'simulator',
+		args: ['--import', 'tsx', 'simulator/main.ts'],
+		env: {
+			PATH: process.env['PATH'],
+			NODE_ENV: 'production',
+			LODEKEEP_API_URL: options.apiUrl,
+			LODEKEEP_API_KEY: await simulatorKey(options.db),
+			MQTT_HOST: options.mqtt.host,
+			MQTT_PORT: String(options.mqtt.port),
+			SIMULATOR_DIR: dir,
+			LOG_LEVEL: options.config.logLevel
+		},
+		logFile: options.logFile,
+		stopMs: STOP_MS
+	});
+}
+
+const LOOK_MS = 1_000;
+
+/** Waits for the site that the simulator makes, and makes it the demo's. Null when told to stop. */
+export async function adoptDemo(db: Database, isStopping: () => boolean): Promise<string | null> {
+	while (!isStopping()) {
+		const [slug] = (await firstStart.siteIds(db)).keys();
+		if (slug !== undefined && (await firstStart.adoptDemoSite(db, slug, Date.now()))) return slug;
+		await new Promise((resolve) => setTimeout(resolve, LOOK_MS));
+	}
+	return null;
+}
