@@ -1,0 +1,91 @@
+import { Devices, Sessions } from '../auth/session';
+import { LiveDirectory } from '../auth/directory';
+import { Throttle } from '../auth/throttle';
+import { requireConfig, type Config } from '../config';
+import { createLog, type Log } from '../log';
+import { startSender, type Sender } from '../outbox/sender';
+import { createSecret, type Secret } from '../secret';
+import { connect, type Store } from '../store/connect';
+import { reachRows } from '../store/queries/people';
+import { CodedCache } from './compress';
+import { RateLimiter } from './rate-limit';
+
+/** What the app keeps while it runs. Nothing of it belongs to one request. */
+export interface Instance {
+	readonly config: Config;
+	readonly log: Log;
+	readonly store: Store;
+	readonly secret: Secret;
+	readonly directory: LiveDirectory;
+	readonly sessions: Sessions;
+	readonly devices: Devices;
+	readonly throttle: Throttle;
+	readonly limiter: RateLimiter;
+	readonly coded: CodedCache;
+	readonly sender: Sender;
+	/** Cookies carry Secure and the __Host- prefix. */
+	readonly secureCookies: boolean;
+	close(): Promise<void>;
+}
+
+const KEY = Symbol.for('lodekeep.instance');
+type Kept = typeof globalThis & { [KEY]?: Instance };
+
+/** The running instance; throws before `startInstance`. */
+export function instance(): Instance {
+	const running = (globalThis as Kept)[KEY];
+	if (running === undefined) throw new Error('the app has not been started');
+	return running;
+}
+
+/** Ends the one that an earlier load of hooks left behind, then starts anew. Waits for no database. */
+export async function startInstance(
+	env: Record<string, string | undefined> = process.env
+): Promise<Instance> {
+	await closeInstance();
+	const running = create(requireConfig(env));
+	(globalThis as Kept)[KEY] = running;
+	return running;
+}
+
+export async function closeInstance(): Promise<void> {
+	const kept = globalThis as Kept;
+	const running = kept[KEY];
+	delete kept[KEY];
+	await running?.close();
+}
+
+function required(value: string | null, name: string): string {
+	if (value === null) throw new Error(`${name} must be given: npm start sets it for the app.`);
+	return value;
+}
+
+function create(config: Config): Instance {
+	const log = createLog({ level: config.logLevel, part: 'app' });
+	const store = connect(required(config.databaseUrl, 'DATABASE_URL'));
+	const secretText = required(config.secret, 'LODEKEEP_SECRET');
+	const secret = createSecret(secretText, config.secretPrevious);
+	const secureCookies = config.origin?.startsWith('https:') ?? config.tls !== null;
+	const sessionSecrets = [secretText, config.secretPrevious]
+		.filter((text) => text !== null)
+		.map((text) => createSecret(text).derive('session').toString('hex'));
+	const sender = startSender({ db: store.db, secret, log, config });
+	return {
+		config,
+		log,
+		store,
+		secret,
+		directory: new LiveDirectory(async () => await reachRows(store.db)),
+		sessions: new Sessions({ secrets: sessionSecrets, secure: secureCookies }),
+		devices: new Devices(secret.derive('session')),
+		throttle: new Throttle(),
+		limiter: new RateLimiter(),
+		coded: new CodedCache(),
+		sender,
+		secureCookies,
+		close: async () => {
+			await sender.close();
+			await store.close();
+		}
+	};
+}

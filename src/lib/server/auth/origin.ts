@@ -1,0 +1,18 @@
+/** Cross-site request forgery: any unsafe method that a browser could send for somebody (RFC 9110, 9.2.1). */
+const SAFE = new Set(['GET', 'HEAD', 'OPTIONS', 'TRACE']);
+
+/**
+ * true = refuse. With a session cookie an Origin that is ours must stand there, whatever the content
+ * type; without one a foreign Origin is refused all the same (signing somebody in as somebody else).
+ */
+export function forgedRequest(r: {
+	method: string;
+	origin: string | null;
+	ours: string;
+	hasSession: boolean;
+	/** Bearer to /api/v1: a program, its cookies are not looked at. */
+	program: boolean;
+}): boolean {
+	if (SAFE.has(r.method) || r.program) return false;
+	return r.origin === null ? r.hasSession : r.origin !== r.ours;
+}
