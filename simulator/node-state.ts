@@ -1,0 +1,108 @@
+import type { Vec3 } from '$lib/magnetics/vector';
+import type { Counts3, UpFrame } from '$lib/wire/types';
+import { freshFilm, type Film, type NodeEvent, type Sensor } from './film';
+import type { NodeField } from './node-field';
+import { random, type Random } from './random';
+import type { NodeCourse } from './temperature';
+
+/** How a node puts rows into messages. */
+export interface Batching {
+	/** Rows to a message at most (protocol: 120). */
+	rows: number;
+	/** A message is sent when its first row is this old, ms. */
+	holdMs: number;
+}
+
+export interface Habit {
+	periodS: number;
+	deltaMg: number;
+}
+
+export interface Battery {
+	/** Voltage of a fresh cell at 20 °C, mV. */
+	fullMv: number;
+	/** From here on the cell nears its end; Infinity for a good one. */
+	endsFromMs: number;
+}
+
+export interface NodeConfig {
+	index: number;
+	serial: string;
+	profileCode: string;
+	sensor: Sensor;
+	course: NodeCourse;
+	/** Sorted by time. */
+	events: NodeEvent[];
+	burstHz: number;
+	habit: Habit;
+	batching: Batching;
+	/** Node's clock less true time, ms; null = the node has no clock. */
+	clockOffsetMs: number | null;
+	battery: Battery;
+	firmware: string;
+	seed: number;
+}
+
+/** A frame as the node first sent it, with the true times that the node itself may not know. */
+export interface Sent {
+	nodeIndex: number;
+	frame: UpFrame;
+	/** True time of sending and of the frame's first row or pulse, ms. */
+	sentAtMs: number;
+	firstAtMs: number;
+}
+
+export interface Row {
+	atMs: number;
+	counts: Counts3;
+	tempDc: number;
+}
+
+/** Everything a node remembers while it runs. */
+export interface NodeState {
+	config: NodeConfig;
+	field: NodeField;
+	film: Film;
+	rng: Random;
+	atMs: number;
+	boot: number;
+	seq: number;
+	habit: Habit;
+	heartbeatMs: number;
+	sampledMs: number;
+	published: Vec3;
+	burst: { anchor: Vec3; stillSinceMs: number } | null;
+	/** Sampled finely until then although nothing moves (after a sudden event). */
+	fineUntilMs: number;
+	pending: Row[];
+	eventNext: number;
+	pulses: number;
+	pulsedMs: number;
+	frames: number;
+	radioMs: number;
+}
+
+export function newNode(config: NodeConfig, field: NodeField, atMs: number): NodeState {
+	const rng = random(config.seed, 'node', config.index);
+	return {
+		config,
+		field,
+		film: freshFilm(atMs),
+		rng,
+		atMs,
+		boot: 1,
+		seq: 0,
+		habit: config.habit,
+		heartbeatMs: Math.round(atMs + rng.between(500, config.habit.periodS * 1000)),
+		sampledMs: -Infinity,
+		published: [0, 0, 0],
+		burst: null,
+		fineUntilMs: -Infinity,
+		pending: [],
+		eventNext: 0,
+		pulses: 0,
+		pulsedMs: atMs,
+		frames: 0,
+		radioMs: 0
+	};
+}

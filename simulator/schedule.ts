@@ -1,0 +1,124 @@
+import type { Vec3 } from '$lib/magnetics/vector';
+import { endPose, motion, type Motion, type Standing } from './motion';
+import { drawParking, parkingPath, type Path } from './path';
+import type { Random } from './random';
+import type { BayPlan, Lane } from './site-plan';
+import { vehicleOfSize, type Vehicle } from './vehicle';
+
+/** One vehicle's stay in one bay: driving in, standing, driving out. */
+export interface Visit {
+	bayIndex: number;
+	vehicle: Vehicle;
+	path: Path;
+	/** Drives in from `inFromMs`, stands from `fromMs` to `toMs`, is gone at `outToMs`. */
+	inFromMs: number;
+	fromMs: number;
+	toMs: number;
+	outToMs: number;
+	/** Off the bay's centre line, metres. */
+	leftM: number;
+	/** It came because the neighbour's did. */
+	pinned: boolean;
+}
+
+/** Times drawn log-uniformly from one of several spans, by share. */
+export type Spans = readonly { share: number; lowS: number; highS: number }[];
+
+export interface VehicleMix {
+	/** Field that the standing vehicle makes at its own node, mG: log-normal inside [low, high]. */
+	medianMg: number;
+	sigma: number;
+	lowMg: number;
+	highMg: number;
+	/** Share of high-chassis vehicles, whose field reaches the neighbours. */
+	vanShare: number;
+	askewM: number;
+}
+
+export interface Life {
+	vehicles: VehicleMix;
+	stays: Spans;
+	gaps: Spans;
+	/** How many times longer gaps are at an hour of the local day (0..23); absent = no rhythm. */
+	gapByHour?: readonly number[];
+	localOffsetMs?: number;
+}
+
+/** Between one vehicle's leaving and the next one's standing there lies both drives' time. */
+const LEAST_GAP_S = 25;
+/** A bay stays empty this much longer when a vehicle is wanted at a time. */
+const PIN_WAIT_MS = 2 * 3_600_000;
+
+export function drawSpanS(rng: Random, spans: Spans): number {
+	let left = rng.uniform() * spans.reduce((sum, span) => sum + span.share, 0);
+	for (const span of spans) {
+		left -= span.share;
+		if (left <= 0) return span.lowS * Math.pow(span.highS / span.lowS, rng.uniform());
+	}
+	return spans[spans.length - 1]!.highS;
+}
+
+/** What one bay needs to know to invent its next visit. */
+export interface BayLife {
+	bayIndex: number;
+	bay: BayPlan;
+	lane: Lane;
+	nodeNedM: Vec3;
+	earthUnit: Vec3;
+	life: Life;
+	rng: Random;
+	/** The bay is empty from here on. */
+	freeFromMs: number;
+	/** Times at which a vehicle is wanted here (beside a neighbour's). */
+	pins: number[];
+}
+
+function drawVisit(bay: BayLife, fromMs: number, stayS: number): Visit {
+	const { rng, life } = bay;
+	const mix = life.vehicles;
+	const parking = drawParking(rng, mix.askewM);
+	const path = parkingPath(bay.bay, bay.lane, parking);
+	const sizeMg = rng.logNormal(mix.medianMg, mix.sigma, mix.lowMg, mix.highMg);
+	const build = rng.chance(mix.vanShare) ? 'van' : 'car';
+	const pose = endPose(path);
+	const vehicle = vehicleOfSize(rng, build, bay.earthUnit, sizeMg, pose, bay.nodeNedM);
+	const driveMs = Math.ceil(path.durationS * 1000);
+	const toMs = Math.round(fromMs + stayS * 1000);
+	return {
+		bayIndex: bay.bayIndex,
+		vehicle,
+		path,
+		inFromMs: fromMs - driveMs,
+		fromMs,
+		toMs,
+		outToMs: toMs + driveMs,
+		leftM: parking.leftM,
+		pinned: false
+	};
+}
+
+/** The bay's next visit after `freeFromMs`; moves that on. */
+export function nextVisit(bay: BayLife): Visit {
+	const { rng, life } = bay;
+	let gapS = drawSpanS(rng, life.gaps);
+	const localMs = bay.freeFromMs + (life.localOffsetMs ?? 0);
+	const hour = Math.floor((localMs % 86_400_000) / 3_600_000);
+	gapS = Math.max(LEAST_GAP_S, gapS * (life.gapByHour?.[hour] ?? 1));
+	const drawnMs = Math.round(bay.freeFromMs + gapS * 1000);
+	const pin = bay.pins.find((atMs) => atMs > bay.freeFromMs + LEAST_GAP_S * 1000);
+	const pinned = pin !== undefined && pin < drawnMs + PIN_WAIT_MS;
+	const visit = drawVisit(bay, pinned ? pin : drawnMs, drawSpanS(rng, life.stays));
+	bay.freeFromMs = visit.toMs;
+	return { ...visit, pinned };
+}
+
+export function motionsOf(visit: Visit): { moves: Motion[]; standing: Standing } {
+	const { vehicle, path, fromMs, toMs } = visit;
+	return {
+		moves: [
+			{ ...motion(vehicle, path, visit.inFromMs, 'forth'), toMs: fromMs },
+			motion(vehicle, path, toMs, 'back')
+		],
+		standing: { vehicle, pose: endPose(path), fromMs, toMs }
+	};
+}
