@@ -26,7 +26,17 @@ function fail(sentence: string): never {
 	process.exit(1);
 }
 
-const parsed = environment.safeParse(process.env);
+function pem(name: string, path = ''): string {
+	try {
+		return readFileSync(path, 'utf8');
+	} catch {
+		return fail(`${name}: the file ${path} can't be read`);
+	}
+}
+
+/** An empty setting is none: `MQTT_TLS_PORT=` must not become port 0. */
+const given = Object.fromEntries(Object.entries(process.env).filter(([, value]) => value !== ''));
+const parsed = environment.safeParse(given);
 if (!parsed.success) {
 	fail(parsed.error.issues.map((issue) => `${issue.path.join('.')}: ${issue.message}`).join('\n'));
 }
@@ -36,8 +46,8 @@ const tls =
 		? null
 		: {
 				port: env.MQTT_TLS_PORT,
-				cert: readFileSync(env.MQTT_TLS_CERT ?? '', 'utf8'),
-				key: readFileSync(env.MQTT_TLS_KEY ?? '', 'utf8')
+				cert: pem('MQTT_TLS_CERT', env.MQTT_TLS_CERT),
+				key: pem('MQTT_TLS_KEY', env.MQTT_TLS_KEY)
 			};
 const broker = await start({
 	host: env.MQTT_HOST,

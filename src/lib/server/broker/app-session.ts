@@ -99,9 +99,8 @@ export class AppSession {
 	}
 
 	#learn(payload: Buffer): void {
-		const parsed = directoryWord.safeParse(JSON.parse(payload.toString('utf8')));
-		if (!parsed.success) return;
-		const word = parsed.data;
+		const word = read(payload);
+		if (word === null) return;
 		if (word.op === 'vouch' && !word.current) return this.directory.doubt();
 		if (word.op === 'full') this.directory.stage(word.entries, word.part);
 		if (word.op === 'change') this.directory.change(word.entries, word.removed);
@@ -116,7 +115,16 @@ export class AppSession {
 		for (const link of [...this.intake.links]) {
 			const { role } = link;
 			if (role?.kind !== 'node' || this.directory.allows(role.serial, role.hash)) continue;
-			link.refuse('credentials');
+			link.refuse('withdrawn');
 		}
+	}
+}
+
+/** null: the word of an app of another build; what is known stays in force. */
+function read(payload: Buffer): z.infer<typeof directoryWord> | null {
+	try {
+		return directoryWord.parse(JSON.parse(payload.toString('utf8')));
+	} catch {
+		return null;
 	}
 }

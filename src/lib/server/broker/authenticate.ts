@@ -1,4 +1,4 @@
-import type { AuthenticateError, AuthErrorCode, Client } from 'aedes';
+import type { AuthenticateError, Client } from 'aedes';
 import type { BrokerRefusal } from './counters';
 import { sameSecret, type NodeDirectory } from './directory';
 import { LINK_USER } from './link-codec';
@@ -62,7 +62,7 @@ export function signIn(
 
 /** The error aedes turns into a CONNACK. */
 export const connackError = (code: number, reason: string): AuthenticateError =>
-	Object.assign(new Error(reason), { returnCode: code as AuthErrorCode });
+	Object.assign(new Error(reason), { returnCode: code });
 
 /** Every connection of this broker is a NodeLink (start.ts hands aedes nothing else). */
 export const linkOf = (client: Client): NodeLink => client.conn as NodeLink;

@@ -12,7 +12,6 @@ type Answer<T> = (error: Error | null, value?: T | null) => void;
 
 /** What still passes aedes: the app's commands, subscriptions of nodes, last wills. */
 export class Commands {
-	isConnected: (serial: string) => boolean = () => false;
 	/** Commands that aedes keeps for nodes that are away. */
 	readonly #kept = new Map<string, number>();
 
@@ -57,7 +56,7 @@ export class Commands {
 	}
 
 	#mayKeep(serial: string): boolean {
-		if (this.isConnected(serial)) return true;
+		if (this.intake.nodes.has(serial)) return true;
 		const kept = this.#kept.get(serial) ?? 0;
 		if (kept >= this.intake.limits.offlineCommands) return false;
 		this.#kept.set(serial, kept + 1);

@@ -4,6 +4,7 @@ export const REFUSALS = [
 	'identifier',
 	'credentials',
 	'unavailable',
+	'withdrawn',
 	'link',
 	'will',
 	'topic',

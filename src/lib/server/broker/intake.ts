@@ -12,6 +12,8 @@ const LOW_WATER = 0.9;
 export class Intake implements LinkOwner {
 	readonly held: HeldList;
 	readonly links = new Set<NodeLink>();
+	/** Signed-in nodes by serial: aedes ends an older connection before a newer one is let in. */
+	readonly nodes = new Map<string, NodeLink>();
 	readonly totals = newTotals();
 	atCeiling = false;
 	/** Something new lies in the list. */
@@ -87,20 +89,20 @@ export class Intake implements LinkOwner {
 	ended(link: NodeLink): void {
 		this.links.delete(link);
 		this.#waiting.delete(link);
-		if (link.role?.kind === 'node') this.#queues.get(link.role.serial)?.orphan(link);
+		if (link.role?.kind === 'node') {
+			const { serial } = link.role;
+			this.#queues.get(serial)?.orphan(link);
+			if (this.nodes.get(serial) === link) this.nodes.delete(serial);
+		}
 		this.onEnded(link);
 	}
 
 	stats(knownNodes: number): BrokerStats {
-		let connectedNodes = 0;
 		let gatedConnections = 0;
-		for (const link of this.links) {
-			if (link.role?.kind === 'node') connectedNodes++;
-			if (link.gated) gatedConnections++;
-		}
+		for (const link of this.links) if (link.gated) gatedConnections++;
 		return {
 			...this.totals,
-			connectedNodes,
+			connectedNodes: this.nodes.size,
 			knownNodes,
 			gatedConnections,
 			heldMessages: this.held.size,

@@ -116,12 +116,13 @@ async function makeAedes(
 		authorizeSubscribe: (client, subscription, done) =>
 			commands.subscribe(client, subscription, done)
 	});
-	commands.isConnected = (serial) =>
-		[...intake.links].some((link) => link.role?.kind === 'node' && link.role.serial === serial);
 	aedes.on('clientReady', (client) => {
 		const link = linkOf(client);
 		if (link.role?.kind === 'app') session.begin(client);
-		if (link.role?.kind === 'node') commands.isBack(link.role.serial);
+		if (link.role?.kind === 'node') {
+			intake.nodes.set(link.role.serial, link);
+			commands.isBack(link.role.serial);
+		}
 		link.open();
 	});
 	// Without a listener a fault of one stored will would end the process.
