@@ -1,0 +1,43 @@
+import { duration } from '$lib/format/duration';
+import { clockTime } from '$lib/format/time';
+
+/** GET /api/v1/sites/{site}/live */
+export interface SiteLive {
+	status: 'live' | 'late' | 'lost';
+	asOf: string;
+	lateSince: string | null;
+	nodesHeard: number;
+	nodesExpected: number;
+}
+export interface Connection {
+	signedOut: boolean;
+	/** When Lodekeep last answered this page. */
+	answeredAtMs: number | null;
+}
+
+/** Polls come every 2 s: three missed ones are no hiccup any more. */
+export const NO_ANSWER_MS = 8_000;
+
+/** What the title block says of freshness: struck when what is shown may be old. */
+export function liveText(
+	live: SiteLive | null,
+	connection: Connection,
+	timezone: string,
+	nowMs: number
+): { struck: boolean; text: string } {
+	const { answeredAtMs } = connection;
+	if (connection.signedOut) return { struck: true, text: 'signed out: what is shown stands still' };
+	if (answeredAtMs !== null && nowMs - answeredAtMs > NO_ANSWER_MS)
+		return {
+			struck: true,
+			text: `no answer from Lodekeep since ${clockTime(answeredAtMs, timezone)} (${duration(nowMs - answeredAtMs)})`
+		};
+	if (live === null) return { struck: false, text: 'asking …' };
+	const heard = `${live.nodesHeard} of ${live.nodesExpected} nodes heard`;
+	if (live.status === 'live') return { struck: false, text: `live, ${heard}` };
+	const sinceMs = Date.parse(live.lateSince ?? live.asOf);
+	return {
+		struck: true,
+		text: `${live.status} since ${clockTime(sinceMs, timezone)} (${duration(nowMs - sinceMs)}), ${heard}`
+	};
+}
