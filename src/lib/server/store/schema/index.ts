@@ -5,3 +5,4 @@ export * from './node';
 export * from './people';
 export * from './site';
 export * from './system';
+export * from './visit';
