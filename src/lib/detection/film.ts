@@ -1,0 +1,74 @@
+import { doubtIt } from './entries';
+import { touch, triple, type Node, type Step, type Triple } from './state';
+import { offMg } from './thresholds';
+import { apart, set3, shift3, size3, type Axes } from './vec';
+
+const AXIS_SETS: readonly Triple[] = [
+	[-1, 1, 1],
+	[1, -1, 1],
+	[1, 1, -1],
+	[-1, -1, 1],
+	[-1, 1, -1],
+	[1, -1, -1],
+	[-1, -1, -1]
+];
+
+const mirrored = (v: Axes, s: Triple): Triple => [v[0] * s[0], v[1] * s[1], v[2] * s[2]];
+
+/** The step's jump is the film's or the magnet's: the known fields move with it, the state stays. */
+function carryFilmStep(n: Node, step: Step): void {
+	step.became = 'film';
+	shift3(n.fast.baseline, step.j);
+	touch(n);
+}
+
+/** A step with a clipped row, or one past what the film bears, is a magnet's (method 4). */
+export function takeMagnet(n: Node, step: Step): boolean {
+	if (!step.clipped) return false;
+	carryFilmStep(n, step);
+	doubtIt(n, 'magnet', step.atMs);
+	n.slow.refreshWhy = 'a strong field met the film';
+	return true;
+}
+
+/**
+ * Inverted film, axis by axis (method 4): the set of axes whose change of sign brings the level back to
+ * what is known of this bay. Needs an offset: without one a sign says nothing.
+ */
+export function takeInversion(n: Node, step: Step): boolean {
+	const signs = invertedAxes(n, step);
+	if (signs === null) return false;
+	const { fast, slow } = n;
+	slow.signs = mirrored(slow.signs, signs);
+	const level = mirrored(fast.level, signs);
+	set3(fast.level, level);
+	set3(fast.last, mirrored(fast.last, signs));
+	fast.boxN = 0;
+	step.became = 'film';
+	slow.refreshWhy = slow.signs.some((s) => s < 0) ? 'the film has flipped' : slow.refreshWhy;
+	touch(n);
+	return true;
+}
+
+function invertedAxes(n: Node, step: Step): Triple | null {
+	const { fast, slow, params } = n;
+	if (slow.offset === null || slow.reference === null) return null;
+	const { baseline, level } = fast;
+	const known: Triple[] = [triple(baseline)];
+	const old: Triple = [level[0] - step.j[0], level[1] - step.j[1], level[2] - step.j[2]];
+	known.push(old);
+	const tolerance = Math.max(offMg(n), params.invertedRatio * size3(baseline));
+	if (known.some((k) => apart(level, k) <= 2 * tolerance)) return null;
+	let best: Triple | null = null;
+	let bestMg = tolerance;
+	for (const signs of AXIS_SETS) {
+		const carries = [0, 1, 2].every(
+			(i) => signs[i as 0] > 0 || Math.abs(baseline[i as 0]) > params.invertedAxisMg
+		);
+		if (!carries) continue;
+		const back = mirrored(level, signs);
+		const off = Math.min(...known.map((k) => apart(back, k)));
+		if (off <= bestMg) [best, bestMg] = [signs, off];
+	}
+	return best;
+}

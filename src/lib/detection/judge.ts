@@ -1,0 +1,254 @@
+import { arrivalConfidence, capOf, carriedConfidence, departureConfidence } from './confidence';
+import { clearDoubt, doubtIt, enter, remember } from './entries';
+import { disturbanceWords, evidence, neighbourWords, spanWords, stepWords } from './evidence';
+import { atReference, fromReferenceMg, unexplainedByTempMg } from './reference';
+import { summed, touch, triple, type Group, type Node, type Step } from './state';
+import { addStay } from './stays';
+import { offMg, onMg, releaseMg } from './thresholds';
+import { apart, set3, size3, sumSize } from './vec';
+
+export interface Overlap {
+	node: Node;
+	step: Step;
+}
+
+/** Still readings after a departure that make up the new baseline (method 3). */
+const REBASE_READINGS = 4;
+const MS_PER_S = 1000;
+
+/** Would this step at a vacant bay be a vehicle's (step rule, gaps)? */
+export function isArrival(n: Node, step: Step): boolean {
+	const { level, baseline } = n.fast;
+	const d = apart(level, baseline);
+	const on = onMg(n);
+	if (d < on || fromReferenceMg(n, level) <= n.params.returnMg) return false;
+	if (step.gapS > 0) {
+		return d >= on + unexplainedByTempMg(n, n.fast.baselineTempC) && size3(step.j) >= on;
+	}
+	const before = Math.hypot(
+		level[0] - step.j[0] - baseline[0],
+		level[1] - step.j[1] - baseline[1],
+		level[2] - step.j[2] - baseline[2]
+	);
+	return d - before >= n.params.stepRatio * on;
+}
+
+/** Would this step at an occupied bay be the vehicle's leaving (step ledger, release)? */
+export function isDeparture(n: Node, step: Step): boolean {
+	const { arrival } = n.slow;
+	const off = offMg(n);
+	if (size3(step.j) < n.params.stepRatio * onMg(n)) return false;
+	if (arrival !== null) {
+		const undone = Math.max(off, n.params.undoRatio * size3(arrival.step));
+		if (sumSize(step.j, arrival.step) <= undone) return true;
+	}
+	return apart(n.fast.level, n.fast.baseline) < releaseMg(n) || atReference(n, n.fast.level);
+}
+
+/** Judges a settled step by the node's own evidence. */
+export function judge(
+	g: Group,
+	n: Node,
+	step: Step,
+	overlapping: readonly Overlap[],
+	atMs: number
+): void {
+	if (n.slow.unknownWhy === 'silent' || n.slow.unknownWhy === 'clipped') {
+		believeAgain(g, n, step, step.toMs, atMs);
+	} else if (n.slow.state === 'vacant') {
+		if (isArrival(n, step)) arrive(g, n, step, overlapping, atMs);
+		else stayVacant(n, step);
+	} else if (n.slow.state === 'occupied') {
+		if (isDeparture(n, step)) depart(g, n, step, overlapping, atMs);
+		else stayOccupied(n, step);
+	}
+}
+
+export function arrive(
+	g: Group,
+	n: Node,
+	step: Step,
+	overlapping: readonly Overlap[],
+	decidedAtMs: number,
+	more: string[] = []
+): void {
+	const { fast, slow } = n;
+	const d = apart(fast.level, fast.baseline);
+	step.became = 'arrival';
+	step.before = remember(n);
+	slow.aisle = null;
+	startStay(n, step.atMs);
+	const words = [
+		disturbanceWords(d, onMg(n)),
+		stepWords(step, 'rose'),
+		...more,
+		...neighbourWords(n, overlapping)
+	];
+	enter(
+		g,
+		n,
+		{
+			type: 'arrival',
+			state: 'occupied',
+			atMs: step.atMs,
+			uncertaintyS: step.uncertaintyS,
+			confidence: arrivalConfidence(n, step, d, overlapping.length),
+			evidence: evidence(words, againstArrival(n))
+		},
+		decidedAtMs
+	);
+}
+
+const againstArrival = (n: Node): string[] =>
+	n.slow.reference?.provisional === true ? ['the reference is not yet proved'] : [];
+
+/** Takes the present level as a vehicle standing on the baseline. */
+export function startStay(n: Node, atMs: number): void {
+	const { fast, slow } = n;
+	const over = {
+		0: fast.level[0] - fast.baseline[0],
+		1: fast.level[1] - fast.baseline[1],
+		2: fast.level[2] - fast.baseline[2]
+	};
+	slow.arrival = { step: triple(over), first: triple(over), atMs };
+	slow.longCheckMs = 0;
+	slow.longAsked = false;
+	slow.longStay = false;
+	slow.stayNo++;
+	fast.stayMg = Math.fround(size3(over));
+	fast.rebase = 0;
+	noteStrange(n);
+	touch(n);
+}
+
+export function depart(
+	g: Group,
+	n: Node,
+	step: Step,
+	overlapping: readonly Overlap[],
+	decidedAtMs: number
+): void {
+	const { fast } = n;
+	const d = apart(fast.level, fast.baseline);
+	const release = releaseMg(n);
+	step.became = 'departure';
+	step.before = remember(n);
+	addStay(n, step.atMs);
+	takeVacant(n);
+	enter(
+		g,
+		n,
+		{
+			type: 'departure',
+			state: 'vacant',
+			atMs: step.atMs,
+			uncertaintyS: step.uncertaintyS,
+			confidence: departureConfidence(n, step, d / release),
+			evidence: evidence(
+				[disturbanceWords(d, release), stepWords(step, 'fell'), ...neighbourWords(n, overlapping)],
+				againstArrival(n)
+			)
+		},
+		decidedAtMs
+	);
+}
+
+/** The present level is the quiet field of an empty bay. */
+export function takeVacant(n: Node): void {
+	const { fast, slow } = n;
+	set3(fast.baseline, fast.level);
+	fast.baselineTempC = fast.tempC;
+	fast.rebase = REBASE_READINGS - 1;
+	fast.stayMg = 0;
+	slow.arrival = null;
+	slow.cap = 1;
+	slow.longStay = false;
+	clearDoubt(n);
+	countReturn(n);
+	touch(n);
+}
+
+/** A provisional reference is proved by the field coming back to it; that also clears strange levels. */
+function countReturn(n: Node): void {
+	const { slow } = n;
+	if (fromReferenceMg(n, n.fast.level) > n.params.returnMg) return;
+	slow.strange = null;
+	if (slow.reference?.provisional !== true) return;
+	slow.returns++;
+	if (slow.returns >= n.params.returnsToProve)
+		slow.reference = { ...slow.reference, provisional: false };
+}
+
+/** 'Occupied' spells that keep ending at one field which the reference lacks (method 3). */
+function noteStrange(n: Node): void {
+	const { slow, fast } = n;
+	if (slow.reference?.provisional !== true) return;
+	if (slow.strange !== null && apart(slow.strange.level, fast.level) <= n.params.returnMg) {
+		slow.strange.count++;
+		if (slow.strange.count >= n.params.returnsToProve) {
+			doubtIt(n, 'reference may hold a vehicle', fast.lastAtMs);
+		}
+	} else if (slow.strange === null || slow.strange.count < 2) {
+		slow.strange = { level: triple(fast.level), count: 1 };
+	}
+	touch(n);
+}
+
+/** A level that is no vehicle: back at the reference, or drift over a silence. */
+function stayVacant(n: Node, step: Step): void {
+	const { fast } = n;
+	const d = apart(fast.level, fast.baseline);
+	step.became = 'nothing';
+	if (d >= onMg(n) && fromReferenceMg(n, fast.level) <= n.params.returnMg) takeVacant(n);
+	else if (step.gapS > 0 && d >= offMg(n)) {
+		doubtIt(n, 'field moved during a gap', step.toMs);
+		set3(fast.baseline, fast.level);
+	}
+}
+
+/** The vehicle moved, or another took its place unseen. */
+function stayOccupied(n: Node, step: Step): void {
+	step.became = 'nothing';
+	const { arrival } = n.slow;
+	if (arrival === null || size3(step.j) < offMg(n)) return;
+	n.slow.arrival = { ...arrival, step: summed(arrival.step, step.j) };
+	noteStrange(n);
+	touch(n);
+}
+
+/** State after a silence or an overload, by level (method 4, gaps). */
+export function believeAgain(
+	g: Group,
+	n: Node,
+	step: Step | null,
+	knownAtMs: number,
+	decidedAtMs: number
+): void {
+	const { fast, slow } = n;
+	const was = slow.lastKnown?.state ?? 'vacant';
+	const d = apart(fast.level, fast.baseline);
+	const allow = unexplainedByTempMg(n, fast.baselineTempC);
+	const gone = step !== null && isDeparture(n, step);
+	const taken = was === 'occupied' ? !gone : d >= onMg(n) + allow;
+	const sinceMs = slow.lastKnown?.atMs ?? knownAtMs;
+	if (step !== null) step.before = remember(n);
+	if (taken && was !== 'occupied') startStay(n, knownAtMs);
+	if (!taken && (was === 'occupied' || step !== null)) takeVacant(n);
+	const limit = taken ? onMg(n) : offMg(n);
+	enter(
+		g,
+		n,
+		{
+			type: 'known',
+			state: taken ? 'occupied' : 'vacant',
+			atMs: knownAtMs,
+			uncertaintyS: 0,
+			confidence: Math.min(carriedConfidence(n), capOf(n)),
+			evidence: evidence([
+				disturbanceWords(d, limit),
+				`heard again after ${spanWords((knownAtMs - sinceMs) / MS_PER_S)} not known`
+			])
+		},
+		decidedAtMs
+	);
+}

@@ -1,0 +1,286 @@
+import { atSilence, heardAgain, takeClipped } from './silence';
+import { takeInversion, takeMagnet } from './film';
+import { keepHouse } from './housekeeping';
+import { learn } from './learning';
+import { hold, resolve } from './neighbours';
+import { addPass } from './passes';
+import { settleAfterPulse } from './pulses';
+import type { Group, Node, Step } from './state';
+import { followTemperature } from './temperature';
+import { gapMs, offMg, onMg, stillMg, trackNoise } from './thresholds';
+import type { RowItem } from './types';
+import { apart } from './vec';
+
+const MS_PER_S = 1000;
+/** The level is a running mean of this many still readings at most. */
+const LEVEL_READINGS = 8;
+/** Readings that must agree before the baseline takes one in (method 3). */
+const STILL_READINGS = 3;
+/** Rows nearer than this belong to one burst. */
+const BURST_MS = 5000;
+/** After a silence the baseline is moved as if no more than this had passed. */
+const LONGEST_DT_MS = 600_000;
+
+/** Advances a node by one row (method 1 to 4). */
+export function takeRow(g: Group, n: Node, row: RowItem): void {
+	const { fast, slow } = n;
+	const atMs = Math.max(row.atMs, fast.lastAtMs);
+	const dtMs = fast.lastAtMs === 0 ? 0 : atMs - fast.lastAtMs;
+	if (row.clipped || overFilm(n, row)) {
+		takeClipped(g, n, atMs, row.clipped);
+		fast.lastAtMs = atMs;
+		return;
+	}
+	const [o0, o1, o2] = slow.offset ?? ZERO;
+	const p = row.polarity;
+	const { last, signs } = { last: fast.last, signs: slow.signs };
+	const x = Math.fround(p * signs[0] * (row.rawMg[0] - o0));
+	const y = Math.fround(p * signs[1] * (row.rawMg[1] - o1));
+	const z = Math.fround(p * signs[2] * (row.rawMg[2] - o2));
+	const dx = x - last[0];
+	const dy = y - last[1];
+	const dz = z - last[2];
+	last[0] = x;
+	last[1] = y;
+	last[2] = z;
+	if (row.tempC !== null) followTemperature(n, row.tempC, dtMs);
+	if (fast.clippedRun > 0) fast.clippedRun = 0;
+	if (fast.levelN === 0) startLevel(n, atMs);
+	else if (atMs < fast.quietUntilMs) extendBox(n, atMs);
+	else if (slow.learning || slow.reference === null) learnRow(g, n, atMs, dtMs, dx, dy, dz);
+	else inService(g, n, atMs, dtMs, dx, dy, dz);
+	fast.lastAtMs = atMs;
+	if (atMs >= fast.checkAtMs) keepHouse(g, n, atMs);
+}
+
+const ZERO = [0, 0, 0] as const;
+
+const overFilm = (n: Node, row: RowItem): boolean => {
+	const limit = n.member.profile.filmSafeMg;
+	return (
+		Math.abs(row.rawMg[0]) > limit ||
+		Math.abs(row.rawMg[1]) > limit ||
+		Math.abs(row.rawMg[2]) > limit
+	);
+};
+
+function startLevel(n: Node, atMs: number): void {
+	const { fast } = n;
+	for (const i of [0, 1, 2] as const) fast.level[i] = fast.last[i];
+	fast.levelN = 1;
+	fast.boxN = 0;
+	extendBox(n, atMs);
+}
+
+function learnRow(
+	g: Group,
+	n: Node,
+	atMs: number,
+	dtMs: number,
+	dx: number,
+	dy: number,
+	dz: number
+): void {
+	extendBox(n, atMs);
+	if (n.fast.boxN > 1 && dtMs > 0) trackNoise(n, dx, dy, dz);
+	if (n.fast.boxN >= STILL_READINGS) meanOfBox(n);
+	if (n.slow.learning) learn(g, n, atMs);
+}
+
+function inService(
+	g: Group,
+	n: Node,
+	atMs: number,
+	dtMs: number,
+	dx: number,
+	dy: number,
+	dz: number
+): void {
+	const { fast } = n;
+	if (dtMs > gapMs(n)) atSilence(g, n, atMs, dtMs);
+	if (fast.reanchor === 1) {
+		extendBox(n, atMs);
+		if (fast.boxN >= 2) settleAfterPulse(n, atMs);
+		return;
+	}
+	if (fast.open === 1) {
+		continueStep(g, n, atMs);
+		return;
+	}
+	const still = stillMg(n);
+	const { last, level } = fast;
+	if (
+		Math.abs(last[0] - level[0]) <= still &&
+		Math.abs(last[1] - level[1]) <= still &&
+		Math.abs(last[2] - level[2]) <= still
+	) {
+		if (n.slow.unknownWhy !== null) heardAgain(g, n, atMs);
+		quiet(n, atMs, dtMs, dx, dy, dz, still);
+	} else begin(g, n, atMs, dtMs);
+}
+
+/** A reading on the level: noise, level, baseline and the stay's size follow. */
+function quiet(
+	n: Node,
+	atMs: number,
+	dtMs: number,
+	dx: number,
+	dy: number,
+	dz: number,
+	still: number
+): void {
+	const { fast, slow, params } = n;
+	trackNoise(n, dx, dy, dz);
+	extendBoxBy(n, atMs, still);
+	if (fast.levelN < LEVEL_READINGS) fast.levelN++;
+	const share = 1 / fast.levelN;
+	const { level, last, baseline } = fast;
+	level[0] += share * (last[0] - level[0]);
+	level[1] += share * (last[1] - level[1]);
+	level[2] += share * (last[2] - level[2]);
+	const d = apart(last, baseline);
+	if (slow.state === 'occupied') {
+		const step = Math.max(0.2, 0.01 * fast.stayMg);
+		fast.stayMg = Math.fround(fast.stayMg + (d > fast.stayMg ? step : -step));
+		return;
+	}
+	if (slow.state !== 'vacant' || fast.boxN < STILL_READINGS || d >= offMg(n)) return;
+	let take = 1 - Math.exp(-Math.min(dtMs, LONGEST_DT_MS) / (params.baselineTauS * MS_PER_S));
+	if (fast.rebase > 0) {
+		take = Math.max(take, 1 / (5 - fast.rebase));
+		fast.rebase--;
+	}
+	fast.baselineTempC = fast.tempC;
+	baseline[0] += take * (last[0] - baseline[0]);
+	baseline[1] += take * (last[1] - baseline[1]);
+	baseline[2] += take * (last[2] - baseline[2]);
+}
+
+const extendBox = (n: Node, atMs: number): void => {
+	extendBoxBy(n, atMs, stillMg(n));
+};
+
+/** Takes the reading into the box of still readings, or starts a new box with it. */
+function extendBoxBy(n: Node, atMs: number, side: number): void {
+	const { boxMin, boxMax, boxSum, last } = n.fast;
+	let starts = n.fast.boxN === 0;
+	for (let i = 0 as 0 | 1 | 2; i < 3; i++) {
+		const v = last[i];
+		if (Math.max(boxMax[i], v) - Math.min(boxMin[i], v) > side) starts = true;
+	}
+	for (let i = 0 as 0 | 1 | 2; i < 3; i++) {
+		const v = last[i];
+		boxMin[i] = starts ? v : Math.min(boxMin[i], v);
+		boxMax[i] = starts ? v : Math.max(boxMax[i], v);
+		boxSum[i] = starts ? v : boxSum[i] + v;
+	}
+	if (starts) n.fast.boxFromMs = atMs;
+	n.fast.boxN = starts ? 1 : n.fast.boxN + 1;
+}
+
+/** A reading off the level: a step opens. */
+function begin(g: Group, n: Node, atMs: number, dtMs: number): void {
+	const { fast } = n;
+	fast.open = 1;
+	fast.openOldAtMs = fast.lastAtMs;
+	fast.openNewAtMs = atMs;
+	fast.openGap = dtMs > gapMs(n) ? 1 : 0;
+	fast.openClipped = 0;
+	fast.openN = 0;
+	fast.peakMg = 0;
+	fast.crossAtMs = 0;
+	fast.visibleAtMs = atMs;
+	fast.boxN = 0;
+	g.active++;
+	if (n.slow.pending !== null) resolve(g, n, atMs, 'forced');
+	continueStep(g, n, atMs);
+}
+
+function continueStep(g: Group, n: Node, atMs: number): void {
+	const { fast } = n;
+	fast.openN++;
+	extendBox(n, atMs);
+	fast.peakMg = Math.fround(Math.max(fast.peakMg, apart(fast.last, fast.level)));
+	noteCrossing(n, atMs);
+	if (fast.boxN >= 2 && atMs - fast.boxFromMs >= n.params.stillS * MS_PER_S) settle(g, n, atMs);
+}
+
+/** First crossing: over on when vacant, away from the vehicle's level by half of it when occupied. */
+function noteCrossing(n: Node, atMs: number): void {
+	const { fast, slow } = n;
+	if (fast.crossAtMs > 0) return;
+	const crossed =
+		slow.state === 'occupied'
+			? apart(fast.last, fast.level) >= Math.max(offMg(n), fast.stayMg / 2)
+			: apart(fast.last, fast.baseline) >= onMg(n);
+	if (!crossed) return;
+	fast.crossAtMs = atMs;
+	fast.crossOldAtMs = fast.lastAtMs;
+}
+
+function meanOfBox(n: Node): void {
+	const { level, boxSum, boxN } = n.fast;
+	level[0] = boxSum[0] / boxN;
+	level[1] = boxSum[1] / boxN;
+	level[2] = boxSum[2] / boxN;
+}
+
+/** The field is still again: back on the old level (a pass), or on a new one (a step). */
+function settle(g: Group, n: Node, atMs: number): void {
+	const { fast } = n;
+	const old = [fast.level[0], fast.level[1], fast.level[2]] as [number, number, number];
+	meanOfBox(n);
+	fast.levelN = Math.min(LEVEL_READINGS, fast.boxN);
+	fast.open = 0;
+	fast.visibleAtMs = atMs;
+	g.active--;
+	const step = makeStep(n, old, atMs);
+	const moved = Math.max(Math.abs(step.j[0]), Math.abs(step.j[1]), Math.abs(step.j[2]));
+	if (moved <= stillMg(n)) pass(g, n, step, atMs);
+	else if (takeMagnet(n, step) || takeInversion(n, step)) {
+		if (n.slow.unknownWhy !== null) heardAgain(g, n, atMs);
+	} else hold(g, n, step, atMs);
+}
+
+function pass(g: Group, n: Node, step: Step, atMs: number): void {
+	addPass(n);
+	if (step.clipped) takeMagnet(n, step);
+	if (n.slow.unknownWhy !== null) heardAgain(g, n, atMs);
+	n.fast.decidedAtMs = atMs;
+	for (const m of n.near) {
+		if (m.slow.pending === null) continue;
+		m.fast.decidedAtMs = atMs;
+		resolve(g, m, atMs, 'neighbour');
+	}
+}
+
+function makeStep(n: Node, old: [number, number, number], atMs: number): Step {
+	const { fast, params } = n;
+	const { level } = fast;
+	const j: [number, number, number] = [level[0] - old[0], level[1] - old[1], level[2] - old[2]];
+	const burst = fast.openNewAtMs < atMs && atMs - fast.openNewAtMs <= (fast.openN - 1) * BURST_MS;
+	const fromMs = burst
+		? Math.max(fast.openOldAtMs, fast.openNewAtMs - params.onsetS * MS_PER_S)
+		: fast.openOldAtMs;
+	const crossed = fast.crossAtMs > 0 && burst;
+	const sharpFromMs = crossed ? Math.max(fast.crossOldAtMs, fromMs) : fromMs;
+	const untilMs = crossed ? fast.crossAtMs : fast.openNewAtMs;
+	const time = crossed || burst ? untilMs : (sharpFromMs + untilMs) / 2;
+	const spread = crossed || burst ? untilMs - sharpFromMs : (untilMs - sharpFromMs) / 2;
+	return {
+		j,
+		fromMs,
+		toMs: fast.boxFromMs,
+		atMs: Math.round(time),
+		uncertaintyS: Math.max(1, Math.round(spread / MS_PER_S)),
+		settledMs: atMs,
+		gapS: fast.openGap === 1 ? Math.round((fast.boxFromMs - fast.openOldAtMs) / MS_PER_S) : 0,
+		riseS: burst
+			? Math.max(1, Math.round((fast.boxFromMs - fromMs) / MS_PER_S))
+			: Math.round((fast.openNewAtMs - fast.openOldAtMs) / MS_PER_S),
+		seen: fast.openN,
+		clipped: fast.openClipped === 1,
+		became: 'pending',
+		before: null
+	};
+}
