@@ -1,4 +1,4 @@
-import type { Sent } from './node-state';
+import type { MessageLog } from './message-log';
 import type { Random } from './random';
 
 /** What lies between node and server. */
@@ -33,9 +33,10 @@ export interface Outage {
 	toMs: number;
 }
 
-/** A message as it reaches the server. */
-export interface Delivered extends Sent {
-	arrivedAtMs: number;
+/** What reached the server of one node, in the order in which the node sent it: place in its log, time of arrival. */
+export interface Deliveries {
+	message: number[];
+	arrivedAtMs: number[];
 }
 
 export interface DeliveryFacts {
@@ -64,46 +65,58 @@ export function drawOutages(rng: Random, network: Network, fromMs: number, toMs:
 	}
 }
 
-/** Carries one node's messages to the server; `mustArrive` are never lost (commissioning). */
+/** Carries one node's messages to the server; those before `surelyUntilMs` are never lost (commissioning). */
 export function deliver(
-	sent: readonly Sent[],
+	log: MessageLog,
 	network: Network,
 	outages: readonly Outage[],
-	mustArriveUntilMs: number,
+	surelyUntilMs: number,
 	rng: Random,
 	facts: DeliveryFacts
-): Delivered[] {
-	const delivered: Delivered[] = [];
-	let outageNext = 0;
+): Deliveries {
+	const deliveries: Deliveries = { message: [], arrivedAtMs: [] };
+	const arrive = (message: number, atMs: number) => {
+		deliveries.message.push(message);
+		deliveries.arrivedAtMs.push(Math.round(atMs));
+	};
+	let next = 0;
 	let backlog = 0;
-	for (const message of sent) {
+	for (let i = 0; i < log.count; i++) {
+		const sentAtMs = log.sentAtMs.values[i]!;
+		const sure = sentAtMs < surelyUntilMs;
 		facts.sent++;
-		const spared = message.sentAtMs < mustArriveUntilMs;
-		if (!spared && rng.chance(network.lossShare)) {
+		if (!sure && rng.chance(network.lossShare)) {
 			facts.lost++;
 			continue;
 		}
-		let arrivedAtMs = message.sentAtMs + Math.round(rng.between(40, 600));
-		while ((outages[outageNext]?.toMs ?? Infinity) <= message.sentAtMs) {
-			outageNext++;
+		while ((outages[next]?.toMs ?? Infinity) <= sentAtMs) {
+			next++;
 			backlog = 0;
 		}
-		const outage = outages[outageNext];
-		if (outage !== undefined && outage.fromMs <= message.sentAtMs) {
-			arrivedAtMs = Math.round(outage.toMs + backlog++ * BACKLOG_STEP_MS);
+		const outage = outages[next];
+		let atMs = sentAtMs + rng.between(40, 600);
+		if (outage !== undefined && outage.fromMs <= sentAtMs) {
+			atMs = outage.toMs + backlog++ * BACKLOG_STEP_MS;
 			facts.backlog++;
-		} else if (!spared && rng.chance(network.reorderShare)) {
-			arrivedAtMs += Math.round(rng.between(1000, network.reorderMs));
-			facts.reordered++;
-		} else if (!spared && rng.chance(network.dayLateShare)) {
-			arrivedAtMs += Math.round(DAY_MS * rng.between(0.8, 1.2));
-			facts.late++;
-		}
-		delivered.push({ ...message, arrivedAtMs });
+		} else if (!sure) atMs += detourMs(network, rng, facts);
+		arrive(i, atMs);
 		if (rng.chance(network.duplicateShare)) {
 			facts.duplicated++;
-			delivered.push({ ...message, arrivedAtMs: arrivedAtMs + Math.round(rng.between(5, 90_000)) });
+			arrive(i, atMs + rng.between(5, 90_000));
 		}
 	}
-	return delivered;
+	return deliveries;
+}
+
+function detourMs(network: Network, rng: Random, facts: DeliveryFacts): number {
+	const draw = rng.uniform();
+	if (draw < network.reorderShare) {
+		facts.reordered++;
+		return rng.between(1000, network.reorderMs);
+	}
+	if (draw < network.reorderShare + network.dayLateShare) {
+		facts.late++;
+		return DAY_MS * rng.between(0.8, 1.2);
+	}
+	return 0;
 }

@@ -65,11 +65,12 @@ export const freshFilm = (atMs: number): Film => ({
 export function ageFilm(film: Film, atMs: number): void {
 	const lossMs = Math.min(atMs, film.lossUntilMs) - film.atMs;
 	const driftMs = Math.min(atMs, film.offsetUntilMs) - film.atMs;
+	film.atMs = atMs;
+	if (lossMs <= 0 && driftMs <= 0) return;
 	for (let axis = 0; axis < 3; axis++) {
 		if (lossMs > 0) film.gain[axis]! += film.lossPerMs[axis]! * lossMs;
 		if (driftMs > 0) film.offsetExtraMg[axis]! += film.offsetPerMs[axis]! * driftMs;
 	}
-	film.atMs = atMs;
 }
 
 /** A pulse restores gain and direction and leaves the offset alone (method 2). */
@@ -113,18 +114,23 @@ export function magnetFieldMg(film: Film, atMs: number): number {
 }
 
 /**
- * What the bridge says, mG, before noise: r = p m B (1 + κ ΔT) + O + k ΔT (method 2, check-values 5d).
+ * What one axis of the bridge says, mG, before noise: r = p m B (1 + κ ΔT) + O + k ΔT (method 2, check-values 5d).
  * `polarity` is the film's magnetization after the last pulse.
  */
-export function bridgeMg(sensor: Sensor, film: Film, fieldMg: Vec3, tempC: number): Vec3 {
+export function bridgeMg(
+	sensor: Sensor,
+	film: Film,
+	fieldMg: Vec3,
+	tempC: number,
+	axis: 0 | 1 | 2
+): number {
 	const deltaC = tempC - sensor.referenceC;
-	const sense = film.polarity * (1 + sensor.kappaPerC * deltaC);
-	const axis = (i: 0 | 1 | 2) =>
-		film.gain[i] * sense * fieldMg[i] +
-		sensor.offsetMg[i] +
-		film.offsetExtraMg[i] +
-		sensor.offsetPerC[i] * deltaC;
-	return [axis(0), axis(1), axis(2)];
+	return (
+		film.gain[axis] * film.polarity * (1 + sensor.kappaPerC * deltaC) * fieldMg[axis] +
+		sensor.offsetMg[axis] +
+		film.offsetExtraMg[axis] +
+		sensor.offsetPerC[axis] * deltaC
+	);
 }
 
 /** mG at the bridge → signed counts, held at the ends of the range. */

@@ -1,5 +1,6 @@
-import { deliver, drawOutages, type Delivered, type Outage } from './delivery';
+import { deliver, drawOutages, type Deliveries, type Outage } from './delivery';
 import { kerb, lot } from './grounds';
+import { append, newLog, type MessageLog } from './message-log';
 import { advanceNode, setHabit } from './node';
 import { nodeConfig, noteEvents } from './node-config';
 import { newNode, type Sent } from './node-state';
@@ -25,8 +26,9 @@ export interface Generated {
 	scenario: Scenario;
 	seed: number;
 	plan: SitePlan;
-	/** What reached the server, in order of arrival. */
-	messages: Delivered[];
+	/** What each node sent, and what of it reached the server when; by node index. */
+	logs: MessageLog[];
+	deliveries: Deliveries[];
 	acts: PlannedAct[];
 	truth: Truth;
 }
@@ -46,11 +48,11 @@ const NEVER_MG = 65_535;
 /**
  * Invents a site's life after a scenario, wholly determined by the seed, without a network:
  *
- *   plan      geometry; `plan.nodes[i]` has metres east and north, `plan.bays[node.bayIndex].row`
- *   messages  frames as on the wire (boot, seq, t, rows of counts, polarity, temperatures), with
- *             `arrivedAtMs`, in order of arrival; `rowItems` (row-items.ts) turns them into rows
- *   acts      place at the start, accept when learned
- *   truth     stays per bay, everything else that happened, and figures of what the data hold
+ *   plan    geometry; `plan.nodes[i]` has metres east and north, `plan.bays[node.bayIndex].row`
+ *   logs    what each node sent (frames rebuilt by `frameOf`); `inEventOrder` and `inArrivalOrder`
+ *           (items.ts) give rows {nodeIndex, atMs, boot, seq, row, counts, polarity, tempC} and pulses
+ *   acts    place at the start, accept when learned
+ *   truth   stays per bay, everything else that happened, and figures of what the data hold
  *
  * The first 12 minutes are commissioning; grade from `truth.judgedFromMs` on.
  */
@@ -65,16 +67,15 @@ export function generate(scenario: Scenario, seed: number): Generated {
 	const { acts, underVehicle } = commissioning(scenario, seed, plan);
 	fillBays(world, scenario, seed, truth, underVehicle);
 	fillLanes(world, scenario, seed, truth);
-	const messages = plan.nodes.flatMap((_, index) => {
-		const sent = liveNode(world, scenario, seed, index, truth);
+	const logs = plan.nodes.map((_, index) => liveNode(world, scenario, seed, index, truth));
+	const deliveries = logs.map((log, index) => {
 		const rng = random(seed, 'network', index);
 		const outages = drawOutages(rng, scenario.network, judgedFromMs, toMs);
 		noteOutages(truth, index, outages);
-		return deliver(sent, scenario.network, outages, judgedFromMs, rng, truth.facts);
+		return deliver(log, scenario.network, outages, judgedFromMs, rng, truth.facts);
 	});
-	messages.sort((a, b) => a.arrivedAtMs - b.arrivedAtMs);
 	truth.incidents.sort((a, b) => a.atMs - b.atMs);
-	return { scenario, seed, plan, messages, acts, truth };
+	return { scenario, seed, plan, logs, deliveries, acts, truth };
 }
 
 function noteOutages(truth: Truth, nodeIndex: number, outages: readonly Outage[]): void {
@@ -98,19 +99,19 @@ function commissioning(scenario: Scenario, seed: number, plan: SitePlan) {
 	return { acts, underVehicle };
 }
 
-/** One node's whole life; the messages in the order in which it sent them. */
+/** One node's whole life; what it sent, in its order. */
 function liveNode(
 	world: World,
 	scenario: Scenario,
 	seed: number,
 	index: number,
 	truth: Truth
-): Sent[] {
+): MessageLog {
 	const config = nodeConfig(world, scenario, seed, index, truth);
 	noteEvents(truth, config);
 	const node = newNode(config, world.fields[index]!, truth.fromMs);
-	const sent: Sent[] = [];
-	const out = (message: Sent) => sent.push(message);
+	const log = newLog(config.clockOffsetMs);
+	const out = (sent: Sent) => append(log, sent);
 	advanceNode(node, truth.fromMs + LEARNING_MS, out);
 	const quietMg = Math.max(LEAST_DELTA_MG, Math.ceil(DELTA_SIGMAS * config.sensor.noiseMg));
 	const deltaMg = scenario.network.heartbeatsOnly ? NEVER_MG : quietMg;
@@ -121,6 +122,6 @@ function liveNode(
 		truth.facts.coldestC = Math.min(truth.facts.coldestC, tempC);
 		truth.facts.warmestC = Math.max(truth.facts.warmestC, tempC);
 	}
-	for (const { frame } of sent) if (frame.kind === 'reading') truth.facts.rows += frame.rows.length;
-	return sent;
+	truth.facts.rows += log.rows;
+	return log;
 }

@@ -106,13 +106,19 @@ export function addStorm(series: GeomagneticSeries, storm: Storm, rng: Random): 
 	}
 }
 
-/** Value at a time, straight between minutes; the ends hold. */
-export function variationAt(series: GeomagneticSeries, atMs: number): Vec3 {
+/** Adds the value at a time to `sum`, straight between minutes; the ends hold. */
+export function addVariation(
+	series: GeomagneticSeries,
+	atMs: number,
+	sum: [number, number, number]
+): void {
+	const { north, east, down } = series;
 	const position = (atMs - series.startMs) / MINUTE_MS;
-	const last = series.north.length - 1;
+	const last = north.length - 1;
 	const i = Math.min(last, Math.max(0, Math.floor(position)));
 	const j = Math.min(last, i + 1);
 	const share = Math.min(1, Math.max(0, position - i));
-	const between = (values: Float64Array) => values[i]! + (values[j]! - values[i]!) * share;
-	return [between(series.north), between(series.east), between(series.down)];
+	sum[0] += north[i]! + (north[j]! - north[i]!) * share;
+	sum[1] += east[i]! + (east[j]! - east[i]!) * share;
+	sum[2] += down[i]! + (down[j]! - down[i]!) * share;
 }

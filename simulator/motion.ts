@@ -1,8 +1,7 @@
 import type { Vec3 } from '$lib/magnetics/vector';
 import type { Path, Pose } from './path';
 import { poseAt } from './path';
-import type { Vehicle } from './vehicle';
-import { vehicleFieldMg } from './vehicle';
+import { addVehicleFieldMg, type Sum3, type Vehicle } from './vehicle';
 
 /** A vehicle driving along a path; a departure drives its arrival's path backwards in time. */
 export interface Motion {
@@ -20,6 +19,9 @@ export interface Standing {
 	fromMs: number;
 	toMs: number;
 }
+
+const LOOK_MS = 333;
+const LOOK_REACH_M2 = 100;
 
 export const newPose = (): Pose => ({ eastM: 0, northM: 0, noseE: 0, noseN: 1 });
 
@@ -45,10 +47,16 @@ export function endPose(path: Path): Pose {
 	return pose;
 }
 
-/** Field of a moving vehicle at a point [north, east, down], mG [north, east, down]. */
-export function motionFieldMg(move: Motion, atMs: number, atNedM: Vec3, scratch: Pose): Vec3 {
+/** Adds a moving vehicle's field at a point [north, east, down] to `sum`, mG. */
+export function addMotionFieldMg(
+	move: Motion,
+	atMs: number,
+	atNedM: Vec3,
+	scratch: Pose,
+	sum: Sum3
+): void {
 	motionPose(move, atMs, scratch);
-	return vehicleFieldMg(move.vehicle, scratch, atNedM);
+	addVehicleFieldMg(move.vehicle, scratch, atNedM, sum);
 }
 
 /** Least distance from a point to the vehicle's centre on a path, metres. */
@@ -65,13 +73,17 @@ export function nearestM(path: Path, eastM: number, northM: number): number {
 	return nearest;
 }
 
-/** Largest field of a moving vehicle at a point while it drives, mG, sampled every quarter second, and how long over half of it. */
-export function passHeight(move: Motion, atNedM: Vec3): { peakMg: number; overHalfS: number } {
+/** Largest field of a moving vehicle at a point while it drives, mG, looked at every third of a second. */
+export function passHeightMg(move: Motion, atNedM: Vec3): number {
 	const scratch = newPose();
-	const sizes: number[] = [];
-	for (let atMs = move.fromMs; atMs <= move.toMs; atMs += 250) {
-		sizes.push(Math.hypot(...motionFieldMg(move, atMs, atNedM, scratch)));
+	let peakMg = 0;
+	for (let atMs = move.fromMs; atMs <= move.toMs; atMs += LOOK_MS) {
+		motionPose(move, atMs, scratch);
+		const [dN, dE] = [scratch.northM - atNedM[0], scratch.eastM - atNedM[1]];
+		if (dN * dN + dE * dE > LOOK_REACH_M2) continue;
+		const sum: Sum3 = [0, 0, 0];
+		addVehicleFieldMg(move.vehicle, scratch, atNedM, sum);
+		peakMg = Math.max(peakMg, Math.hypot(...sum));
 	}
-	const peakMg = Math.max(0, ...sizes);
-	return { peakMg, overHalfS: sizes.filter((size) => size > peakMg / 2).length / 4 };
+	return peakMg;
 }

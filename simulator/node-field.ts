@@ -1,8 +1,15 @@
 import type { Vec3 } from '$lib/magnetics/vector';
-import { variationAt, type GeomagneticSeries } from './geomagnetic';
-import { motionFieldMg, nearestM, newPose, type Motion, type Standing } from './motion';
+import { addVariation, type GeomagneticSeries } from './geomagnetic';
+import {
+	addMotionFieldMg,
+	nearestM,
+	newPose,
+	passHeightMg,
+	type Motion,
+	type Standing
+} from './motion';
 import type { NodePlan } from './site-plan';
-import { vehicleFieldMg } from './vehicle';
+import { vehicleFieldMg, type Sum3 } from './vehicle';
 
 /** A lasting change of field at the node, [north, east, down] mG. */
 interface Level {
@@ -34,17 +41,32 @@ export interface NodeField {
 	levels: Level[];
 	levelNext: number;
 	levelSum: [number, number, number];
-	motions: Motion[];
+	motions: Near[];
 	motionNext: number;
-	active: Motion[];
+	active: Near[];
+	/** How many of the active ones a node's own delta could notice. */
+	waking: number;
+	/** The last field asked for, node's axes, mG. */
+	now: Sum3;
+	/** The same as [north, east, down]; working space. */
+	world: Sum3;
+}
+
+/** A vehicle moving near the node, and whether it moves the field enough to wake it. */
+interface Near {
+	move: Motion;
+	wakes: boolean;
 }
 
 /** Beyond these a vehicle moves a node by less than noise; they bound the work per vehicle. */
 const STANDING_REACH_M = 14;
 const MOVING_REACH_M = 8;
 const LEAST_LEVEL_MG = 0.02;
+/** Half the smallest delta of a reporting habit: less cannot start a burst. */
+const WAKE_MG = 4;
 /** The node lies this far under the surface. */
 const DEPTH_M = 0.03;
+const KEPT = 2000;
 const RADIANS = Math.PI / 180;
 
 /** Turn about the vertical to the node's heading, then pitch and roll of the housing. */
@@ -74,7 +96,10 @@ export function nodeField(node: NodePlan, quietMg: Vec3, variation: GeomagneticS
 		levelSum: [0, 0, 0],
 		motions: [],
 		motionNext: 0,
-		active: []
+		active: [],
+		waking: 0,
+		now: [0, 0, 0],
+		world: [0, 0, 0]
 	};
 }
 
@@ -86,12 +111,14 @@ function insertByTime<T>(list: T[], item: T, timeOf: (item: T) => number): void 
 	list.splice(i, 0, item);
 }
 
-/** False when the vehicle never comes near enough to be noticed. */
-export function addMotion(field: NodeField, move: Motion): boolean {
+/** The vehicle's largest field at the node, mG; 0 when it never comes near. */
+export function addMotion(field: NodeField, move: Motion): number {
 	const [north, east] = field.positionNedM;
-	if (nearestM(move.path, east, north) > MOVING_REACH_M) return false;
-	insertByTime(field.motions, move, (m) => m.fromMs);
-	return true;
+	if (nearestM(move.path, east, north) > MOVING_REACH_M) return 0;
+	const peakMg = passHeightMg(move, field.positionNedM);
+	const wakes = peakMg > WAKE_MG;
+	insertByTime(field.motions, { move, wakes }, (near) => near.move.fromMs);
+	return peakMg;
 }
 
 /** The level that a standing vehicle makes at the node, mG; zero when out of reach. */
@@ -108,32 +135,49 @@ export function addStanding(field: NodeField, standing: Standing): number {
 	return size;
 }
 
-/** When a vehicle next begins to move near the node; Infinity when none is known. */
-export const nextMotionMs = (field: NodeField): number =>
-	field.motions[field.motionNext]?.fromMs ?? Infinity;
+/** When a vehicle next begins to move noticeably near the node; Infinity when none is known. */
+export function nextMotionMs(field: NodeField): number {
+	for (let i = field.motionNext; i < field.motions.length; i++) {
+		const near = field.motions[i]!;
+		if (near.wakes) return near.move.fromMs;
+	}
+	return Infinity;
+}
 
-function advance(field: NodeField, atMs: number): void {
+function advanceLevels(field: NodeField, atMs: number): void {
 	for (;;) {
 		const level = field.levels[field.levelNext];
-		if (level === undefined || level.atMs > atMs) break;
+		if (level === undefined || level.atMs > atMs) return;
 		field.levelNext++;
-		for (let axis = 0; axis < 3; axis++) field.levelSum[axis]! += level.deltaMg[axis]!;
+		field.levelSum[0] += level.deltaMg[0];
+		field.levelSum[1] += level.deltaMg[1];
+		field.levelSum[2] += level.deltaMg[2];
 	}
+}
+
+function advanceMotions(field: NodeField, atMs: number): void {
 	for (;;) {
-		const move = field.motions[field.motionNext];
-		if (move === undefined || move.fromMs > atMs) break;
+		const near = field.motions[field.motionNext];
+		if (near === undefined || near.move.fromMs > atMs) break;
 		field.motionNext++;
-		field.active.push(move);
+		field.active.push(near);
+		if (near.wakes) field.waking++;
 	}
-	if (field.active.some((move) => move.toMs <= atMs)) {
-		field.active = field.active.filter((move) => move.toMs > atMs);
+	for (let i = field.active.length - 1; i >= 0; i--) {
+		const near = field.active[i]!;
+		if (near.move.toMs > atMs) continue;
+		field.active.splice(i, 1);
+		if (near.wakes) field.waking--;
 	}
-	// What lies behind is let go, so that a live simulator does not grow.
-	if (field.motionNext > 2000) {
+}
+
+/** What lies behind is let go, so that a live simulator does not grow. */
+function forget(field: NodeField): void {
+	if (field.motionNext > KEPT) {
 		field.motions.splice(0, field.motionNext);
 		field.motionNext = 0;
 	}
-	if (field.levelNext > 2000) {
+	if (field.levelNext > KEPT) {
 		field.levels.splice(0, field.levelNext);
 		field.levelNext = 0;
 	}
@@ -141,23 +185,21 @@ function advance(field: NodeField, atMs: number): void {
 
 const scratch = newPose();
 
-/** True field in the node's axes, mG. Moves the node's place in time: never ask for an earlier time. */
-export function fieldMg(field: NodeField, atMs: number): Vec3 {
-	advance(field, atMs);
-	const varied = variationAt(field.variation, atMs);
-	let north = field.quietMg[0] + varied[0] + field.levelSum[0];
-	let east = field.quietMg[1] + varied[1] + field.levelSum[1];
-	let down = field.quietMg[2] + varied[2] + field.levelSum[2];
-	for (const move of field.active) {
-		const moving = motionFieldMg(move, atMs, field.positionNedM, scratch);
-		north += moving[0];
-		east += moving[1];
-		down += moving[2];
+/** Writes the true field in the node's axes into `field.now`, mG. Never ask for an earlier time. */
+export function lookAt(field: NodeField, atMs: number): void {
+	advanceLevels(field, atMs);
+	advanceMotions(field, atMs);
+	forget(field);
+	const { world, now, rotation, quietMg, levelSum, surroundingsMg } = field;
+	world[0] = quietMg[0] + levelSum[0];
+	world[1] = quietMg[1] + levelSum[1];
+	world[2] = quietMg[2] + levelSum[2];
+	addVariation(field.variation, atMs, world);
+	for (const { move } of field.active) {
+		addMotionFieldMg(move, atMs, field.positionNedM, scratch, world);
 	}
-	const [x, y, z] = field.rotation;
-	return [
-		x[0] * north + x[1] * east + x[2] * down + field.surroundingsMg[0],
-		y[0] * north + y[1] * east + y[2] * down + field.surroundingsMg[1],
-		z[0] * north + z[1] * east + z[2] * down + field.surroundingsMg[2]
-	];
+	for (let axis = 0; axis < 3; axis++) {
+		const row = rotation[axis]!;
+		now[axis] = row[0] * world[0] + row[1] * world[1] + row[2] * world[2] + surroundingsMg[axis]!;
+	}
 }

@@ -2,7 +2,6 @@ import type { AckFrame, Counts3, FrameCommon, ReadingFrame, UpFrame } from '$lib
 import { healFilm } from './film';
 import { sample } from './node-sample';
 import type { NodeState, Sent } from './node-state';
-import { temperatureC } from './temperature';
 
 export type Out = (sent: Sent) => void;
 export type PulseVerb = 'set' | 'reset' | 'pair';
@@ -44,9 +43,8 @@ export const pulseOf = (node: NodeState, atMs: number) => ({
 });
 
 /** A cell holds its voltage until nearly empty; cold lowers it under load. */
-export function batteryMv(node: NodeState, atMs: number): number {
+export function batteryMv(node: NodeState, atMs: number, tempC: number): number {
 	const { battery } = node.config;
-	const tempC = temperatureC(node.config.course, atMs);
 	const pastEndDays = Math.max(0, (atMs - battery.endsFromMs) / 86_400_000);
 	const coldMv = tempC < 5 ? (5 - tempC) * 4 : 0;
 	return Math.round(Math.max(2300, battery.fullMv - coldMv - 60 * pastEndDays));
@@ -57,32 +55,33 @@ export const rssiDbm = (node: NodeState): number => Math.round(-78 + 5 * node.rn
 /** Sends the pending rows as one reading. */
 export function flush(node: NodeState, sentAtMs: number, out: Out): void {
 	const rows = node.pending;
-	const first = rows[0];
-	if (first === undefined) return;
-	const last = rows[rows.length - 1]!;
-	const temps = last.atMs - first.atMs > TEMPS_SPAN_MS;
+	const last = rows[rows.length - 1];
+	if (last === undefined) return;
+	const { tempDc } = last;
+	// Short messages carry one temperature; the rows' own would only cost bytes.
+	if (last.dtMs <= TEMPS_SPAN_MS) for (const row of rows) row.tempDc = null;
+	const firstAtMs = node.pendingFromMs;
+	// Written out: spreading the common keys costs ten times as much, and this is the hot path.
 	const frame: ReadingFrame = {
-		...common(node, first.atMs, sentAtMs),
 		kind: 'reading',
-		rows: rows.map((row) => ({
-			dtMs: row.atMs - first.atMs,
-			counts: row.counts,
-			tempDc: temps ? row.tempDc : null
-		})),
+		boot: node.boot,
+		seq: node.seq++,
+		t: onNodeClock(node, firstAtMs),
+		sentMs: node.config.clockOffsetMs === null ? null : onNodeClock(node, sentAtMs),
+		unsigned: false,
+		rows,
 		polarity: node.film.polarity,
-		tempDc: last.tempDc,
-		batteryMv: batteryMv(node, sentAtMs),
+		tempDc,
+		batteryMv: batteryMv(node, sentAtMs, node.tempDc / 10),
 		rssiDbm: rssiDbm(node),
 		pulse: pulseOf(node, sentAtMs),
 		tx: node.seq % 100 === 0 ? { frames: node.frames, radioMs: node.radioMs } : null
 	};
 	node.pending = [];
-	send(node, frame, first.atMs, sentAtMs, out);
+	send(node, frame, firstAtMs, sentAtMs, out);
 }
 
-function measure(node: NodeState, atMs: number): { counts: Counts3; tempDc: number } {
-	return sample(node, atMs, PULSE_SAMPLES);
-}
+const measure = (node: NodeState, atMs: number): Counts3 => sample(node, atMs, PULSE_SAMPLES);
 
 /** Fires the pulses of a verb and sends `up/pair` for a pair; for set and reset the caller's ack carries before and after. */
 export function firePulse(
@@ -108,20 +107,20 @@ export function firePulse(
 		const frame: UpFrame = {
 			...common(node, atMs, atMs),
 			kind: 'pair',
-			set: set.counts,
-			reset: reset.counts,
-			before: { polarity: held, counts: before.counts },
-			after: after.counts,
-			tempDc: after.tempDc,
-			batteryMv: batteryMv(node, atMs),
+			set,
+			reset,
+			before: { polarity: held, counts: before },
+			after,
+			tempDc: node.tempDc,
+			batteryMv: batteryMv(node, atMs, node.tempDc / 10),
 			commandId,
 			pulse: pulseOf(node, atMs),
 			rssiDbm: rssiDbm(node)
 		};
 		send(node, frame, atMs, atMs, out);
 	}
-	node.published = sample(node, atMs, PULSE_SAMPLES).rawMg;
-	return { before: { polarity: held, counts: before.counts }, after: after.counts };
+	node.published = measure(node, atMs);
+	return { before: { polarity: held, counts: before }, after };
 }
 
 /** The answer to a command (protocol, `up/ack`). */
@@ -163,17 +162,17 @@ export function bootUp(node: NodeState, atMs: number, cause: string, out: Out): 
 		firmware: node.config.firmware,
 		profile: node.config.profileCode,
 		cause,
-		tempDc: after.tempDc,
-		batteryMv: batteryMv(node, atMs),
+		tempDc: node.tempDc,
+		batteryMv: batteryMv(node, atMs, node.tempDc / 10),
 		// A watchdog keeps memory, so the node still knows its polarity; after lost power it does not.
-		before: { polarity: cause === 'watchdog' ? held : 0, counts: before.counts },
-		after: after.counts,
+		before: { polarity: cause === 'watchdog' ? held : 0, counts: before },
+		after,
 		pulse: pulseOf(node, atMs),
 		habit: { periodS: node.habit.periodS, deltaMg: node.habit.deltaMg },
 		tx: { frames: 0, radioMs: 0 },
 		rssiDbm: rssiDbm(node)
 	};
 	send(node, frame, atMs, atMs, out);
-	node.published = sample(node, atMs, PULSE_SAMPLES).rawMg;
+	node.published = measure(node, atMs);
 	node.heartbeatMs = Math.round(atMs + 500);
 }

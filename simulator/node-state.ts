@@ -1,4 +1,3 @@
-import type { Vec3 } from '$lib/magnetics/vector';
 import type { Counts3, UpFrame } from '$lib/wire/types';
 import { freshFilm, type Film, type NodeEvent, type Sensor } from './film';
 import type { NodeField } from './node-field';
@@ -52,10 +51,12 @@ export interface Sent {
 	firstAtMs: number;
 }
 
+/** A row waiting for its message. */
 export interface Row {
-	atMs: number;
+	/** After `pendingFromMs`. */
+	dtMs: number;
 	counts: Counts3;
-	tempDc: number;
+	tempDc: number | null;
 }
 
 /** Everything a node remembers while it runs. */
@@ -70,11 +71,15 @@ export interface NodeState {
 	habit: Habit;
 	heartbeatMs: number;
 	sampledMs: number;
-	published: Vec3;
-	burst: { anchor: Vec3; stillSinceMs: number } | null;
+	/** Counts last published: what delta is measured from. */
+	published: Counts3;
+	burst: { anchor: Counts3; stillSinceMs: number } | null;
+	/** Temperature of the last sample, 0.1 °C. */
+	tempDc: number;
 	/** Sampled finely until then although nothing moves (after a sudden event). */
 	fineUntilMs: number;
 	pending: Row[];
+	pendingFromMs: number;
 	eventNext: number;
 	pulses: number;
 	pulsedMs: number;
@@ -98,7 +103,9 @@ export function newNode(config: NodeConfig, field: NodeField, atMs: number): Nod
 		published: [0, 0, 0],
 		burst: null,
 		fineUntilMs: -Infinity,
+		tempDc: 0,
 		pending: [],
+		pendingFromMs: atMs,
 		eventNext: 0,
 		pulses: 0,
 		pulsedMs: atMs,

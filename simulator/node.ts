@@ -1,8 +1,8 @@
-import { subtract, magnitude } from '$lib/magnetics/vector';
+import type { Counts3 } from '$lib/wire/types';
 import { ageFilm, strikeFilm, type NodeEvent } from './film';
 import { nextMotionMs, rotationOf } from './node-field';
 import { bootUp, firePulse, flush, sendAck, type Out } from './node-frames';
-import { sample } from './node-sample';
+import { apartMg, sample } from './node-sample';
 import type { NodeState } from './node-state';
 
 /** Protocol, 'Reporting habit': fast until the field has been still for this long. */
@@ -11,7 +11,7 @@ const AFTER_EVENT_FINE_MS = 2000;
 
 /** True while the node must look at the field several times a second. */
 const isFine = (node: NodeState): boolean =>
-	node.burst !== null || node.field.active.length > 0 || node.atMs < node.fineUntilMs;
+	node.burst !== null || node.field.waking > 0 || node.atMs < node.fineUntilMs;
 
 function nextAtMs(node: NodeState): number {
 	const event = node.config.events[node.eventNext]?.atMs ?? Infinity;
@@ -59,15 +59,15 @@ function befall(node: NodeState, event: NodeEvent, out: Out): void {
 }
 
 /** Follows a burst: starts it past delta, ends it when the field was still for 5 s. True = this sample is published. */
-function inBurst(node: NodeState, atMs: number, rawMg: NodeState['published']): boolean {
+function inBurst(node: NodeState, atMs: number, counts: Counts3): boolean {
 	const { burst, habit } = node;
 	if (burst === null) {
-		if (magnitude(subtract(rawMg, node.published)) <= habit.deltaMg) return false;
-		node.burst = { anchor: rawMg, stillSinceMs: atMs };
+		if (apartMg(node, counts, node.published) <= habit.deltaMg) return false;
+		node.burst = { anchor: counts, stillSinceMs: atMs };
 		return true;
 	}
-	if (magnitude(subtract(rawMg, burst.anchor)) > habit.deltaMg) {
-		burst.anchor = rawMg;
+	if (apartMg(node, counts, burst.anchor) > habit.deltaMg) {
+		burst.anchor = counts;
 		burst.stillSinceMs = atMs;
 	}
 	if (atMs - burst.stillSinceMs >= STILL_MS) node.burst = null;
@@ -77,14 +77,15 @@ function inBurst(node: NodeState, atMs: number, rawMg: NodeState['published']): 
 function look(node: NodeState, atMs: number, out: Out): void {
 	const { batching } = node.config;
 	const due = atMs >= node.heartbeatMs;
-	const { counts, rawMg, tempDc } = sample(node, atMs);
+	const counts = sample(node, atMs);
 	node.sampledMs = atMs;
-	const fast = inBurst(node, atMs, rawMg);
+	const fast = inBurst(node, atMs, counts);
 	if (due) node.heartbeatMs += node.habit.periodS * 1000;
 	if (!due && !fast) return;
-	node.published = rawMg;
-	node.pending.push({ atMs, counts, tempDc });
-	const oldMs = atMs - node.pending[0]!.atMs;
+	node.published = counts;
+	if (node.pending.length === 0) node.pendingFromMs = atMs;
+	const oldMs = atMs - node.pendingFromMs;
+	node.pending.push({ dtMs: oldMs, counts, tempDc: node.tempDc });
 	// A lone heartbeat goes out at once unless the node gathers rows over more than a period.
 	const lone = node.burst === null && batching.holdMs < node.habit.periodS * 1000;
 	if (lone || node.pending.length >= batching.rows || oldMs >= batching.holdMs) {

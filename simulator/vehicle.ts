@@ -1,5 +1,4 @@
 import type { Vec3 } from '$lib/magnetics/vector';
-import { dipoleFieldMg } from '$lib/magnetics/dipole';
 import type { Pose } from './path';
 import type { Random } from './random';
 
@@ -22,6 +21,9 @@ export interface Vehicle {
 	lengthM: number;
 	dipoles: BodyDipole[];
 }
+
+/** A vector that is summed up in place. */
+export type Sum3 = [number, number, number];
 
 export type Build = 'car' | 'van';
 
@@ -60,29 +62,35 @@ export function drawVehicle(rng: Random, build: Build, earthUnit: Vec3): Vehicle
 	return { lengthM, dipoles };
 }
 
-/** Field of a vehicle in a pose at a point [north, east, down] in metres (ground = 0); mG, [north, east, down]. */
-export function vehicleFieldMg(vehicle: Vehicle, pose: Pose, atNedM: Vec3): Vec3 {
+/**
+ * Adds a vehicle's field in a pose at a point [north, east, down] in metres (ground = 0) to `sum`; mG,
+ * [north, east, down]. Millions of links are summed for a bench, so the dipole law of
+ * $lib/magnetics/dipole is written out here without vectors; a test holds the two together.
+ */
+export function addVehicleFieldMg(vehicle: Vehicle, pose: Pose, atNedM: Vec3, sum: Sum3): void {
 	const { noseE, noseN } = pose;
-	let north = 0;
-	let east = 0;
-	let down = 0;
 	for (const link of vehicle.dipoles) {
-		const linkE = pose.eastM + noseE * link.forwardM - noseN * link.leftM;
-		const linkN = pose.northM + noseN * link.forwardM + noseE * link.leftM;
 		const [f, l, u] = link.permanent;
-		const field = dipoleFieldMg(
-			[
-				link.induced[0] + noseN * f + noseE * l,
-				link.induced[1] + noseE * f - noseN * l,
-				link.induced[2] - u
-			],
-			[atNedM[0] - linkN, atNedM[1] - linkE, atNedM[2] + link.heightM]
-		);
-		north += field[0];
-		east += field[1];
-		down += field[2];
+		const mN = link.induced[0] + noseN * f + noseE * l;
+		const mE = link.induced[1] + noseE * f - noseN * l;
+		const mD = link.induced[2] - u;
+		const rN = atNedM[0] - (pose.northM + noseN * link.forwardM + noseE * link.leftM);
+		const rE = atNedM[1] - (pose.eastM + noseE * link.forwardM - noseN * link.leftM);
+		const rD = atNedM[2] + link.heightM;
+		const r2 = rN * rN + rE * rE + rD * rD;
+		const perR3 = 1 / (r2 * Math.sqrt(r2));
+		const along = (3 * (mN * rN + mE * rE + mD * rD)) / r2;
+		sum[0] += (along * rN - mN) * perR3;
+		sum[1] += (along * rE - mE) * perR3;
+		sum[2] += (along * rD - mD) * perR3;
 	}
-	return [north, east, down];
+}
+
+/** The same as a vector of its own. */
+export function vehicleFieldMg(vehicle: Vehicle, pose: Pose, atNedM: Vec3): Vec3 {
+	const sum: Sum3 = [0, 0, 0];
+	addVehicleFieldMg(vehicle, pose, atNedM, sum);
+	return sum;
 }
 
 /** The same vehicle with every moment multiplied. */

@@ -1,7 +1,7 @@
 import { earthField, decimalYear } from '$lib/magnetics/earth-field';
 import type { Vec3 } from '$lib/magnetics/vector';
 import type { GeomagneticSeries } from './geomagnetic';
-import { passHeight, type Motion, type Standing } from './motion';
+import type { Motion, Standing } from './motion';
 import { addMotion, addStanding, nodeField, type NodeField } from './node-field';
 import { random } from './random';
 import { motionsOf, type Visit } from './schedule';
@@ -99,8 +99,7 @@ export function addTraffic(
 	const incidents: Incident[] = [];
 	world.fields.forEach((field, nodeIndex) => {
 		for (const move of moves) {
-			if (!addMotion(field, move)) continue;
-			const { peakMg } = passHeight(move, field.positionNedM);
+			const peakMg = addMotion(field, move);
 			if (peakMg < NOTED_MG) continue;
 			const { fromMs, toMs } = move;
 			incidents.push({ nodeIndex, kind: 'pass', atMs: fromMs, toMs, mg: peakMg });
