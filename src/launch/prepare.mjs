@@ -7,10 +7,23 @@ import { delimiter, join, resolve } from 'node:path';
 export const ROOT = resolve(import.meta.dirname, '../..');
 const at = (...parts) => join(ROOT, ...parts);
 
-/** Ends the process with one sentence that a person can act on. */
-export function fail(sentence) {
-	console.error(`Lodekeep cannot start: ${sentence}`);
-	process.exit(1);
+/** What a person can mend, in one sentence. */
+class Refusal extends Error {}
+
+/** Ends the set-up with one sentence that a person can act on. */
+function fail(sentence) {
+	throw new Refusal(sentence);
+}
+
+/** Runs the set-up; a refusal ends the process in its own words. */
+export function orEnd(setUp) {
+	try {
+		setUp();
+	} catch (error) {
+		if (!(error instanceof Refusal)) throw error;
+		console.error(`Lodekeep cannot start: ${error.message}`);
+		process.exit(1);
+	}
 }
 
 /** One plain line about one part. */

@@ -12,11 +12,13 @@ import {
 
 process.chdir(ROOT);
 process.title = 'lodekeep start';
-checkNode();
 if (existsSync(join(ROOT, '.env'))) process.loadEnvFile(join(ROOT, '.env'));
-installDebian(process.env.DATABASE_URL ? { setpriv: 'util-linux' } : DATABASE_PACKAGES);
-installNpm();
-syncKit();
+orEnd(() => {
+	checkNode();
+	installDebian(process.env.DATABASE_URL ? { setpriv: 'util-linux' } : DATABASE_PACKAGES);
+	installNpm();
+	syncKit();
+});
 
 const { register } = await import('tsx/esm/api');
 register();
