@@ -1,0 +1,53 @@
+import { instance } from '$lib/server/api/instance';
+import { personIdOf } from '$lib/server/auth/reach';
+import { listed, outlines } from '$lib/server/store/queries/desk-sites';
+import * as looks from '$lib/server/store/queries/desk-looks';
+import { error } from '@sveltejs/kit';
+import { z } from 'zod';
+import type { PageServerLoad } from './$types';
+
+const polygon = z.object({
+	type: z.literal('Polygon'),
+	coordinates: z.array(z.array(z.array(z.number()).min(2))).min(1)
+});
+/** Under this the person has not been away. */
+const AWAY_MS = 600_000;
+
+/** Outlines and zones; the states follow by the page's own poll of the API. */
+export const load: PageServerLoad = async ({ locals, params, depends }) => {
+	depends('desk:plan');
+	const { reach } = locals;
+	const { db } = instance().store;
+	const site = (await listed(db, reach?.sites ?? new Set())).find(
+		({ slug }) => slug === params.site
+	);
+	if (reach === null || site === undefined)
+		error(404, 'This site is not there, or not among your sites.');
+	const drawn = await outlines(db, site.id);
+	return {
+		zones: drawn.zones,
+		outlines: drawn.bays.map(({ code, zone, geometry }) => ({
+			code,
+			zone,
+			ring: ringOf(geometry)
+		})),
+		since: await sinceLast(personIdOf(reach), site.id)
+	};
+};
+
+/** The exterior ring, to 8 decimals of a degree (about 1 mm). */
+function ringOf(geometry: string | null): [number, number][] | null {
+	if (geometry === null) return null;
+	const parsed = polygon.safeParse(JSON.parse(geometry));
+	const ring = parsed.success ? parsed.data.coordinates[0] : undefined;
+	return ring?.map(([lon, lat]) => [round(lon ?? 0), round(lat ?? 0)]) ?? null;
+}
+const round = (deg: number) => Math.round(deg * 1e8) / 1e8;
+
+async function sinceLast(personId: number | null, siteId: number) {
+	if (personId === null) return null;
+	const { db } = instance().store;
+	const last = await looks.last(db, personId, siteId);
+	if (last === null || Date.now() - last.atMs < AWAY_MS) return null;
+	return { atMs: last.atMs, ...(await looks.since(db, siteId, last.atMs, last.changeId)) };
+}
