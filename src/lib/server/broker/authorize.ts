@@ -7,7 +7,7 @@ const COMMAND_TOPIC = /^lodekeep\/1\/([A-Z0-9-]{4,32})\/down$/;
 const NOWHERE = 'lodekeep/nowhere';
 
 type Message = { topic: string; payload: string | Buffer; qos: number; retain: boolean };
-type Wish = { topic: string; qos: number };
+type Wish = { topic: string };
 type Answer<T> = (error: Error | null, value?: T | null) => void;
 
 /** What still passes aedes: the app's commands, subscriptions of nodes, last wills. */
@@ -44,7 +44,7 @@ export class Commands {
 	subscribe<T extends Wish>(client: Client, wish: T, done: Answer<T>): void {
 		const { role } = linkOf(client);
 		if (role?.kind === 'node' && wish.topic === `lodekeep/1/${role.serial}/down`) {
-			done(null, { ...wish, qos: Math.min(wish.qos, 1) });
+			done(null, wish);
 			return;
 		}
 		this.intake.refused('subscription');

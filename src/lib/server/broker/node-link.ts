@@ -138,10 +138,15 @@ export class NodeLink extends Duplex implements AnswerPort {
 	#work(nowMs: number): void {
 		const bytes = this.#waiting;
 		if (bytes === null || this.destroyed) return;
+		// A packet counts as heard when it is read, however long it waited here.
+		this.heardAtMs = nowMs;
 		const packet = this.#packet;
 		let at = 0;
 		while (!this.gated && this.#stage !== 'signing' && at < bytes.length) {
 			const found = packet.find(bytes, at, this.#maxBytes());
+			if (this.#stage === 'connect' && packet.type !== PACKET.connect) {
+				return this.refuse('malformed');
+			}
 			if (found === 'partial') break;
 			if (found !== 'whole') return this.refuse(found);
 			const { endAt } = packet;
@@ -171,7 +176,6 @@ export class NodeLink extends Duplex implements AnswerPort {
 	#take(bytes: Buffer, at: number, nowMs: number): Verdict {
 		const packet = this.#packet;
 		if (this.#stage === 'connect') {
-			if (packet.type !== PACKET.connect) return 'malformed';
 			if (!isLevel4(bytes, packet.bodyAt, packet.endAt)) {
 				this.socket.write(connack(1));
 				return 'level';
@@ -223,11 +227,12 @@ export class NodeLink extends Duplex implements AnswerPort {
 		}
 	}
 
-	/** Whether the keepalive has passed one and a half times (MQTT 3.1.1, 3.1.2.10) while it was read. */
+	/** Whether one and a half keepalives (MQTT 3.1.1, 3.1.2.10) passed without a packet while it was read on. */
 	isSilent(nowMs: number): boolean {
 		return (
 			this.#stage === 'open' &&
 			this.keepaliveMs > 0 &&
+			!this.gated &&
 			!this.socket.isPaused() &&
 			nowMs - this.heardAtMs > 1.5 * this.keepaliveMs
 		);
