@@ -1,6 +1,7 @@
 import { doubtIt } from './entries';
+import { isDeparture } from './judge';
 import { touch, triple, type Node, type Step, type Triple } from './state';
-import { offMg } from './thresholds';
+import { offMg, stillMg } from './thresholds';
 import { apart, set3, shift3, size3, type Axes } from './vec';
 
 const AXIS_SETS: readonly Triple[] = [
@@ -22,9 +23,25 @@ function carryFilmStep(n: Node, step: Step): void {
 	touch(n);
 }
 
-/** A step with a clipped row, or one past what the film bears, is a magnet's (method 4). */
+/** A strong field leaves at most this much of an axis. */
+const FILM_KEEPS = 0.95;
+
+/** Could a weakened or turned film alone have made this step? A vehicle makes some axis grow. */
+function filmCould(n: Node, step: Step): boolean {
+	if (n.slow.offset === null) return true;
+	const { level } = n.fast;
+	return ([0, 1, 2] as const).every(
+		(i) => Math.abs(level[i]) <= FILM_KEEPS * Math.abs(level[i] - step.j[i]) + stillMg(n)
+	);
+}
+
+/**
+ * A step with a clipped row, or one past what the film bears, is a magnet's (method 4), unless it is what
+ * only a vehicle can do: an axle close over the node may pass that limit too.
+ */
 export function takeMagnet(n: Node, step: Step): boolean {
-	if (!step.clipped) return false;
+	if (!step.clipped || !filmCould(n, step)) return false;
+	if (n.slow.state === 'occupied' && isDeparture(n, step)) return false;
 	carryFilmStep(n, step);
 	doubtIt(n, 'magnet', step.atMs);
 	n.slow.refreshWhy = 'a strong field met the film';

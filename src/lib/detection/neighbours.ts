@@ -84,18 +84,32 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 		null
 	);
 	const size = size3(step.j);
-	if (big !== null && size < n.params.echoRatio * size3(big.step.j) && !undoesOwn(n, step)) {
+	if (big !== null && isEchoOf(n, step, size, big) && !undoesOwn(n, step)) {
 		takeEcho(n, step, big);
 	} else if (!takeAisle(g, n, step, atMs)) judge(g, n, step, others, atMs);
 	keepInLedger(n, step);
 	for (const o of others) {
-		if (o.step.became !== 'pending' && size3(o.step.j) < n.params.echoRatio * size) {
+		if (o.step.became !== 'pending' && isEchoOf(o.node, o.step, size3(o.step.j), { node: n, step })) {
 			turnIntoEcho(g, o.node, o.step, n, step, atMs);
 		}
 	}
 	markUndone(n, step);
 	aisleEnds(n, step);
 	for (const m of n.near) resolve(g, m, atMs, 'neighbour');
+}
+
+/**
+ * Smaller than the neighbour's, and moved as it did: what a vehicle does to the next bay begins with its
+ * driving off, or ends with its coming to rest.
+ */
+function isEchoOf(n: Node, step: Step, size: number, big: Overlap): boolean {
+	if (size >= n.params.echoRatio * size3(big.step.j)) return false;
+	if (!step.burst || !big.step.burst) return true;
+	const earlyMs = n.params.echoEarlyS * MS_PER_S;
+	const lateMs = n.params.echoLateS * MS_PER_S;
+	const ends = step.toMs - big.step.toMs;
+	const begins = step.newMs - big.step.newMs;
+	return (ends <= lateMs && ends >= -earlyMs) || (begins >= -lateMs && begins <= earlyMs);
 }
 
 /** Nodes that a decision reads or may write: rows of theirs up to here come late from now on. */

@@ -271,6 +271,8 @@ function makeStep(n: Node, old: [number, number, number], atMs: number): Step {
 		j,
 		fromMs,
 		toMs: fast.boxFromMs,
+		newMs: fast.openNewAtMs,
+		burst,
 		atMs: Math.round(time),
 		uncertaintyS: Math.max(1, Math.round(spread / MS_PER_S)),
 		settledMs: atMs,
@@ -278,7 +280,6 @@ function makeStep(n: Node, old: [number, number, number], atMs: number): Step {
 		riseS: burst
 			? Math.max(1, Math.round((fast.boxFromMs - fromMs) / MS_PER_S))
 			: Math.round((fast.openNewAtMs - fast.openOldAtMs) / MS_PER_S),
-		seen: fast.openN,
 		clipped: fast.openClipped === 1,
 		became: 'pending',
 		before: null

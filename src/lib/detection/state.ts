@@ -77,14 +77,16 @@ export interface Step {
 	/** Bracket of the movement. */
 	fromMs: number;
 	toMs: number;
+	/** First reading off the old level. */
+	newMs: number;
+	/** Seen as it moved: its bracket is sharp. */
+	burst: boolean;
 	atMs: number;
 	uncertaintyS: number;
 	settledMs: number;
 	/** Silence it happened in, s; 0 = none. */
 	gapS: number;
 	riseS: number;
-	/** Readings seen while it moved: fewer than 3 = no burst. */
-	seen: number;
 	clipped: boolean;
 	became: 'pending' | 'nothing' | 'arrival' | 'departure' | 'echo' | 'aisle' | 'film';
 	/** State before it, to be put back when it proves an echo. */
