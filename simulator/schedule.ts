@@ -1,9 +1,9 @@
 import type { Vec3 } from '$lib/magnetics/vector';
 import { endPose, motion, type Motion, type Standing } from './motion';
-import { drawParking, parkingPath, type Path } from './path';
+import { drawParking, parkingPath, type Path, type Pose } from './path';
 import type { Random } from './random';
 import type { BayPlan, Lane } from './site-plan';
-import { vehicleOfSize, type Vehicle } from './vehicle';
+import { mostMg, scaleVehicle, vehicleOfSize, type Vehicle } from './vehicle';
 
 /** One vehicle's stay in one bay: driving in, standing, driving out. */
 export interface Visit {
@@ -33,6 +33,8 @@ export interface VehicleMix {
 	/** Share of high-chassis vehicles, whose field reaches the neighbours. */
 	vanShare: number;
 	askewM: number;
+	/** No vehicle makes more than this at a neighbour's node, mG. */
+	mostEchoMg: number;
 }
 
 export interface Life {
@@ -64,6 +66,8 @@ export interface BayLife {
 	bay: BayPlan;
 	lane: Lane;
 	nodeNedM: Vec3;
+	/** Nodes of the bays beside it. */
+	besideNedM: readonly Vec3[];
 	earthUnit: Vec3;
 	life: Life;
 	rng: Random;
@@ -73,15 +77,27 @@ export interface BayLife {
 	pins: number[];
 }
 
+function drawGuest(bay: BayLife, pose: Pose): Vehicle {
+	const { rng } = bay;
+	const mix = bay.life.vehicles;
+	let drawn: Vehicle | null = null;
+	for (let tries = 0; tries < 12; tries++) {
+		const sizeMg = rng.logNormal(mix.medianMg, mix.sigma, mix.lowMg, mix.highMg);
+		const build = rng.chance(mix.vanShare) ? 'van' : 'car';
+		drawn = vehicleOfSize(rng, build, bay.earthUnit, sizeMg, pose, bay.nodeNedM);
+		if (mostMg(drawn, pose, bay.besideNedM) <= mix.mostEchoMg) return drawn;
+	}
+	// Only where the bay's own node lies in a dead zone of every draw.
+	const echoMg = mostMg(drawn!, pose, bay.besideNedM);
+	return scaleVehicle(drawn!, mix.mostEchoMg / echoMg);
+}
+
 function drawVisit(bay: BayLife, fromMs: number, stayS: number): Visit {
 	const { rng, life } = bay;
 	const mix = life.vehicles;
 	const parking = drawParking(rng, mix.askewM);
 	const path = parkingPath(bay.bay, bay.lane, parking);
-	const sizeMg = rng.logNormal(mix.medianMg, mix.sigma, mix.lowMg, mix.highMg);
-	const build = rng.chance(mix.vanShare) ? 'van' : 'car';
-	const pose = endPose(path);
-	const vehicle = vehicleOfSize(rng, build, bay.earthUnit, sizeMg, pose, bay.nodeNedM);
+	const vehicle = drawGuest(bay, endPose(path));
 	const driveMs = Math.ceil(path.durationS * 1000);
 	const toMs = Math.round(fromMs + stayS * 1000);
 	return {

@@ -1,14 +1,19 @@
+import type { Vec3 } from '$lib/magnetics/vector';
 import { random, type Random } from './random';
 import { nextVisit, type BayLife, type Visit } from './schedule';
 import type { Scenario } from './scenarios/types';
 import { drawPass, drawQueue } from './traffic';
 import type { Incident, Stay, Truth } from './truth';
-import { addTraffic, addVisit, laneNodes, type World } from './world';
+import { addTraffic, addVisit, laneNodesNedM, type World } from './world';
 
 const DAY_MS = 86_400_000;
 const TOGETHER_MS = 10_000;
+/** Nodes within this of a bay's own may feel its vehicle. */
+const BESIDE_M = 8;
 /** A bay that learns under a vehicle was entered this long before, or less. */
 const EARLIER_MS = 4 * 3_600_000;
+
+const apartM = (a: Vec3, b: Vec3): number => Math.hypot(a[0] - b[0], a[1] - b[1]);
 
 function noteStay(truth: Truth, stay: Stay, gapS: number): void {
 	const { facts } = truth;
@@ -35,10 +40,24 @@ export function fillBays(
 		const lane = world.plan.lanes.find((candidate) => candidate.row === bay.row)!;
 		const nodeNedM = world.fields[world.nodeOfBay[bayIndex]!]!.positionNedM;
 		const { earthUnit } = world;
+		const besideNedM = world.fields
+			.map((field) => field.positionNedM)
+			.filter((at) => at !== nodeNedM && apartM(at, nodeNedM) < BESIDE_M);
 		const rng = random(seed, 'bay', bayIndex);
 		const freeFromMs = underVehicle.has(bayIndex) ? truth.fromMs - EARLIER_MS : truth.judgedFromMs;
 		const { life } = scenario;
-		return { bayIndex, bay, lane, nodeNedM, earthUnit, life, rng, freeFromMs, pins: [] };
+		return {
+			bayIndex,
+			bay,
+			lane,
+			nodeNedM,
+			besideNedM,
+			earthUnit,
+			life,
+			rng,
+			freeFromMs,
+			pins: []
+		};
 	});
 	const together = random(seed, 'together');
 	for (const bay of bays) {
@@ -82,7 +101,7 @@ function noteEchoes(truth: Truth, echoes: readonly Incident[]): void {
 export function fillLanes(world: World, scenario: Scenario, seed: number, truth: Truth): void {
 	const { facts } = truth;
 	for (const lane of world.plan.lanes) {
-		const nodes = laneNodes(world, lane);
+		const nodes = laneNodesNedM(world, lane);
 		const rng = random(seed, 'lane', lane.row);
 		const note = (incidents: Incident[]) => {
 			for (const incident of incidents) {

@@ -1,13 +1,13 @@
 import type { Vec3 } from '$lib/magnetics/vector';
-import { endPose, motion, newPose, type Motion, type Standing } from './motion';
+import { endPose, motion, type Motion, type Standing } from './motion';
 import { lanePath } from './path';
 import type { Random } from './random';
 import { unitEastNorth, type Lane } from './site-plan';
-import { vehicleOfSize, type Vehicle } from './vehicle';
+import { drawVehicle, mostMg, scaleVehicle, type Vehicle } from './vehicle';
 
 export interface TrafficMix {
 	perHour: number;
-	/** Field of a passing vehicle abreast of a node, mG, log-uniform. */
+	/** Its largest field at any node of the row, mG, log-uniform. */
 	lowMg: number;
 	highMg: number;
 	speedMPerS: readonly [number, number];
@@ -21,52 +21,46 @@ export interface QueueMix {
 	haltS: readonly [number, number];
 }
 
-/** A node of the row and where along the lane it lies: the vehicle's size is set abreast of it. */
-export interface LaneNode {
-	nedM: Vec3;
-	alongM: number;
-}
-
 const BEYOND_M = 18;
 const QUEUE_GAP_M = 6.8;
 const OFF_M = 0.6;
+const LOOK_STEP_M = 0.8;
 
 const logBetween = (rng: Random, low: number, high: number): number =>
 	low * Math.pow(high / low, rng.uniform());
 
-/** A vehicle of the wanted size at a node when it is abreast of it. */
+/** A vehicle whose largest field at any node of the row, anywhere along the lane, has the wanted size. */
 function laneVehicle(
 	rng: Random,
 	lane: Lane,
 	offM: number,
-	node: LaneNode,
+	nodesNedM: readonly Vec3[],
 	sizeMg: number,
 	earthUnit: Vec3
 ): Vehicle {
 	const [noseE, noseN] = unitEastNorth(lane.alongDeg);
-	const pose = {
-		...newPose(),
-		noseE,
-		noseN,
-		eastM: lane.eastM + noseE * node.alongM - noseN * offM,
-		northM: lane.northM + noseN * node.alongM + noseE * offM
-	};
-	const build = rng.chance(0.4) ? 'van' : 'car';
-	return vehicleOfSize(rng, build, earthUnit, sizeMg, pose, node.nedM);
+	const vehicle = drawVehicle(rng, rng.chance(0.4) ? 'van' : 'car', earthUnit);
+	let peakMg = 0;
+	for (let alongM = -2; alongM <= lane.lengthM + 2; alongM += LOOK_STEP_M) {
+		const eastM = lane.eastM + noseE * alongM - noseN * offM;
+		const northM = lane.northM + noseN * alongM + noseE * offM;
+		peakMg = Math.max(peakMg, mostMg(vehicle, { eastM, northM, noseE, noseN }, nodesNedM));
+	}
+	return scaleVehicle(vehicle, sizeMg / peakMg);
 }
 
 /** One vehicle driving past a whole row. */
 export function drawPass(
 	rng: Random,
 	lane: Lane,
-	nodes: readonly LaneNode[],
+	nodesNedM: readonly Vec3[],
 	mix: TrafficMix,
 	earthUnit: Vec3,
 	fromMs: number
 ): Motion {
 	const offM = rng.between(-OFF_M, OFF_M);
 	const sizeMg = logBetween(rng, mix.lowMg, mix.highMg);
-	const vehicle = laneVehicle(rng, lane, offM, rng.pick(nodes), sizeMg, earthUnit);
+	const vehicle = laneVehicle(rng, lane, offM, nodesNedM, sizeMg, earthUnit);
 	const speed = logBetween(rng, ...mix.speedMPerS);
 	const path = lanePath(lane, offM, -BEYOND_M, lane.lengthM + BEYOND_M, speed);
 	return motion(vehicle, path, fromMs, 'forth');
@@ -76,7 +70,7 @@ export function drawPass(
 export function drawQueue(
 	rng: Random,
 	lane: Lane,
-	nodes: readonly LaneNode[],
+	nodesNedM: readonly Vec3[],
 	mix: QueueMix,
 	earthUnit: Vec3,
 	fromMs: number
@@ -89,7 +83,7 @@ export function drawQueue(
 	for (let k = 0; k < vehicles; k++) {
 		const offM = rng.between(-OFF_M / 2, OFF_M / 2);
 		const sizeMg = logBetween(rng, mix.lowMg, mix.highMg);
-		const vehicle = laneVehicle(rng, lane, offM, rng.pick(nodes), sizeMg, earthUnit);
+		const vehicle = laneVehicle(rng, lane, offM, nodesNedM, sizeMg, earthUnit);
 		let at = -BEYOND_M;
 		let timeMs = fromMs + k * rng.between(2500, 4500);
 		let stopM = frontM;

@@ -93,6 +93,13 @@ export function vehicleFieldMg(vehicle: Vehicle, pose: Pose, atNedM: Vec3): Vec3
 	return sum;
 }
 
+/** Its largest field at any of several points, mG. */
+export const mostMg = (vehicle: Vehicle, pose: Pose, pointsNedM: readonly Vec3[]): number =>
+	pointsNedM.reduce(
+		(most, point) => Math.max(most, Math.hypot(...vehicleFieldMg(vehicle, pose, point))),
+		0
+	);
+
 /** The same vehicle with every moment multiplied. */
 export function scaleVehicle(vehicle: Vehicle, factor: number): Vehicle {
 	const times = (v: Vec3): Vec3 => [v[0] * factor, v[1] * factor, v[2] * factor];

@@ -5,8 +5,7 @@ import type { Motion, Standing } from './motion';
 import { addMotion, addStanding, nodeField, type NodeField } from './node-field';
 import { random } from './random';
 import { motionsOf, type Visit } from './schedule';
-import { unitEastNorth, type Lane, type SitePlan } from './site-plan';
-import type { LaneNode } from './traffic';
+import type { Lane, SitePlan } from './site-plan';
 import type { Incident, Stay } from './truth';
 
 /** A site's true field: one `NodeField` a node, fed with every vehicle that comes near. */
@@ -63,15 +62,11 @@ export function makeWorld(
 	};
 }
 
-export function laneNodes(world: World, lane: Lane): LaneNode[] {
-	const [alongE, alongN] = unitEastNorth(lane.alongDeg);
-	return world.plan.nodes
-		.filter((node) => world.plan.bays[node.bayIndex]!.row === lane.row)
-		.map((node) => ({
-			nedM: [node.northM, node.eastM, 0.03] as const,
-			alongM: (node.eastM - lane.eastM) * alongE + (node.northM - lane.northM) * alongN
-		}));
-}
+/** Where the nodes of a lane's row lie, [north, east, down] m. */
+export const laneNodesNedM = (world: World, lane: Lane): Vec3[] =>
+	world.fields
+		.filter((_, i) => world.plan.bays[world.plan.nodes[i]!.bayIndex]!.row === lane.row)
+		.map((field) => field.positionNedM);
 
 /** Puts a visit into every node's field; returns the stay and its echoes at other nodes. */
 export function addVisit(world: World, visit: Visit): { stay: Stay; echoes: Incident[] } {

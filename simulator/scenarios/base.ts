@@ -17,7 +17,8 @@ export const EASY: Scenario = {
 			lowMg: 70,
 			highMg: 800,
 			vanShare: 0.1,
-			askewM: 0.15
+			askewM: 0.15,
+			mostEchoMg: 40
 		},
 		stays: [
 			{ share: 0.2, lowS: 4 * MINUTE_S, highS: 20 * MINUTE_S },

@@ -44,7 +44,8 @@ export const LINES: readonly Scenario[] = [
 				lowMg: 40,
 				highMg: 1000,
 				vanShare: 0.2,
-				askewM: 0.45
+				askewM: 0.45,
+				mostEchoMg: 80
 			}
 		}
 	},
@@ -60,7 +61,8 @@ export const LINES: readonly Scenario[] = [
 				lowMg: 60,
 				highMg: 1000,
 				vanShare: 0.55,
-				askewM: 0.4
+				askewM: 0.4,
+				mostEchoMg: 80
 			}
 		},
 		togetherShare: 0.01
@@ -70,7 +72,7 @@ export const LINES: readonly Scenario[] = [
 		name: 'traffic',
 		condition: 'passing traffic to 60 mG for 1 to 6 s',
 		ground: 'kerb',
-		traffic: { perHour: 25, lowMg: 4, highMg: 60, speedMPerS: [1.4, 6] }
+		traffic: { perHour: 15, lowMg: 4, highMg: 60, speedMPerS: [1.4, 6] }
 	},
 	{
 		...EASY,
@@ -174,16 +176,17 @@ export const HARD: Scenario = {
 			lowMg: 40,
 			highMg: 1000,
 			vanShare: 0.2,
-			askewM: 0.4
+			askewM: 0.4,
+			mostEchoMg: 80
 		}
 	},
 	noiseMg: [0.4, 1.5],
 	climate: { meanC: 22, halfSwingC: 18, spellC: 5, cloudC: 4 },
 	offsetPerC: 1,
 	storms: { perWeek: 1.5, peakMg: 20, stepMg: 7 },
-	traffic: { perHour: 12, lowMg: 3, highMg: 60, speedMPerS: [1.4, 6] },
+	traffic: { perHour: 8, lowMg: 3, highMg: 60, speedMPerS: [1.4, 6] },
 	queues: { perDay: 3, lowMg: 8, highMg: 60, haltS: [40, 420] },
-	togetherShare: 0.005,
+	togetherShare: 0.02,
 	film: {
 		lossShare: 0.25,
 		lossRemaining: 0.7,
