@@ -1,0 +1,72 @@
+import { z } from 'zod';
+import { code } from './v1/common';
+import { spec } from './v1/spec';
+
+const everyone = ['operator', 'maintenance', 'integrator', 'admin'] as const;
+const everyday = ['operator', 'maintenance', 'admin'] as const;
+const reason = z.string().trim().min(1).max(400);
+
+/** Rules of the routes that only the application's own pages ask; no key reaches them (scope null). */
+export const DESK_ROUTES = {
+	find: spec({
+		summary: 'Bays and nodes by part of a code or serial',
+		scope: null,
+		roles: everyone,
+		query: z.strictObject({ q: z.string().trim().min(1).max(32) })
+	}),
+	register: spec({ summary: 'Every site in a row', scope: null, roles: everyone }),
+	look: spec({
+		summary: 'A person looked at the plan',
+		scope: null,
+		roles: everyone,
+		body: z.strictObject({ changes: z.int().min(0) }),
+		status: 204
+	}),
+	requests: spec({ summary: 'Open requests to send someone', scope: null, roles: everyone }),
+	request: spec({
+		summary: 'Ask for somebody at a bay',
+		scope: null,
+		roles: everyday,
+		body: z.strictObject({ bay: code, reason }),
+		status: 201
+	}),
+	take: spec({
+		summary: 'Take a request or hand it back',
+		scope: null,
+		roles: everyday,
+		body: z.strictObject({ hold: z.boolean() }),
+		status: 204
+	}),
+	end: spec({
+		summary: 'End a request with what was done',
+		scope: null,
+		roles: everyday,
+		body: z.strictObject({ outcome: reason }),
+		status: 204
+	}),
+	ask: spec({
+		summary: 'Ask the node for a reading and a report now',
+		scope: null,
+		roles: everyday,
+		body: z.strictObject({}),
+		status: 201
+	}),
+	undo: spec({
+		summary: 'Undo a settling',
+		scope: null,
+		roles: everyday,
+		body: z.strictObject({ act: z.int().positive() })
+	}),
+	lift: spec({
+		summary: 'End a closure now',
+		scope: null,
+		roles: everyday,
+		body: z.strictObject({})
+	}),
+	timeline: spec({
+		summary: 'Everything that happened to a bay and its nodes',
+		scope: null,
+		roles: everyone,
+		query: z.strictObject({ before: z.coerce.number().int().min(0).optional() })
+	})
+} as const;
