@@ -89,7 +89,10 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 	} else if (!takeAisle(g, n, step, atMs)) judge(g, n, step, others, atMs);
 	keepInLedger(n, step);
 	for (const o of others) {
-		if (o.step.became !== 'pending' && isEchoOf(o.node, o.step, size3(o.step.j), { node: n, step })) {
+		if (
+			o.step.became !== 'pending' &&
+			isEchoOf(o.node, o.step, size3(o.step.j), { node: n, step })
+		) {
 			turnIntoEcho(g, o.node, o.step, n, step, atMs);
 		}
 	}
@@ -109,7 +112,17 @@ function isEchoOf(n: Node, step: Step, size: number, big: Overlap): boolean {
 	const lateMs = n.params.echoLateS * MS_PER_S;
 	const ends = step.toMs - big.step.toMs;
 	const begins = step.newMs - big.step.newMs;
-	return (ends <= lateMs && ends >= -earlyMs) || (begins >= -lateMs && begins <= earlyMs);
+	const endsWith = ends <= lateMs && ends >= -earlyMs;
+	const beginsWith = begins >= -lateMs && begins <= earlyMs;
+	const came = cameOrLeft(big);
+	return came === 'came' ? endsWith : came === 'left' ? beginsWith : endsWith || beginsWith;
+}
+
+function cameOrLeft({ node, step }: Overlap): 'came' | 'left' | 'either' {
+	if (step.became === 'arrival') return 'came';
+	if (step.became === 'departure') return 'left';
+	if (step.became !== 'pending' || node.slow.state === 'unknown') return 'either';
+	return node.slow.state === 'vacant' ? 'came' : 'left';
 }
 
 /** Nodes that a decision reads or may write: rows of theirs up to here come late from now on. */

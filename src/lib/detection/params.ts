@@ -45,7 +45,13 @@ export const PARAMS = {
 	slopePriorMgPerC: spec(1, 0, 3, 'mG/°C', 'spread of temperature slopes while a node has none'),
 	neighbourM: spec(4, 0, 20, 'm', 'vehicles are felt as far as the next bay'),
 	echoRatio: spec(0.55, 0.1, 0.9, '1', 'a step under this share of the neighbour’s is its echo'),
-	echoEarlyS: spec(4, 0, 30, 's', 'an echo falls still before its vehicle: its last movement is too small'),
+	echoEarlyS: spec(
+		4,
+		0,
+		30,
+		's',
+		'an echo falls still before its vehicle: its last movement is too small'
+	),
 	echoLateS: spec(1.5, 0, 30, 's', 'but hardly after it'),
 	echoUndoRatio: spec(0.5, 0.1, 0.9, '1', 'an echo goes with its vehicle within this share'),
 	exactRatio: spec(0.25, 0, 0.5, '1', 'a step this near to undoing the arrival is no echo'),

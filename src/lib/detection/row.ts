@@ -9,7 +9,7 @@ import type { Group, Node, Step } from './state';
 import { followTemperature } from './temperature';
 import { gapMs, offMg, onMg, stillMg, trackNoise } from './thresholds';
 import type { RowItem } from './types';
-import { apart } from './vec';
+import { apart, axisApart } from './vec';
 
 const MS_PER_S = 1000;
 /** The level is a running mean of this many still readings at most. */
@@ -199,10 +199,36 @@ function begin(g: Group, n: Node, atMs: number, dtMs: number): void {
 function continueStep(g: Group, n: Node, atMs: number): void {
 	const { fast } = n;
 	fast.openN++;
+	if (fast.openN > 1 && isBack(n, atMs)) {
+		closePass(g, n, atMs);
+		return;
+	}
 	extendBox(n, atMs);
 	fast.peakMg = Math.fround(Math.max(fast.peakMg, apart(fast.last, fast.level)));
 	noteCrossing(n, atMs);
 	if (fast.boxN >= 2 && atMs - fast.boxFromMs >= n.params.stillS * MS_PER_S) settle(g, n, atMs);
+}
+
+/** A movement this small, or one that a beat finds over, needs no hold to be called past. */
+const SMALL_MOVES = 2;
+const ALONE_MS = 10_000;
+
+function isBack(n: Node, atMs: number): boolean {
+	const { fast } = n;
+	const still = stillMg(n);
+	if (axisApart(fast.last, fast.level) > still || fast.openClipped === 1) return false;
+	return fast.peakMg <= SMALL_MOVES * still || atMs - fast.lastAtMs >= ALONE_MS;
+}
+
+/** Back on the old level without a hold. */
+function closePass(g: Group, n: Node, atMs: number): void {
+	const { fast } = n;
+	fast.open = 0;
+	fast.visibleAtMs = atMs;
+	fast.boxN = 0;
+	extendBox(n, atMs);
+	g.active--;
+	passed(g, n, atMs);
 }
 
 /** First crossing: over on when vacant, away from the vehicle's level by half of it when occupied. */
@@ -243,8 +269,13 @@ function settle(g: Group, n: Node, atMs: number): void {
 }
 
 function pass(g: Group, n: Node, step: Step, atMs: number): void {
-	addPass(n);
 	if (step.clipped) takeMagnet(n, step);
+	passed(g, n, atMs);
+}
+
+/** A movement that came back: neighbours that wait for it may go on. */
+function passed(g: Group, n: Node, atMs: number): void {
+	addPass(n);
 	if (n.slow.unknownWhy !== null) heardAgain(g, n, atMs);
 	n.fast.decidedAtMs = atMs;
 	for (const m of n.near) {
