@@ -21,11 +21,13 @@ export interface GeneratedPulse {
 	nodeIndex: number;
 	atMs: number;
 	frame: Exclude<UpFrame, { kind: 'reading' }>;
+	/** The film's magnetization after the pulse. */
+	polarityAfter: 1 | -1;
 }
 
 export type GeneratedItem = GeneratedRow | GeneratedPulse;
 
-/** When the server takes a node's message to have happened, by true time of its first row; see tests/accuracy. */
+/** When the server takes each message of a node to have begun, ms; NaN = it moves nothing (tests/accuracy). */
 export type MessageTimes = (nodeIndex: number) => (message: number) => number;
 
 const trueTimes =
@@ -42,14 +44,15 @@ function* messageItems(
 ): Generator<GeneratedItem> {
 	const boot = log.boot.values[message]!;
 	const seq = log.seq.values[message]!;
+	const polarity = log.polarity.values[message] === -1 ? -1 : 1;
 	const other = log.others.get(message);
 	if (other !== undefined && other.kind !== 'reading') {
-		yield { kind: 'pulse', nodeIndex, atMs: firstAtMs, frame: other };
+		const pulse = { kind: 'pulse', nodeIndex, atMs: firstAtMs, frame: other } as const;
+		yield { ...pulse, polarityAfter: polarity };
 		return;
 	}
 	const from = log.rowFrom.values[message]!;
-	const { dtMs, counts } = { dtMs: log.dtMs.values, counts: log.counts.values };
-	const polarity = log.polarity.values[message] === -1 ? -1 : 1;
+	const [dtMs, counts] = [log.dtMs.values, log.counts.values];
 	for (let row = 0; row < log.rowCount.values[message]!; row++) {
 		const at = from + row;
 		yield {
@@ -78,7 +81,9 @@ function* nodeItems(
 	for (const message of generated.deliveries[nodeIndex]!.message) {
 		if (message === last) continue;
 		last = message;
-		yield* messageItems(log, nodeIndex, message, timeOf(message));
+		const firstAtMs = timeOf(message);
+		if (Number.isNaN(firstAtMs)) continue;
+		yield* messageItems(log, nodeIndex, message, firstAtMs);
 	}
 }
 

@@ -93,11 +93,11 @@ export function append(log: MessageLog, sent: Sent): void {
 	room(log.rowFrom, log.count)[i] = log.rows;
 	const rowCount = room(log.rowCount, log.count);
 	const polarity = room(log.polarity, log.count);
+	polarity[i] = sent.polarity;
 	const tempDc = room(log.tempDc, log.count);
 	const batteryMv = room(log.batteryMv, log.count);
 	if (frame.kind === 'reading') {
 		rowCount[i] = frame.rows.length;
-		polarity[i] = frame.polarity;
 		tempDc[i] = frame.tempDc ?? NO_TEMP;
 		batteryMv[i] = frame.batteryMv ?? 0;
 		appendRows(log, frame);

@@ -34,7 +34,8 @@ function send(
 ): void {
 	node.frames++;
 	node.radioMs += RADIO_MS_PER_FRAME;
-	out({ nodeIndex: node.config.index, frame, sentAtMs, firstAtMs });
+	const { polarity } = node.film;
+	out({ nodeIndex: node.config.index, frame, sentAtMs, firstAtMs, polarity });
 }
 
 export const pulseOf = (node: NodeState, atMs: number) => ({

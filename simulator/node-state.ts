@@ -49,6 +49,8 @@ export interface Sent {
 	/** True time of sending and of the frame's first row or pulse, ms. */
 	sentAtMs: number;
 	firstAtMs: number;
+	/** The film's magnetization when it was sent: after the pulse, for what answers one. */
+	polarity: 1 | -1;
 }
 
 /** A row waiting for its message. */

@@ -1,0 +1,164 @@
+import { advance, newGroup, view, type Group } from '$lib/detection/group';
+import type { ActItem, BayState, HistoryEntry, Outcome } from '$lib/detection/types';
+import { builtInProfile, type SensorProfile } from '$lib/magnetics/sensor-profile';
+import { chain } from '$lib/server/ingest/chain';
+import type { Generated, PlannedAct } from '../../../simulator/generate';
+import { inEventOrder } from '../../../simulator/items';
+import { pulseItem, rowItem } from './group-items';
+import { serverTimes } from './server-times';
+
+/** What a reader was told of a bay at a random instant. */
+export interface Look {
+	bayIndex: number;
+	atMs: number;
+	state: BayState;
+	confidence: number | null;
+	doubt: string | null;
+}
+
+export interface Detected {
+	/** Effective history: what was entered and not voided. */
+	entries: (HistoryEntry & { bayIndex: number })[];
+	voided: number;
+	looks: Look[];
+	rows: number;
+	detectMs: number;
+	/** Why pulses were not believed, counted. */
+	pulsesRefused: Map<string, number>;
+}
+
+const LOOK_EVERY_MS = 20 * 60_000;
+const SLOT_SHARE = 0.9;
+
+export interface DetectOptions {
+	params?: Readonly<Record<string, number>>;
+}
+
+/** Runs a generated site through detection, group by group, in event time as the server sees it. */
+export function detect(generated: Generated, options: DetectOptions = {}): Detected {
+	const detected: Detected = {
+		entries: [],
+		voided: 0,
+		looks: [],
+		rows: 0,
+		detectMs: 0,
+		pulsesRefused: new Map()
+	};
+	const placed = generated.plan.nodes.map(({ eastM, northM }, id) => ({
+		id,
+		siteId: 1,
+		eastM,
+		northM
+	}));
+	for (const nodes of chain(placed).groups) detectGroup(generated, nodes, options, detected);
+	detected.entries.sort((a, b) => a.atMs - b.atMs);
+	return detected;
+}
+
+function members(generated: Generated, nodes: readonly number[], options: DetectOptions) {
+	return nodes.map((nodeId) => {
+		const node = generated.plan.nodes[nodeId]!;
+		const profile = builtInProfile(node.profileCode)!;
+		return {
+			nodeId,
+			eastM: node.eastM,
+			northM: node.northM,
+			row: generated.plan.bays[node.bayIndex]!.row,
+			profile,
+			periodS: generated.scenario.periodS,
+			graceS: 900,
+			params: options.params ?? {}
+		};
+	});
+}
+
+function take(detected: Detected, live: Map<string, HistoryEntry>, outcomes: Outcome[]): void {
+	for (const outcome of outcomes) {
+		if (outcome.kind === 'enter') {
+			const { entry } = outcome;
+			live.set(`${entry.nodeId} ${entry.type} ${entry.atMs}`, entry);
+		} else if (outcome.kind === 'void') {
+			live.delete(`${outcome.nodeId} ${outcome.type} ${outcome.atMs}`);
+			detected.voided++;
+		} else if (outcome.kind === 'pulse_judged' && outcome.why !== null) {
+			detected.pulsesRefused.set(outcome.why, (detected.pulsesRefused.get(outcome.why) ?? 0) + 1);
+		}
+	}
+}
+
+function act(planned: PlannedAct, actId: number): ActItem {
+	return {
+		kind: 'act',
+		actId,
+		nodeId: planned.nodeIndex,
+		atMs: planned.atMs,
+		act:
+			planned.kind === 'place'
+				? { kind: 'place', preCommissioned: planned.byRule }
+				: { kind: 'accept', seenEmpty: true, by: 'bench' }
+	};
+}
+
+function detectGroup(
+	generated: Generated,
+	nodes: readonly number[],
+	options: DetectOptions,
+	detected: Detected
+): void {
+	const group = newGroup(members(generated, nodes, options));
+	const live = new Map<string, HistoryEntry>();
+	const acts = generated.acts
+		.filter((planned) => nodes.includes(planned.nodeIndex))
+		.sort((a, b) => a.atMs - b.atMs);
+	const profiles = generated.plan.nodes.map((node) => builtInProfile(node.profileCode)!);
+	const times = (nodeIndex: number) => {
+		const at = serverTimes(generated, nodeIndex);
+		return (message: number) => at[message]!;
+	};
+	let nextAct = 0;
+	let nextLookMs = generated.truth.judgedFromMs + LOOK_EVERY_MS;
+	const startedAt = performance.now();
+	for (const item of inEventOrder(generated, nodes, times)) {
+		while (nextAct < acts.length && acts[nextAct]!.atMs <= item.atMs) {
+			take(detected, live, advance(group, act(acts[nextAct]!, nextAct + 1)));
+			nextAct++;
+		}
+		if (item.atMs >= nextLookMs) {
+			look(generated, group, nodes, nextLookMs, detected);
+			nextLookMs += LOOK_EVERY_MS * (1 - SLOT_SHARE / 2 + SLOT_SHARE * spread(nextLookMs));
+		}
+		const ready = readyItem(item, profiles);
+		if (ready === null) continue;
+		if (ready.kind === 'row') detected.rows++;
+		take(detected, live, advance(group, ready));
+	}
+	detected.detectMs += performance.now() - startedAt;
+	for (const entry of live.values()) {
+		const { bayIndex } = generated.plan.nodes[entry.nodeId]!;
+		detected.entries.push({ ...entry, bayIndex });
+	}
+}
+
+type Item = ReturnType<typeof inEventOrder> extends Generator<infer T> ? T : never;
+
+function readyItem(item: Item, profiles: readonly SensorProfile[]) {
+	const profile = profiles[item.nodeIndex]!;
+	return item.kind === 'row' ? rowItem(item, profile) : pulseItem(item, profile);
+}
+
+/** Looks stand at instants that have nothing to do with the site's life: a share of the slot from the golden ratio. */
+const spread = (atMs: number): number => ((atMs / LOOK_EVERY_MS) * 0.618033988749895) % 1;
+
+function look(
+	generated: Generated,
+	group: Group,
+	nodes: readonly number[],
+	atMs: number,
+	detected: Detected
+): void {
+	for (const nodeId of nodes) {
+		const { bayIndex } = generated.plan.nodes[nodeId]!;
+		const { state, confidence, doubt } = view(group, nodeId);
+		detected.looks.push({ bayIndex, atMs, state, confidence, doubt: doubt?.reason ?? null });
+	}
+}
