@@ -48,6 +48,8 @@ export class MqttNode {
 			clean: false,
 			keepalive: 5,
 			reconnectPeriod: 200,
+			// Without it MQTT.js never tries again after 'server unavailable' (return code 3).
+			reconnectOnConnackError: true,
 			...options
 		});
 		const node = new MqttNode(client, key.serial);

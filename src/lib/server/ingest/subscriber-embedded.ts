@@ -40,6 +40,7 @@ export function startEmbedded(config: EmbeddedConfig): Subscriber {
 		clean: true,
 		keepalive: 30,
 		queueQoSZero: false,
+		reconnectOnConnackError: true,
 		resubscribe: false
 	});
 	state.backOff(client);

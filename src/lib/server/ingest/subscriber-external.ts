@@ -1,4 +1,4 @@
-import { connect as connectTcp, type Socket } from 'node:net';
+import { connect as connectTcp, isIP, type Socket } from 'node:net';
 import { connect as connectTls } from 'node:tls';
 import { MqttClient } from 'mqtt';
 import { publishTaken, LinkState } from './subscriber-link';
@@ -23,6 +23,9 @@ const MOST_UNSETTLED = 20_000;
  */
 export function startExternal(config: ExternalConfig): Subscriber {
 	const url = new URL(config.url);
+	if (url.protocol !== 'mqtt:' && url.protocol !== 'mqtts:') {
+		throw new Error('MQTT_URL: only mqtt:// and mqtts:// are possible');
+	}
 	const queue = new SubscriberQueue();
 	const state = new LinkState();
 	/** Message ids of the present session by receipt, in order of arrival; the value says whether settled. */
@@ -57,6 +60,7 @@ export function startExternal(config: ExternalConfig): Subscriber {
 			clean: false,
 			keepalive: 30,
 			queueQoSZero: false,
+			reconnectOnConnackError: true,
 			resubscribe: false
 		}
 	);
@@ -114,10 +118,12 @@ export function startExternal(config: ExternalConfig): Subscriber {
 }
 
 function openSocket(url: URL): Socket {
-	const secure = url.protocol === 'mqtts:' || url.protocol === 'ssl:';
+	const secure = url.protocol === 'mqtts:';
 	const host = url.hostname.replace(/^\[|\]$/g, '');
 	const port = Number(url.port === '' ? (secure ? 8883 : 1883) : url.port);
-	return secure ? connectTls({ host, port, servername: host }) : connectTcp({ host, port });
+	if (!secure) return connectTcp({ host, port });
+	// RFC 6066, section 3: no address as a server name.
+	return connectTls({ host, port, ...(isIP(host) === 0 ? { servername: host } : {}) });
 }
 
 const toHeld = (receipt: number, topic: string, payload: Buffer, qos: number): HeldMessage => ({

@@ -2,6 +2,7 @@ import type { MqttClient } from 'mqtt';
 
 const FIRST_WAIT_MS = 100;
 const LONGEST_WAIT_MS = 5_000;
+const LASTING_MS = 5_000;
 
 /** Connection state with its listeners, and MQTT.js' own reconnecting made to back off. */
 export class LinkState {
@@ -18,13 +19,19 @@ export class LinkState {
 		for (const listener of this.#listeners) listener(connected);
 	}
 
-	/** MQTT.js reads the period anew before each try. */
+	/**
+	 * MQTT.js reads the period anew before each try. Only a connection that lasts brings the short wait
+	 * back, so that being let in and thrown out again at once is no tight loop.
+	 */
 	backOff(client: MqttClient): void {
-		client.options.reconnectPeriod = FIRST_WAIT_MS;
-		client.on('connect', () => (client.options.reconnectPeriod = FIRST_WAIT_MS));
+		const short = () => (client.options.reconnectPeriod = FIRST_WAIT_MS);
+		let lasting: NodeJS.Timeout | undefined;
+		short();
+		client.on('connect', () => (lasting = setTimeout(short, LASTING_MS).unref()));
+		client.on('close', () => clearTimeout(lasting));
 		client.on('reconnect', () => {
-			const waited = client.options.reconnectPeriod ?? FIRST_WAIT_MS;
-			client.options.reconnectPeriod = Math.min(waited * 2, LONGEST_WAIT_MS);
+			const waitedMs = client.options.reconnectPeriod ?? FIRST_WAIT_MS;
+			client.options.reconnectPeriod = Math.min(waitedMs * 2, LONGEST_WAIT_MS);
 		});
 	}
 }
