@@ -1,7 +1,7 @@
 import { execFile } from 'node:child_process';
 import { createHash } from 'node:crypto';
 import { existsSync } from 'node:fs';
-import { cp, mkdir, mkdtemp, readFile, readdir, rename, rm } from 'node:fs/promises';
+import { cp, mkdir, mkdtemp, readFile, readdir, rename, rm, statfs } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join, resolve } from 'node:path';
 import { promisify } from 'node:util';
@@ -26,13 +26,18 @@ export interface TestDatabase {
 	close(): Promise<void>;
 }
 
-/**
- * A real MariaDB of its own, in a temporary folder, on a free port of 127.0.0.1. The tables are
- * already made (from a template in .tmp/) unless `empty` is asked for.
- */
-export async function startDatabase(options: { empty?: boolean } = {}): Promise<TestDatabase> {
+export interface TestDatabaseOptions {
+	/** No tables yet; otherwise they are there already, from a template in .tmp/. */
+	empty?: boolean;
+	/** On a real disk, for figures that a person will believe. Tests use memory where there is enough. */
+	disk?: boolean;
+}
+
+/** A real MariaDB of its own, in a temporary folder, on a free port of 127.0.0.1. */
+export async function startDatabase(options: TestDatabaseOptions = {}): Promise<TestDatabase> {
 	const template = await templateDir(options.empty === true);
-	const base = await mkdtemp(join(tmpdir(), 'lodekeep-db-'));
+	const home = options.disk === true ? tmpdir() : await fastestHome();
+	const base = await mkdtemp(join(home, 'lodekeep-db-'));
 	const dir = join(base, 'db');
 	await copyDir(template, dir);
 	const small = { cacheMib: 128, redoMib: 64 };
@@ -69,15 +74,29 @@ export async function migrated(url: string): Promise<string> {
 	return url;
 }
 
+const MEMORY = '/dev/shm';
+/** Room for a few databases at once. */
+const MEMORY_NEEDED_BYTES = 4e9;
+
+/** fsync on memory is free: the same server, 13 times faster (measured: 136 changes of layout 9.8 s, 0.7 s). */
+async function fastestHome(): Promise<string> {
+	const found = await statfs(MEMORY).catch(() => null);
+	const enough = found !== null && found.bavail * found.bsize > MEMORY_NEEDED_BYTES;
+	return enough ? MEMORY : tmpdir();
+}
+
 /** Installing takes seconds, copying a fraction of one. Made aside and renamed: a race makes it twice. */
 async function templateDir(empty: boolean): Promise<string> {
 	const dir = join(ROOT, '.tmp', `mariadb-${empty ? 'empty' : 'tables'}-${await layoutHash()}`);
 	if (existsSync(dir)) return dir;
 	await mkdir(join(ROOT, '.tmp'), { recursive: true });
 	const aside = await mkdtemp(join(ROOT, '.tmp', 'making-'));
-	const server = await startMariadb({ dir: join(aside, 'db'), cacheMib: 128, redoMib: 64 });
+	const fast = await mkdtemp(join(await fastestHome(), 'lodekeep-db-'));
+	const server = await startMariadb({ dir: join(fast, 'db'), cacheMib: 128, redoMib: 64 });
 	if (!empty) await migrated(server.url);
 	await server.stop();
+	await copyDir(join(fast, 'db'), join(aside, 'db'));
+	await rm(fast, { recursive: true, force: true });
 	// Whoever came first has made the same thing.
 	await rename(join(aside, 'db'), dir).catch(() => undefined);
 	await rm(aside, { recursive: true, force: true });
