@@ -205,7 +205,17 @@ function drawPicked(pen: Pen, scene: Scene): void {
 function drawLeader(pen: Pen, { layout, view }: Scene, picked: number, to: Xy): void {
 	const bay = layout.bays[picked];
 	if (bay === undefined) return;
-	const from = toScreen(view, bay.centre);
+	const centre = toScreen(view, bay.centre);
+	// The dot stands beside the code, towards the note.
+	const corner = bay.corners
+		.map((c) => toScreen(view, c))
+		.reduce((a, b) =>
+			Math.hypot(b.x - to.x, b.y - to.y) < Math.hypot(a.x - to.x, a.y - to.y) ? b : a
+		);
+	const from = {
+		x: centre.x + (corner.x - centre.x) * 0.6,
+		y: centre.y + (corner.y - centre.y) * 0.6
+	};
 	const slant = Math.min(Math.abs(to.y - from.y), Math.max(0, to.x - from.x - 20));
 	const knee = { x: to.x - Math.max(14, to.x - from.x - slant), y: to.y };
 	pen.stroke([line(from, knee, to)], { ink: 'paper', width: 3.5 });
