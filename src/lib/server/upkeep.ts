@@ -1,0 +1,46 @@
+import type { Log } from './log';
+import { keepHouse } from './store/retention';
+
+const HOUR_MS = 3_600_000;
+/** After the rush of a start. */
+const FIRST_MS = 60_000;
+
+export interface Upkeep {
+	close(): Promise<void>;
+}
+
+/** Makes the partitions to come and lets go of what nobody keeps, every hour. */
+export function start(databaseUrl: string, log: Log): Upkeep {
+	let working: Promise<void> = Promise.resolve();
+	let timer: NodeJS.Timeout;
+	const plan = (afterMs: number) => {
+		timer = setTimeout(() => {
+			working = work(databaseUrl, log);
+			void working.then(() => {
+				plan(HOUR_MS);
+			});
+		}, afterMs);
+		timer.unref();
+	};
+	plan(FIRST_MS);
+	return {
+		close: async () => {
+			clearTimeout(timer);
+			await working;
+			clearTimeout(timer);
+		}
+	};
+}
+
+async function work(databaseUrl: string, log: Log): Promise<void> {
+	try {
+		const report = await keepHouse(databaseUrl, Date.now());
+		if (report === null) return;
+		const { partitionsMade, partitionsDropped, rowsDeleted } = report;
+		if (partitionsMade > 0 || partitionsDropped.length > 0 || rowsDeleted > 0)
+			log.info(report, 'kept house');
+	} catch (error) {
+		// The partitions reach 30 days ahead: there is time to try again and to be seen in the log.
+		log.error({ err: error }, 'housekeeping did not succeed; it is tried again in an hour');
+	}
+}
