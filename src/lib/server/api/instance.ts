@@ -1,3 +1,4 @@
+import type { NodeView } from '$lib/detection/types';
 import { Devices, Sessions } from '../auth/session';
 import { LiveDirectory } from '../auth/directory';
 import { Throttle } from '../auth/throttle';
@@ -7,6 +8,7 @@ import { startSender, type Sender } from '../outbox/sender';
 import { createSecret, type Secret } from '../secret';
 import { connect, type Store } from '../store/connect';
 import { reachRows } from '../store/queries/people';
+import { start as startUpkeep } from '../upkeep';
 import { CodedCache } from './compress';
 import { RateLimiter } from './rate-limit';
 
@@ -23,6 +25,12 @@ export interface Instance {
 	readonly limiter: RateLimiter;
 	readonly coded: CodedCache;
 	readonly sender: Sender;
+	/** The pipeline looks for acts now. */
+	nudge(): void;
+	/** What detection holds of a node now; null while its group is not loaded. */
+	nodeView(nodeId: number): NodeView | null;
+	/** Broker reached, and this copy's (or another's) pipeline takes messages. */
+	ingestReady(): { broker: boolean; subscriber: boolean };
 	/** Cookies carry Secure and the __Host- prefix. */
 	readonly secureCookies: boolean;
 	close(): Promise<void>;
@@ -62,7 +70,8 @@ function required(value: string | null, name: string): string {
 
 function create(config: Config): Instance {
 	const log = createLog({ level: config.logLevel, part: 'app' });
-	const store = connect(required(config.databaseUrl, 'DATABASE_URL'));
+	const databaseUrl = required(config.databaseUrl, 'DATABASE_URL');
+	const store = connect(databaseUrl);
 	const secretText = required(config.secret, 'LODEKEEP_SECRET');
 	const secret = createSecret(secretText, config.secretPrevious);
 	const secureCookies = config.origin?.startsWith('https:') ?? config.tls !== null;
@@ -70,6 +79,7 @@ function create(config: Config): Instance {
 		.filter((text) => text !== null)
 		.map((text) => createSecret(text).derive('session').toString('hex'));
 	const sender = startSender({ db: store.db, secret, log, config });
+	const upkeep = startUpkeep(databaseUrl, log);
 	return {
 		config,
 		log,
@@ -82,9 +92,13 @@ function create(config: Config): Instance {
 		limiter: new RateLimiter(),
 		coded: new CodedCache(),
 		sender,
+		nudge: () => undefined,
+		nodeView: () => null,
+		ingestReady: () => ({ broker: false, subscriber: false }),
 		secureCookies,
 		close: async () => {
 			await sender.close();
+			await upkeep.close();
 			await store.close();
 		}
 	};
