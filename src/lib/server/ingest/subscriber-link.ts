@@ -7,6 +7,8 @@ const LASTING_MS = 5_000;
 /** Connection state with its listeners, and MQTT.js' own reconnecting made to back off. */
 export class LinkState {
 	connected = false;
+	/** What waits for an answer and hears of the loss of the connection instead. */
+	readonly waiting = new Set<() => void>();
 	readonly #listeners: ((connected: boolean) => void)[] = [];
 
 	onConnected(listener: (connected: boolean) => void): void {
@@ -28,7 +30,10 @@ export class LinkState {
 		let lasting: NodeJS.Timeout | undefined;
 		short();
 		client.on('connect', () => (lasting = setTimeout(short, LASTING_MS).unref()));
-		client.on('close', () => clearTimeout(lasting));
+		client.on('close', () => {
+			clearTimeout(lasting);
+			for (const lost of [...this.waiting]) lost();
+		});
 		client.on('reconnect', () => {
 			const waitedMs = client.options.reconnectPeriod ?? FIRST_WAIT_MS;
 			client.options.reconnectPeriod = Math.min(waitedMs * 2, LONGEST_WAIT_MS);
@@ -45,11 +50,12 @@ export async function publishTaken(
 ): Promise<boolean> {
 	if (!state.connected) return false;
 	return await new Promise<boolean>((resolve) => {
-		const lost = () => resolve(false);
-		client.once('close', lost);
-		client.publish(topic, payload, { qos: 1 }, (error) => {
-			client.removeListener('close', lost);
-			resolve(error === undefined || error === null);
-		});
+		const end = (taken: boolean) => {
+			state.waiting.delete(lost);
+			resolve(taken);
+		};
+		const lost = () => end(false);
+		state.waiting.add(lost);
+		client.publish(topic, payload, { qos: 1 }, (error) => end(!error));
 	});
 }

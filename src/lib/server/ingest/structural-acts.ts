@@ -1,0 +1,135 @@
+import { actArgs } from '$lib/schemas/act';
+import * as acts from '$lib/server/store/queries/acts';
+import { run, type Sql } from '$lib/server/store/queries/bulk';
+import type { NewChange } from '$lib/server/store/queries/changes';
+import * as commands from '$lib/server/store/queries/commands';
+import * as ingest from '$lib/server/store/queries/ingest';
+import * as nodeState from '$lib/server/store/queries/node-state';
+import * as received from '$lib/server/store/queries/received';
+import { inTransaction, type Room } from './batch';
+import { FAST_PERIOD_S } from './steps/aside';
+import { allotAndWrite } from './steps/feed';
+import { bareBay } from './bare-bay';
+import { closureStage } from './closure-stage';
+
+type ActRow = acts.ActRow;
+
+/** Acts that change which nodes there are or how they are counted: each is a transaction of its own. */
+export const isStructural = ({ kind, nodeId }: ActRow): boolean =>
+	nodeId === null || kind === 'place' || kind === 'accept_boot' || kind === 'ask';
+
+/** Runs one; returns the nodes whose groups must be loaded with the next batch. */
+export async function runStructural(room: Room, act: ActRow, nowMs: number): Promise<number[]> {
+	const { nodeId } = act;
+	if (nodeId !== null) await room.registry.loadSome(room.pool, { ids: [nodeId] }, nowMs);
+	const outcome = await inTransaction(room, async (sql) => {
+		const said = await runOne(room, sql, act, nowMs);
+		await acts.settleOutcome(sql, act.id, room.stamps.next(), said);
+		return said;
+	});
+	if (nodeId === null) return [];
+	await room.registry.loadSome(room.pool, { ids: [nodeId] }, nowMs);
+	if (act.kind === 'ask') return [];
+	if (outcome !== 'done' && outcome !== 'taken') return [];
+	room.groups.forget([nodeId, ...(room.registry.groupOf(nodeId) ?? [])]);
+	room.seen.forget(nodeId);
+	await room.registry.loadLives(room.pool, [nodeId]);
+	room.groups.reconcile();
+	return act.kind === 'place' ? [nodeId] : [];
+}
+
+async function runOne(room: Room, sql: Sql, act: ActRow, nowMs: number): Promise<string> {
+	const { nodeId } = act;
+	if (nodeId === null) return await withoutNode(sql, act, nowMs);
+	const json = JSON.parse(act.args) as unknown;
+	switch (act.kind) {
+		case 'place':
+			return await place(room, sql, { ...act, nodeId }, actArgs.place.parse(json), nowMs);
+		case 'accept_boot':
+			return await acceptBoot(sql, nodeId, actArgs.accept_boot.parse(json).boot);
+		case 'ask':
+			return await ask(room, sql, nodeId, act.byActor, nowMs);
+		default:
+			return 'not an act of this kind';
+	}
+}
+
+/** A closure also holds for a bay without a node; anything else has nothing to act on. */
+async function withoutNode(sql: Sql, act: ActRow, nowMs: number): Promise<string> {
+	if (act.kind !== 'close' && act.kind !== 'lift') return 'the bay has no node';
+	await closureStage(sql, act);
+	const change: NewChange = { kind: 'closure', bayId: act.bayId, nodeId: null };
+	await allotAndWrite(
+		sql,
+		new Map([[act.siteId, { events: [], shown: [], other: [change] }]]),
+		nowMs
+	);
+	return 'done';
+}
+
+async function place(
+	room: Room,
+	sql: Sql,
+	act: ActRow & { nodeId: number },
+	{ preCommissioned }: { preCommissioned: boolean },
+	nowMs: number
+): Promise<string> {
+	if (act.bayId === null) return 'no bay was named';
+	const holder = await ingest.holderOfBay(sql, act.bayId, act.nodeId);
+	if (holder !== null) return `the bay holds node ${holder}: withdraw it first`;
+	const former = room.registry.byId(act.nodeId);
+	const formerBay = former?.config.bayId ?? null;
+	if (former !== undefined && formerBay !== null && formerBay !== act.bayId)
+		await allotAndWrite(
+			sql,
+			new Map([[former.config.siteId, bareBay(former, formerBay, 'unplaced', nowMs)]]),
+			nowMs
+		);
+	await ingest.placeNode(sql, act.nodeId, act.bayId, act.atMs, preCommissioned);
+	await nodeState.clear(sql, act.nodeId, act.atMs);
+	return 'taken';
+}
+
+/** From here on the node's boots are counted anew; what was received under the old count is forgotten. */
+async function acceptBoot(sql: Sql, nodeId: number, boot: number): Promise<string> {
+	await received.forget(sql, nodeId);
+	await run(sql, 'UPDATE node_fast SET heard_boot = ? WHERE node_id = ?', [boot, nodeId]);
+	return 'done';
+}
+
+const ASK_EXPIRES_MS = 3_600_000;
+
+async function ask(
+	room: Room,
+	sql: Sql,
+	nodeId: number,
+	byActor: string,
+	nowMs: number
+): Promise<string> {
+	const entry = room.registry.byId(nodeId);
+	if (entry === undefined || entry.live.heardBoot === null)
+		return 'the node has not been heard yet';
+	await commands.giveUp(sql, { nodeId, verb: 'report', otherThanBoot: null }, nowMs, 'superseded');
+	await commands.order(sql, {
+		nodeId,
+		verb: 'report',
+		report: { periodS: FAST_PERIOD_S, deltaMg: entry.config.deltaMg },
+		boot: entry.live.heardBoot,
+		cause: 'ask: a person',
+		byActor,
+		createdAtMs: nowMs,
+		expiresAtMs: nowMs + ASK_EXPIRES_MS
+	});
+	return 'done';
+}
+
+/** After a batch with acts is committed: registrations that they changed are read again. */
+export async function afterActs(room: Room, taken: readonly ActRow[]): Promise<void> {
+	const changed = taken.filter(({ kind }) => kind === 'withdraw' || kind === 'parameters');
+	const ids = changed.flatMap(({ nodeId }) => nodeId ?? []);
+	if (ids.length === 0) return;
+	const nowMs = Date.now();
+	await room.registry.loadParameters(room.pool, nowMs);
+	await room.registry.loadSome(room.pool, { ids }, nowMs);
+	room.groups.reconcile();
+}
