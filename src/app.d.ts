@@ -1,3 +1,4 @@
+import type { KeyFound } from '$lib/server/auth/directory';
 import type { Reach } from '$lib/server/auth/reach';
 
 declare global {
@@ -10,6 +11,8 @@ declare global {
 		interface Locals {
 			/** Who asks and what they may see; null = nobody signed in, no key. Set by hooks.server.ts. */
 			reach: Reach | null;
+			/** The API key behind `reach`, null for people. */
+			key: KeyFound | null;
 		}
 		interface PageData {
 			reach?: { name: string; role: string } | null;

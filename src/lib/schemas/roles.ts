@@ -16,4 +16,5 @@ export const SCOPES_OF_ROLE: Readonly<Record<Role, readonly Scope[]>> = {
 	admin: ['occupancy', 'telemetry', 'provision', 'refresh', 'webhooks']
 };
 
-export const isScope = (text: string): text is Scope => (SCOPES as readonly string[]).includes(text);
+export const isScope = (text: string): text is Scope =>
+	(SCOPES as readonly string[]).includes(text);

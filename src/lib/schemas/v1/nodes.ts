@@ -1,6 +1,17 @@
 import { z } from 'zod';
 import { condition } from './bays';
-import { code, cursorIn, flagIn, instant, instantIn, list, mg, page, serial, vectorMg } from './common';
+import {
+	code,
+	cursorIn,
+	flagIn,
+	instant,
+	instantIn,
+	list,
+	mg,
+	page,
+	serial,
+	vectorMg
+} from './common';
 
 const nodeKey = z
 	.string()
@@ -84,7 +95,11 @@ export type NodePatch = z.infer<typeof nodePatch>;
 
 export const keyIn = z.strictObject({
 	key: nodeKey.optional(),
-	overlapS: z.int().min(0).max(30 * 86_400).default(7 * 86_400)
+	overlapS: z
+		.int()
+		.min(0)
+		.max(30 * 86_400)
+		.default(7 * 86_400)
 });
 export const keyMade = z.strictObject({
 	...nodeSecret.shape,

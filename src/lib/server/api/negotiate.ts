@@ -11,7 +11,10 @@ function weighted(header: string): Weighted[] {
 	return header
 		.split(',')
 		.map((part) => {
-			const [name = '', ...params] = part.trim().toLowerCase().split(/\s*;\s*/);
+			const [name = '', ...params] = part
+				.trim()
+				.toLowerCase()
+				.split(/\s*;\s*/);
 			const q = params.find((p) => p.startsWith('q='))?.slice(2);
 			const parsed = q === undefined ? 1 : Number(q);
 			return { name, q: Number.isFinite(parsed) ? Math.min(1, Math.max(0, parsed)) : 0 };

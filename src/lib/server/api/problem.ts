@@ -47,13 +47,15 @@ export function problemResponse(p: Problem): Response {
 
 /** RFC 6901 pointer into the body, as a URI fragment. */
 const pointer = (path: readonly PropertyKey[]): string =>
-	'#' +
-	path.map((p) => `/${String(p).replaceAll('~', '~0').replaceAll('/', '~1')}`).join('');
+	'#' + path.map((p) => `/${String(p).replaceAll('~', '~0').replaceAll('/', '~1')}`).join('');
 
 type Issue = z.core.$ZodIssue;
 
 /** Of the branches of a union the one that got furthest is what the sender meant. */
-function flatten(issue: Issue, base: readonly PropertyKey[] = []): { path: PropertyKey[]; message: string }[] {
+function flatten(
+	issue: Issue,
+	base: readonly PropertyKey[] = []
+): { path: PropertyKey[]; message: string }[] {
 	const path = [...base, ...issue.path];
 	if (issue.code === 'invalid_union' && issue.errors.length > 0) {
 		const depth = (branch: Issue[]) => Math.max(0, ...branch.map((i) => i.path.length));
@@ -73,7 +75,9 @@ export function invalidBody(error: z.ZodError): Problem {
 		.flatMap((i) => flatten(i))
 		.slice(0, MAX_ERRORS)
 		.map(({ path, message }) => ({ pointer: pointer(path), detail: message }));
-	return problem(400, 'The body is not as described: see errors and /api/v1/openapi.json.', { errors });
+	return problem(400, 'The body is not as described: see errors and /api/v1/openapi.json.', {
+		errors
+	});
 }
 
 export function invalidQuery(error: z.ZodError): Problem {

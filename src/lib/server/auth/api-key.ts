@@ -15,8 +15,7 @@ export function newKeyParts(): KeyParts {
 	};
 }
 
-export const keyText = ({ publicId, secret }: KeyParts): string =>
-	`lodekeep_${publicId}_${secret}`;
+export const keyText = ({ publicId, secret }: KeyParts): string => `lodekeep_${publicId}_${secret}`;
 
 export function parseKey(text: string): KeyParts | null {
 	const match = FORM.exec(text);

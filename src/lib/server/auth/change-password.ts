@@ -25,7 +25,11 @@ export async function changePassword(
 	const person = id === null ? null : await people.byId(app.store.db, id);
 	if (person === null) return { ok: false, reason: 'signed_out' };
 	// A session left open on somebody's screen is no licence to guess the password.
-	const attempt = { email: `change ${person.email}`, address: clientAddress(event), deviceId: null };
+	const attempt = {
+		email: `change ${person.email}`,
+		address: clientAddress(event),
+		deviceId: null
+	};
 	const admission = app.throttle.admit(attempt, Date.now());
 	if (!admission.ok) {
 		return { ok: false, reason: 'throttled', retryAfterS: admission.retryAfterS };

@@ -76,7 +76,8 @@ export async function inviteAgain(
 	return done;
 }
 
-const originOf = (app: Instance): string => app.config.origin ?? `http://127.0.0.1:${app.config.port}`;
+const originOf = (app: Instance): string =>
+	app.config.origin ?? `http://127.0.0.1:${app.config.port}`;
 
 async function mailInvitation(
 	app: Instance,

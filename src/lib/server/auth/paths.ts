@@ -10,10 +10,15 @@ export const PATHS = {
 	password: '/password'
 } as const;
 
+const HERE = 'http://here.invalid';
+
 /** Where one may go after signing in: a path of our own, nothing that a browser reads as another host. */
 export function safeReturn(to: string | null): string {
-	if (to === null || !/^\/(?![/\\])/.test(to) || /[\u0000-\u001f\\]/.test(to)) return '/';
-	const url = new URL(to, 'http://here.invalid');
-	if (url.origin !== 'http://here.invalid' || url.pathname.startsWith('/auth/')) return '/';
+	if (to === null || !to.startsWith('/') || to.includes('\\') || to.startsWith('//')) return '/';
+	// The parser drops tabs and newlines, so what it makes of the text is what is judged and used.
+	if (!URL.canParse(to, HERE)) return '/';
+	const url = new URL(to, HERE);
+	if (url.origin !== HERE || url.pathname.startsWith('//')) return '/';
+	if (url.pathname.startsWith('/auth/')) return '/';
 	return url.pathname + url.search + url.hash;
 }

@@ -47,7 +47,12 @@ export function addressBlock(address: string): string {
 	const right = tail === '' ? [] : tail.split(':');
 	const gap = plain.includes('::') ? Math.max(0, 8 - left.length - right.length) : 0;
 	const groups = [...left, ...Array<string>(gap).fill('0'), ...right];
-	return groups.slice(0, 4).map((g) => g.toLowerCase().replace(/^0+(?=.)/, '')).join(':') + '::/64';
+	return (
+		groups
+			.slice(0, 4)
+			.map((g) => g.toLowerCase().replace(/^0+(?=.)/, ''))
+			.join(':') + '::/64'
+	);
 }
 
 export class Throttle {

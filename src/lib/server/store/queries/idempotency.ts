@@ -6,6 +6,7 @@ export interface StoredAnswer {
 	requestHash: Buffer;
 	status: number | null;
 	answerSealed: Buffer | null;
+	createdAtMs: number;
 }
 
 export async function find(db: Db, actor: string, idemKey: string): Promise<StoredAnswer | null> {
@@ -13,7 +14,8 @@ export async function find(db: Db, actor: string, idemKey: string): Promise<Stor
 		.select({
 			requestHash: idempotency.requestHash,
 			status: idempotency.status,
-			answerSealed: idempotency.answerSealed
+			answerSealed: idempotency.answerSealed,
+			createdAtMs: idempotency.createdAtMs
 		})
 		.from(idempotency)
 		.where(and(eq(idempotency.actor, actor), eq(idempotency.idemKey, idemKey)));

@@ -33,7 +33,10 @@ export type ReachRows = Awaited<ReturnType<typeof reachRows>>;
 export const emailKey = (email: string): string => email.trim().toLowerCase();
 
 export async function byEmail(db: Db, email: string): Promise<PersonRow | null> {
-	const rows = await db.select().from(person).where(eq(person.email, emailKey(email)));
+	const rows = await db
+		.select()
+		.from(person)
+		.where(eq(person.email, emailKey(email)));
 	return rows[0] ?? null;
 }
 

@@ -17,11 +17,7 @@ export async function create(db: Db, t: NewTicket, nowMs: number): Promise<void>
 		.update(ticket)
 		.set({ usedAtMs: nowMs })
 		.where(
-			and(
-				eq(ticket.personId, t.personId),
-				eq(ticket.purpose, t.purpose),
-				isNull(ticket.usedAtMs)
-			)
+			and(eq(ticket.personId, t.personId), eq(ticket.purpose, t.purpose), isNull(ticket.usedAtMs))
 		);
 	await db.insert(ticket).values({ ...t, createdAtMs: nowMs });
 }

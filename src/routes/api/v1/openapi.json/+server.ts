@@ -1,0 +1,8 @@
+import { ROUTES } from '$lib/schemas/v1/routes';
+import { ok } from '$lib/server/api/answer';
+import { openapi } from '$lib/server/api/openapi';
+import { route } from '$lib/server/api/route';
+
+export const GET = route(ROUTES['GET /openapi.json'], async ({ event }) =>
+	ok(openapi(event.url.origin))
+);
