@@ -4,6 +4,8 @@ import { keepHouse } from './store/retention';
 const HOUR_MS = 3_600_000;
 /** After the rush of a start. */
 const FIRST_MS = 60_000;
+/** How long an end waits for the statement under way. */
+const CLOSE_MS = 2_000;
 
 export interface Upkeep {
 	close(): Promise<void>;
@@ -26,7 +28,8 @@ export function start(databaseUrl: string, log: Log): Upkeep {
 	return {
 		close: async () => {
 			clearTimeout(timer);
-			await working;
+			// Housekeeping can be cut off anywhere: each of its statements stands by itself.
+			await Promise.race([working, new Promise((resolve) => setTimeout(resolve, CLOSE_MS))]);
 			clearTimeout(timer);
 		}
 	};
