@@ -212,5 +212,7 @@ export const HARD: Scenario = {
 	}
 };
 
+export const ALL_SCENARIOS: readonly Scenario[] = [EASY, ...LINES, HARD];
+
 export const scenarioByName = (name: string): Scenario | undefined =>
-	[EASY, HARD, ...LINES].find((scenario) => scenario.name === name);
+	ALL_SCENARIOS.find((scenario) => scenario.name === name);
