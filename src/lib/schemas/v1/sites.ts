@@ -7,7 +7,8 @@ const timezone = z.string().max(64).refine(isTimezone, {
 
 function isTimezone(text: string): boolean {
 	try {
-		return new Intl.DateTimeFormat('en', { timeZone: text }) !== null;
+		new Intl.DateTimeFormat('en', { timeZone: text });
+		return true;
 	} catch {
 		return false;
 	}

@@ -1,6 +1,6 @@
 import type { ActKind } from '$lib/schemas/act';
-import { outcome, request, type ActWanted } from '../store/queries/act-requests';
-import type { Tx } from '../store/transaction';
+import { outcome, request, type ActWanted } from '$lib/server/store/queries/act-requests';
+import type { Tx } from '$lib/server/store/transaction';
 import { accepted, ok, type Answer } from './answer';
 import type { Instance } from './instance';
 import { problem, type Problem } from './problem';

@@ -1,14 +1,14 @@
 import type { bayDetail as shape } from '$lib/schemas/v1/bays';
 import { type BayPatch } from '$lib/schemas/v1/bays';
 import type { z } from 'zod';
-import type { Reach } from '../auth/reach';
-import * as bays from '../store/queries/bays';
-import * as changes from '../store/queries/changes';
-import * as nodes from '../store/queries/nodes';
-import type { Db } from '../store/queries/people';
-import { readProfile } from '../store/queries/profiles';
-import * as sites from '../store/queries/sites';
-import type { Tx } from '../store/transaction';
+import type { Reach } from '$lib/server/auth/reach';
+import * as bays from '$lib/server/store/queries/bays';
+import * as changes from '$lib/server/store/queries/changes';
+import * as nodes from '$lib/server/store/queries/nodes';
+import type { Db } from '$lib/server/store/queries/people';
+import { readProfile } from '$lib/server/store/queries/profiles';
+import * as sites from '$lib/server/store/queries/sites';
+import type { Tx } from '$lib/server/store/transaction';
 import { countsToMg } from '$lib/magnetics/counts';
 import { scale, type Vec3 } from '$lib/magnetics/vector';
 import { ok, type Answer } from './answer';
@@ -17,7 +17,7 @@ import type { Instance } from './instance';
 import { notHere } from './locate';
 import { problem, type Problem } from './problem';
 import { rfc3339OrNull } from './time';
-import { bayView, evidenceOf, geometryOf } from './views/bay';
+import { bayView, evidenceOf, geometryOf } from './bay-view';
 
 interface Where {
 	app: Instance;

@@ -1,17 +1,17 @@
 import type { z } from 'zod';
 import type { BayIn, baysIn } from '$lib/schemas/v1/bays';
 import { code as codeShape } from '$lib/schemas/v1/common';
-import * as bays from '../store/queries/bays';
-import * as changes from '../store/queries/changes';
-import * as sites from '../store/queries/sites';
-import { snapshot, type Tx } from '../store/transaction';
+import * as bays from '$lib/server/store/queries/bays';
+import * as changes from '$lib/server/store/queries/changes';
+import * as sites from '$lib/server/store/queries/sites';
+import { snapshot, type Tx } from '$lib/server/store/transaction';
 import { ok, type Answer } from './answer';
 import { decodeCursor, encodeCursor, fixedCursor } from './cursor';
 import type { Instance } from './instance';
 import type { Media } from './negotiate';
 import { normalPolygon } from './polygon';
 import { problem, type Problem } from './problem';
-import { bayView, featureOf } from './views/bay';
+import { bayView, featureOf } from './bay-view';
 
 /** An old or a made-up place in the log. */
 export function cursorProblem(site: sites.SiteRow, cursor: number, newest: number): Problem | null {

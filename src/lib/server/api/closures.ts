@@ -1,10 +1,10 @@
 import type { ClosureIn } from '$lib/schemas/v1/feed';
-import { request } from '../store/queries/act-requests';
-import * as bays from '../store/queries/bays';
-import * as changes from '../store/queries/changes';
-import * as closures from '../store/queries/closures';
-import * as nodes from '../store/queries/nodes';
-import type { Tx } from '../store/transaction';
+import { request } from '$lib/server/store/queries/act-requests';
+import * as bays from '$lib/server/store/queries/bays';
+import * as changes from '$lib/server/store/queries/changes';
+import * as closures from '$lib/server/store/queries/closures';
+import * as nodes from '$lib/server/store/queries/nodes';
+import type { Tx } from '$lib/server/store/transaction';
 import { problem, type Problem } from './problem';
 import { rfc3339, rfc3339OrNull } from './time';
 

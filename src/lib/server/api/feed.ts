@@ -1,16 +1,16 @@
 import { z } from 'zod';
 import type { EventView } from '$lib/schemas/v1/feed';
-import * as changes from '../store/queries/changes';
-import * as events from '../store/queries/events';
-import type { SiteRow } from '../store/queries/sites';
-import { snapshot } from '../store/transaction';
+import * as changes from '$lib/server/store/queries/changes';
+import * as events from '$lib/server/store/queries/events';
+import type { SiteRow } from '$lib/server/store/queries/sites';
+import { snapshot } from '$lib/server/store/transaction';
 import { ok, type Answer } from './answer';
 import { badCursor, cursorProblem } from './bays';
 import { decodeCursor, encodeCursor, fixedCursor } from './cursor';
 import type { Instance } from './instance';
 import type { Problem } from './problem';
 import { rfc3339 } from './time';
-import { confidenceOf } from './views/bay';
+import { confidenceOf } from './bay-view';
 
 export function eventView(row: events.EventRow): EventView {
 	return {

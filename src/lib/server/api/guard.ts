@@ -1,7 +1,7 @@
 import type { RequestEvent } from '@sveltejs/kit';
-import type { Caller } from '../auth/identify';
-import { PATHS } from '../auth/paths';
-import { RENEW_AFTER_S } from '../auth/session';
+import type { Caller } from '$lib/server/auth/identify';
+import { PATHS } from '$lib/server/auth/paths';
+import { RENEW_AFTER_S } from '$lib/server/auth/session';
 
 /** Pages behind sign-in. */
 const isBehindSignIn = (routeId: string | null): boolean => routeId?.startsWith('/(app)') ?? false;

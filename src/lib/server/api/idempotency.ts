@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { z } from 'zod';
-import * as stored from '../store/queries/idempotency';
-import { transaction, type Tx } from '../store/transaction';
+import * as stored from '$lib/server/store/queries/idempotency';
+import { transaction, type Tx } from '$lib/server/store/transaction';
 import type { Answer } from './answer';
 import { isDuplicate, isRetriable } from './database-away';
 import type { Instance } from './instance';

@@ -1,6 +1,6 @@
 import type { Live } from '$lib/schemas/v1/sites';
-import * as queries from '../store/queries/live';
-import type { SiteRow } from '../store/queries/sites';
+import * as queries from '$lib/server/store/queries/live';
+import type { SiteRow } from '$lib/server/store/queries/sites';
 import type { Instance } from './instance';
 import { rfc3339 } from './time';
 

@@ -1,8 +1,8 @@
 import type { RequestEvent } from '@sveltejs/kit';
-import { reaches, type Reach } from '../auth/reach';
-import * as bays from '../store/queries/bays';
-import * as nodes from '../store/queries/nodes';
-import * as sites from '../store/queries/sites';
+import { reaches, type Reach } from '$lib/server/auth/reach';
+import * as bays from '$lib/server/store/queries/bays';
+import * as nodes from '$lib/server/store/queries/nodes';
+import * as sites from '$lib/server/store/queries/sites';
 import type { Instance } from './instance';
 import { problem, type Problem } from './problem';
 

@@ -2,12 +2,12 @@ import { z } from 'zod';
 import type { NodeIn, NodePatch } from '$lib/schemas/v1/nodes';
 import { countsToMg, isClipped } from '$lib/magnetics/counts';
 import { scale, type Vec3 } from '$lib/magnetics/vector';
-import { request } from '../store/queries/act-requests';
-import * as bays from '../store/queries/bays';
-import * as nodes from '../store/queries/nodes';
-import type { Db } from '../store/queries/people';
-import { ensure, readProfile } from '../store/queries/profiles';
-import type { Tx } from '../store/transaction';
+import { request } from '$lib/server/store/queries/act-requests';
+import * as bays from '$lib/server/store/queries/bays';
+import * as nodes from '$lib/server/store/queries/nodes';
+import type { Db } from '$lib/server/store/queries/people';
+import { ensure, readProfile } from '$lib/server/store/queries/profiles';
+import type { Tx } from '$lib/server/store/transaction';
 import { ok, type Answer } from './answer';
 import { badCursor } from './bays';
 import { decodeCursor, encodeCursor, idCursor } from './cursor';
@@ -15,7 +15,7 @@ import type { Instance } from './instance';
 import { nodeKey, sealNodeKey, shownKey } from './node-keys';
 import { problem, type Problem } from './problem';
 import { rfc3339, rfc3339OrNull } from './time';
-import { listOf } from './views/bay';
+import { listOf } from './bay-view';
 
 function conditionOf(row: nodes.NodeSummaryRow): NonNullable<nodes.NodeSummaryRow['condition']> {
 	if (row.withdrawnAtMs !== null) return 'withdrawn';

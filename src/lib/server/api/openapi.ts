@@ -1,6 +1,6 @@
 import { z } from 'zod';
 import { problem } from '$lib/schemas/v1/common';
-import { GEOJSON_ANSWER, ROUTES, type RouteName } from '$lib/schemas/v1/routes';
+import { GEOJSON_ANSWER, ROUTES, type RouteName } from '$lib/schemas/v1/route-table';
 import type { RouteSpec } from '$lib/schemas/v1/spec';
 import { PROBLEM_TYPE } from './problem';
 

@@ -1,10 +1,10 @@
 import { countsToMg, isClipped } from '$lib/magnetics/counts';
 import type { SensorProfile } from '$lib/magnetics/sensor-profile';
 import { scale, type Vec3 } from '$lib/magnetics/vector';
-import type { NodeRow } from '../store/queries/nodes';
-import * as nodes from '../store/queries/nodes';
-import { readProfile } from '../store/queries/profiles';
-import * as readings from '../store/queries/readings';
+import type { NodeRow } from '$lib/server/store/queries/nodes';
+import * as nodes from '$lib/server/store/queries/nodes';
+import { readProfile } from '$lib/server/store/queries/profiles';
+import * as readings from '$lib/server/store/queries/readings';
 import { ok, type Answer } from './answer';
 import { badCursor } from './bays';
 import { decodeCursor, encodeCursor } from './cursor';

@@ -1,8 +1,8 @@
 import { createHash } from 'node:crypto';
 import type { RequestEvent } from '@sveltejs/kit';
 import type { RouteSpec } from '$lib/schemas/v1/spec';
-import { reachStamp, type Reach } from '../auth/reach';
-import type { SiteRow } from '../store/queries/sites';
+import { reachStamp, type Reach } from '$lib/server/auth/reach';
+import type { SiteRow } from '$lib/server/store/queries/sites';
 import type { Answer } from './answer';
 import { compress, MIN_CODED_BYTES } from './compress';
 import { etagOf, noneMatch } from './etag';

@@ -1,10 +1,10 @@
 import type { RequestEvent, RequestHandler } from '@sveltejs/kit';
 import type { z } from 'zod';
 import type { RouteSpec } from '$lib/schemas/v1/spec';
-import type { Reach } from '../auth/reach';
-import type { NodeRow } from '../store/queries/nodes';
-import type { SiteRow } from '../store/queries/sites';
-import type { Tx } from '../store/transaction';
+import type { Reach } from '$lib/server/auth/reach';
+import type { NodeRow } from '$lib/server/store/queries/nodes';
+import type { SiteRow } from '$lib/server/store/queries/sites';
+import type { Tx } from '$lib/server/store/transaction';
 import { admit } from './admit';
 import type { Answer } from './answer';
 import { isDatabaseAway } from './database-away';

@@ -1,9 +1,9 @@
 import type { Counts, SiteIn, SitePatch } from '$lib/schemas/v1/sites';
-import * as bays from '../store/queries/bays';
-import * as changes from '../store/queries/changes';
-import * as sites from '../store/queries/sites';
-import { snapshot } from '../store/transaction';
-import type { Reach } from '../auth/reach';
+import * as bays from '$lib/server/store/queries/bays';
+import * as changes from '$lib/server/store/queries/changes';
+import * as sites from '$lib/server/store/queries/sites';
+import { snapshot } from '$lib/server/store/transaction';
+import type { Reach } from '$lib/server/auth/reach';
 import { ok, type Answer } from './answer';
 import { badCursor } from './bays';
 import { decodeCursor, encodeCursor, idCursor } from './cursor';

@@ -1,9 +1,9 @@
 import { z } from 'zod';
 import type { StayView } from '$lib/schemas/v1/feed';
-import * as changes from '../store/queries/changes';
-import type { SiteRow } from '../store/queries/sites';
-import * as queries from '../store/queries/stays';
-import { snapshot } from '../store/transaction';
+import * as changes from '$lib/server/store/queries/changes';
+import type { SiteRow } from '$lib/server/store/queries/sites';
+import * as queries from '$lib/server/store/queries/stays';
+import { snapshot } from '$lib/server/store/transaction';
 import { ok, type Answer } from './answer';
 import { badCursor } from './bays';
 import { decodeCursor, encodeCursor } from './cursor';

@@ -1,7 +1,7 @@
 import type { RequestEvent } from '@sveltejs/kit';
-import { instance } from '../api/instance';
-import * as audit from '../store/queries/audit';
-import * as people from '../store/queries/people';
+import { instance } from '$lib/server/api/instance';
+import * as audit from '$lib/server/store/queries/audit';
+import * as people from '$lib/server/store/queries/people';
 import { clientAddress } from './authjs';
 import { checkPassword, hashPassword, passwordProblem } from './password';
 import { personIdOf } from './reach';

@@ -1,5 +1,5 @@
 import { isScope, SCOPES_OF_ROLE, type Scope } from '$lib/schemas/roles';
-import type { ReachRows } from '../store/queries/people';
+import type { ReachRows } from '$lib/server/store/queries/people';
 import { hashSecret, parseKey, sameHash } from './api-key';
 import type { Reach } from './reach';
 

@@ -1,5 +1,5 @@
 import type { Cookies } from '@sveltejs/kit';
-import type { Instance } from '../api/instance';
+import type { Instance } from '$lib/server/api/instance';
 import { bearerOf } from './api-key';
 import type { KeyFound } from './directory';
 import type { Reach } from './reach';

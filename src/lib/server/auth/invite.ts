@@ -1,9 +1,9 @@
 import type { RequestEvent } from '@sveltejs/kit';
-import { instance, type Instance } from '../api/instance';
-import { enqueueMail } from '../outbox/enqueue';
-import * as audit from '../store/queries/audit';
-import * as people from '../store/queries/people';
-import * as tickets from '../store/queries/tickets';
+import { instance, type Instance } from '$lib/server/api/instance';
+import { enqueueMail } from '$lib/server/outbox/enqueue';
+import * as audit from '$lib/server/store/queries/audit';
+import * as people from '$lib/server/store/queries/people';
+import * as tickets from '$lib/server/store/queries/tickets';
 import { hashPassword, passwordProblem } from './password';
 import { PATHS } from './paths';
 import { startSession } from './sign-in';

@@ -1,6 +1,6 @@
 import { isScope, type Scope } from '$lib/schemas/roles';
-import type { Database } from '../store/connect';
-import * as keys from '../store/queries/keys';
+import type { Database } from '$lib/server/store/connect';
+import * as keys from '$lib/server/store/queries/keys';
 import { hashSecret, keyText, newKeyParts } from './api-key';
 
 export interface KeyWanted {

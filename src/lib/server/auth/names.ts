@@ -1,5 +1,5 @@
-import type { Instance } from '../api/instance';
-import { list } from '../store/queries/people';
+import type { Instance } from '$lib/server/api/instance';
+import { list } from '$lib/server/store/queries/people';
 import { personIdOf, type Reach } from './reach';
 
 /** Product.md, 'Cautions': times of looks and visits show where a colleague was. */

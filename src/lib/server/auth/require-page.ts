@@ -1,7 +1,7 @@
 import { error } from '@sveltejs/kit';
 import type { Role } from '$lib/schemas/roles';
-import { instance } from '../api/instance';
-import * as sites from '../store/queries/sites';
+import { instance } from '$lib/server/api/instance';
+import * as sites from '$lib/server/store/queries/sites';
 import { reaches, type Reach } from './reach';
 
 interface PageRule {

@@ -1,12 +1,12 @@
 import type { RequestEvent } from '@sveltejs/kit';
-import { instance, type Instance } from '../api/instance';
-import { enqueueMail } from '../outbox/enqueue';
-import * as people from '../store/queries/people';
-import * as tickets from '../store/queries/tickets';
+import { instance, type Instance } from '$lib/server/api/instance';
+import { enqueueMail } from '$lib/server/outbox/enqueue';
+import * as people from '$lib/server/store/queries/people';
+import * as tickets from '$lib/server/store/queries/tickets';
 import { clientAddress } from './authjs';
 import { PATHS } from './paths';
 import { newTicket } from './ticket';
-import type { Policy } from '../api/rate-limit';
+import type { Policy } from '$lib/server/api/rate-limit';
 
 const RESET_MS = 3_600_000;
 /** Mails that one address may cause, and that one person may get, in an hour. */

@@ -1,8 +1,8 @@
 import { Auth, raw } from '@auth/core';
 import { AuthError } from '@auth/core/errors';
 import type { RequestEvent } from '@sveltejs/kit';
-import { instance, type Instance } from '../api/instance';
-import * as people from '../store/queries/people';
+import { instance, type Instance } from '$lib/server/api/instance';
+import * as people from '$lib/server/store/queries/people';
 import { authConfig, type Outcome } from './authjs';
 import { safeReturn } from './paths';
 import { cookieOptions, DEVICE_MAX_AGE_S, deviceCookieName, SESSION_MAX_AGE_S } from './session';

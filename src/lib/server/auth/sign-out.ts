@@ -1,5 +1,5 @@
 import type { RequestEvent } from '@sveltejs/kit';
-import { instance } from '../api/instance';
+import { instance } from '$lib/server/api/instance';
 import { cookieOptions } from './session';
 
 /** For the form action of /sign-out: the cookie goes, and what the browser kept of this site with it. */

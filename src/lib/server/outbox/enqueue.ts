@@ -1,7 +1,7 @@
 import { createHash, randomUUID } from 'node:crypto';
-import type { Secret } from '../secret';
-import * as outbox from '../store/queries/outbox';
-import type { Db } from '../store/queries/people';
+import type { Secret } from '$lib/server/secret';
+import * as outbox from '$lib/server/store/queries/outbox';
+import type { Db } from '$lib/server/store/queries/people';
 import type { Mail } from './mail';
 
 export interface MailWanted {

@@ -1,9 +1,9 @@
 import { createTransport } from 'nodemailer';
-import type { Config } from '../config';
-import type { Log } from '../log';
-import type { Secret } from '../secret';
-import type { Database } from '../store/connect';
-import * as outbox from '../store/queries/outbox';
+import type { Config } from '$lib/server/config';
+import type { Log } from '$lib/server/log';
+import type { Secret } from '$lib/server/secret';
+import type { Database } from '$lib/server/store/connect';
+import * as outbox from '$lib/server/store/queries/outbox';
 import { backoffMs, GIVE_UP_MS } from './backoff';
 import { mail, type Mail } from './mail';
 

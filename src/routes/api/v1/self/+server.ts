@@ -2,7 +2,7 @@ import { ok } from '$lib/server/api/answer';
 import { POLICIES } from '$lib/server/api/rate-limit';
 import { route } from '$lib/server/api/route';
 import { rfc3339OrNull } from '$lib/server/api/time';
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { slugsOf } from '$lib/server/store/queries/sites';
 
 const PAGE_ITEMS = 1000;

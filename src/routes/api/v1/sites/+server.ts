@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { created } from '$lib/server/api/answer';
 import { problem } from '$lib/server/api/problem';
 import { route } from '$lib/server/api/route';

@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { nodeDetail, nodeValues } from '$lib/server/api/nodes';
 import { accepted } from '$lib/server/api/answer';
 import { isProblem, problem } from '$lib/server/api/problem';

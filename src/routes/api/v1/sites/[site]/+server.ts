@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { noContent, ok } from '$lib/server/api/answer';
 import { siteRoute } from '$lib/server/api/route';
 import { siteDetail, siteValues, siteView } from '$lib/server/api/sites';

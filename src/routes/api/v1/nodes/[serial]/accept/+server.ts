@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { doAct } from '$lib/server/api/acts';
 import { problem } from '$lib/server/api/problem';
 import { nodeRoute } from '$lib/server/api/route';

@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { answerAct } from '$lib/server/api/acts';
 import { accepted } from '$lib/server/api/answer';
 import { placeIn } from '$lib/server/api/nodes';

@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { listReadings } from '$lib/server/api/readings';
 import { nodeRoute } from '$lib/server/api/route';
 

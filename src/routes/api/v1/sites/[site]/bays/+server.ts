@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { created } from '$lib/server/api/answer';
 import { addBays, baysGiven, listBays } from '$lib/server/api/bays';
 import { isProblem } from '$lib/server/api/problem';

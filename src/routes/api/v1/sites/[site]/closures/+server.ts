@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { waitForOutcome } from '$lib/server/api/acts';
 import { created, ok } from '$lib/server/api/answer';
 import { badCursor } from '$lib/server/api/bays';

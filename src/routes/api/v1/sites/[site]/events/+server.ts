@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { listEvents } from '$lib/server/api/feed';
 import { siteRoute } from '$lib/server/api/route';
 

@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { ok } from '$lib/server/api/answer';
 import { liveView, siteLive } from '$lib/server/api/live';
 import { siteRoute } from '$lib/server/api/route';

@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { siteRoute } from '$lib/server/api/route';
 import { listStays } from '$lib/server/api/stays';
 

@@ -1,4 +1,4 @@
-import { ROUTES } from '$lib/schemas/v1/routes';
+import { ROUTES } from '$lib/schemas/v1/route-table';
 import { noContent } from '$lib/server/api/answer';
 import { bayDetail, findBay, patchBay } from '$lib/server/api/bay-detail';
 import { isProblem, problem } from '$lib/server/api/problem';

@@ -1,7 +1,7 @@
 import type { BayView } from '$lib/schemas/v1/bays';
 import type { Polygon } from '$lib/schemas/v1/geojson';
-import type { BayViewRow, RunningClosure } from '../../store/queries/bays';
-import { rfc3339, rfc3339OrNull } from '../time';
+import type { BayViewRow, RunningClosure } from '$lib/server/store/queries/bays';
+import { rfc3339, rfc3339OrNull } from './time';
 
 /** Twentieths to a share without binary crumbs: 0.05 steps. */
 export const confidenceOf = (confidence20: number | null): number | null =>
