@@ -228,7 +228,11 @@ async function seedReadings(db: Database, nodeId: number, taken: boolean, nowMs:
 		};
 	});
 	await db.insert(t.reading).values(rows);
-	await db.insert(t.nodeFast).values({ nodeId, heardAtMs: nowMs, state: Buffer.from([0]) });
+	const { x, y, z, polarity, tempDc, batteryMv } = rows[rows.length - 1]!;
+	const last = { lastAtMs: nowMs, x, y, z, polarity, tempDc, batteryMv };
+	await db
+		.insert(t.nodeFast)
+		.values({ nodeId, heardAtMs: nowMs, state: Buffer.from([0]), ...last });
 }
 
 async function seedYard(db: Database, siteId: number, nowMs: number) {
