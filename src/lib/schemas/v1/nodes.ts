@@ -106,7 +106,12 @@ export const keyMade = z.strictObject({
 	oldKeyUntil: instant
 });
 
-export const placeIn = z.strictObject({ bay: code });
+export const placeIn = z.strictObject({
+	bay: code,
+	at: instantIn.optional().meta({
+		description: 'Since when the node lies there (at most 14 days ago); now when left out.'
+	})
+});
 export const acceptIn = z.strictObject({
 	seenEmpty: z.boolean().meta({
 		description: 'true: somebody sees the bay empty now; false: by rule, provisional.'

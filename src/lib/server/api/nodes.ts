@@ -185,7 +185,8 @@ export async function placeIn(
 	by: By,
 	nodeId: number,
 	bayCode: string,
-	preCommissioned: boolean
+	preCommissioned: boolean,
+	atMs = by.nowMs
 ): Promise<number | Problem> {
 	const bay = await bays.byCode(tx.db, by.siteId, bayCode);
 	if (bay === null) return problem(422, `There is no bay '${bayCode}' at this site.`);
@@ -201,7 +202,7 @@ export async function placeIn(
 			bayId: bay.id,
 			kind: 'place',
 			args: { preCommissioned },
-			atMs: by.nowMs,
+			atMs,
 			byActor: by.actor
 		},
 		by.nowMs
