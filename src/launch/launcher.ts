@@ -71,11 +71,19 @@ export class Launcher {
 		const endLogs = await keepLogsSmall(this.config.dataDir);
 		this.#addQuiet('logs', endLogs);
 		const secret = await installationSecret(this.config);
-		const [database, built] = await Promise.allSettled([this.#database(), this.#build()]);
-		if (database.status === 'rejected') throw database.reason as Error;
+		const opening = this.#database().then(async (url) => ({
+			databaseUrl: url,
+			store: await this.#store(url, secret)
+		}));
+		// Nobody wants to wait for a build to be told that the secret is wrong.
+		void opening.catch(() => {
+			this.#building.abort();
+		});
+		const [opened, built] = await Promise.allSettled([opening, this.#build()]);
+		if (opened.status === 'rejected') throw opened.reason as Error;
 		if (built.status === 'rejected') throw built.reason as Error;
-		const store = await this.#store(database.value, secret);
-		const made = { databaseUrl: database.value, secret, linkSecret: this.linkSecret };
+		const { store, databaseUrl } = opened.value;
+		const made = { databaseUrl, secret, linkSecret: this.linkSecret };
 		const env = childEnvironment(this.config, { ...made, mailPort: await this.#mail() });
 		await this.#broker(env);
 		await this.#app(env);
