@@ -71,11 +71,12 @@ export async function start(config: BrokerConfig): Promise<RunningBroker> {
 		stats: () => intake.stats(directory.size),
 		async close() {
 			clearInterval(sweep);
-			for (const server of servers) server.close();
+			const closed = servers.map(async (server) => await closing(server));
 			await drained(intake, session);
 			session.close();
 			await new Promise<void>((resolve) => aedes.close(resolve));
 			for (const link of [...intake.links]) link.destroy();
+			await Promise.all(closed);
 		}
 	};
 }
@@ -152,5 +153,9 @@ async function listen<S extends Server>(server: S, host: string, port: number): 
 	await once(server, 'listening');
 	return server;
 }
+
+/** Resolves when the last connection of it is gone. */
+const closing = async (server: Server): Promise<void> =>
+	await new Promise((resolve) => server.close(() => resolve()));
 
 const portOf = (server: Server): number => (server.address() as AddressInfo).port;
