@@ -67,7 +67,8 @@ export async function runBatch(
 	const items = await prepare(room, batch, work, touched);
 	const busy = addItems(room, batch, items, touched);
 	return await inTransaction(room, async (sql) => {
-		for (const act of batch.acts) await acts.settleOutcome(sql, act.id, work.stampMs, 'taken');
+		for (const act of batch.acts)
+			await acts.settleOutcome(sql, act.id, work.stampMs, takenWord(room, act));
 		const arrivals = storeArrivals(sql, work);
 		arrivals.catch(() => undefined);
 		const pumped = pumpAll(room, busy, nowMs);
@@ -166,6 +167,12 @@ async function gatherRejected(
 		});
 	}
 }
+
+/** Detection says in the same transaction what became of it, where there is a node for it. */
+const takenWord = (room: Room, act: acts.ActRow): string =>
+	act.nodeId !== null && room.groups.of(act.nodeId) !== undefined
+		? 'done'
+		: 'the node is not in service';
 
 /** Hands items and acts to their groups; returns the groups to pump, those with waiting rows too. */
 function addItems(

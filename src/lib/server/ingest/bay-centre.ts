@@ -28,7 +28,7 @@ function outerRing(geometry: string): [number, number][] | null {
 		if (!Array.isArray(ring) || ring.length < 4) return null;
 		const isCorner = (c: unknown): c is [number, number] =>
 			Array.isArray(c) && Number.isFinite(c[0]) && Number.isFinite(c[1]);
-		return ring.every(isCorner) ? (ring as [number, number][]) : null;
+		return ring.every(isCorner) ? ring : null;
 	} catch {
 		return null;
 	}

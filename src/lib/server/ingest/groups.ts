@@ -68,6 +68,8 @@ export class Groups {
 		const stored = await nodeState.states(sql, [...wanted.values()].flat());
 		const byId = new Map(stored.map((state) => [state.nodeId, state]));
 		for (const ids of wanted.values()) {
+			// A member may still sit in a group of before a neighbour came: what waits there is stored.
+			this.forget(ids);
 			const group = this.#build(ids, byId);
 			group.lastSnapshotAtMs = (await nodeState.snapshotTimes(sql, ids))[0]?.atMs ?? 0;
 			group.add(await waitingItems(sql, group.entries, byId, nowMs));

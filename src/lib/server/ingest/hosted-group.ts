@@ -2,7 +2,7 @@ import * as detection from '$lib/detection/group';
 import type { GroupItem, GroupMember, NodeView, Outcome } from '$lib/detection/types';
 import type { Pointer, SnapshotRow, States } from '$lib/server/store/queries/node-state';
 import type { NodeEntry } from './node-entry';
-import { compareOrder, eraAt, type Order } from './order';
+import { compareOrder, eraAt, firstDiffering, type Order } from './order';
 
 /** A group waits at most this long, on arrival, for a bursting neighbour's rows (method, 'History and feed'). */
 export const REORDER_MS = 2_000;
@@ -19,7 +19,7 @@ export interface Queued {
 
 /** Items of several nodes in the one order in which live ingest and replay both put them in. */
 export const byTime = (a: Queued, b: Queued): number =>
-	a.mergeAtMs - b.mergeAtMs || a.item.nodeId - b.item.nodeId;
+	firstDiffering(a.mergeAtMs - b.mergeAtMs, a.item.nodeId - b.item.nodeId);
 
 export interface Pumped {
 	outcomes: Outcome[];
@@ -202,6 +202,12 @@ export class HostedGroup {
 			changed.push({ nodeId: id, state: detection.encodeSlow(this.state, id) });
 		}
 		return changed;
+	}
+
+	/** All slow states, whatever was written before. */
+	allSlow(): { nodeId: number; state: Uint8Array }[] {
+		this.#slowWritten.clear();
+		return this.changedSlow();
 	}
 
 	snapshot(takenAtMs: number, daily: boolean): SnapshotRow[] {

@@ -15,7 +15,7 @@ const lookedUp = new WeakMap<Room, Map<string, number>>();
 
 function mayLookUp(room: Room, name: string, nowMs: number): boolean {
 	let known = lookedUp.get(room);
-	if (known === undefined) lookedUp.set(room, (known = new Map()));
+	if (known === undefined) lookedUp.set(room, (known = new Map<string, number>()));
 	if (nowMs - (known.get(name) ?? 0) < LOOK_AGAIN_MS) return false;
 	// Serials come from outside: the map is bounded by starting anew.
 	if (known.size > 20_000) known.clear();

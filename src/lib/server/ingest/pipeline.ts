@@ -218,7 +218,9 @@ class RunningPipeline implements Pipeline {
 		if (!this.#nudged && nowMs - this.#actsAtMs < ACTS_EVERY_MS) return [];
 		this.#nudged = false;
 		this.#actsAtMs = nowMs;
-		const due = await actQueries.due(this.room.pool, nowMs, 500);
+		const all = await actQueries.due(this.room.pool, nowMs, 500);
+		// Acts on a node whose detection is set aside wait for it.
+		const due = all.filter(({ nodeId }) => nodeId === null || !this.#isAside([nodeId]));
 		const first = due.findIndex(isStructural);
 		if (first !== 0) {
 			// What stands behind a structural act comes at once in the next round.

@@ -78,7 +78,7 @@ export class SeenBlocks {
 
 	#set(block: Block): void {
 		let blocks = this.#byNode.get(block.nodeId);
-		if (blocks === undefined) this.#byNode.set(block.nodeId, (blocks = new Map()));
+		if (blocks === undefined) this.#byNode.set(block.nodeId, (blocks = new Map<string, Block>()));
 		const key = keyOf(block.boot, block.block);
 		// Moved to the end: the first is the one longest unused.
 		blocks.delete(key);

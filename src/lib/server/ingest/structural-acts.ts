@@ -30,7 +30,7 @@ export async function runStructural(room: Room, act: ActRow, nowMs: number): Pro
 	if (nodeId === null) return [];
 	await room.registry.loadSome(room.pool, { ids: [nodeId] }, nowMs);
 	if (act.kind === 'ask') return [];
-	if (outcome !== 'done' && outcome !== 'taken') return [];
+	if (outcome !== 'done') return [];
 	room.groups.forget([nodeId, ...(room.registry.groupOf(nodeId) ?? [])]);
 	room.seen.forget(nodeId);
 	await room.registry.loadLives(room.pool, [nodeId]);
@@ -87,7 +87,7 @@ async function place(
 		);
 	await ingest.placeNode(sql, act.nodeId, act.bayId, act.atMs, preCommissioned);
 	await nodeState.clear(sql, act.nodeId, act.atMs);
-	return 'taken';
+	return 'done';
 }
 
 /** From here on the node's boots are counted anew; what was received under the old count is forgotten. */

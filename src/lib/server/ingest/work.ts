@@ -61,8 +61,8 @@ export class Work {
 	/** Nodes whose fast state or what they show may have changed. */
 	readonly touched = new Set<NodeEntry>();
 	readonly groups = new Set<HostedGroup>();
-	/** Nodes whose rows detection took: a silence's `unknown` is settled by them. */
-	readonly advanced = new Set<NodeEntry>();
+	/** Groups whose state comes from a replay: all of it differs from what is stored. */
+	readonly replayed = new Set<HostedGroup>();
 
 	constructor(
 		/** Rises with every batch, also when the clock does not (history.recorded_at_ms). */

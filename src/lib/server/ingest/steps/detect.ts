@@ -3,6 +3,7 @@ import type { Sql } from '$lib/server/store/queries/bulk';
 import * as nodeState from '$lib/server/store/queries/node-state';
 import type { Groups } from '../groups';
 import type { HostedGroup, Pumped } from '../hosted-group';
+import { firstDiffering } from '../order';
 import type { Registry } from '../registry';
 import {
 	beginNear,
@@ -94,9 +95,10 @@ export async function adopt(sql: Sql, room: DetectRoom, work: Work, replay: Repl
 	const kept = replay.snapshots.filter(({ atMs, daily }) => daily || atMs >= denseFromMs);
 	await nodeState.writeSnapshots(
 		sql,
-		kept.sort((a, b) => a.nodeId - b.nodeId || a.atMs - b.atMs)
+		kept.sort((a, b) => firstDiffering(a.nodeId - b.nodeId, a.atMs - b.atMs))
 	);
 	room.groups.replace(replay.group);
+	work.replayed.add(replay.group);
 	for (const entry of replay.group.entries) work.touched.add(entry);
 }
 
@@ -110,7 +112,7 @@ function touch(room: DetectRoom, work: Work, group: HostedGroup, result: Pumped)
 		touched.add(nodeId);
 		for (const near of room.registry.neighboursOf(nodeId)) touched.add(near);
 	}
-	for (const slow of group.changedSlow()) {
+	for (const slow of work.replayed.has(group) ? group.allSlow() : group.changedSlow()) {
 		work.slow.push(slow);
 		touched.add(slow.nodeId);
 	}

@@ -2,6 +2,7 @@ import type { Sql } from '$lib/server/store/queries/bulk';
 import * as changes from '$lib/server/store/queries/changes';
 import * as ingest from '$lib/server/store/queries/ingest';
 import type { NodeEntry } from '../node-entry';
+import { firstDiffering } from '../order';
 
 /** What one batch tells of one site. */
 export interface SiteNews {
@@ -13,9 +14,11 @@ export interface SiteNews {
 
 /** Events of one bay stand in the order in which they happened. */
 const byTime = (a: SiteNews['events'][number], b: SiteNews['events'][number]): number =>
-	Number(b.event.type === 'voided') - Number(a.event.type === 'voided') ||
-	a.event.atMs - b.event.atMs ||
-	a.event.bayId - b.event.bayId;
+	firstDiffering(
+		Number(b.event.type === 'voided') - Number(a.event.type === 'voided'),
+		a.event.atMs - b.event.atMs,
+		a.event.bayId - b.event.bayId
+	);
 
 /** Allots ids of each site's log and writes events, log and bay states under them; sites by rising id. */
 export async function allotAndWrite(

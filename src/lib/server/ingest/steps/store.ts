@@ -11,7 +11,8 @@ import * as references from '$lib/server/store/queries/references';
 import * as rejected from '$lib/server/store/queries/rejected';
 import * as rollups from '$lib/server/store/queries/rollups';
 import type { NodeEntry } from '../node-entry';
-import { changeBetween, shownOf } from '../shown';
+import { firstDiffering } from '../order';
+import { changeBetween } from '../shown';
 import type { Work } from '../work';
 import { allotAndWrite, type SiteNews } from './feed';
 
@@ -19,15 +20,21 @@ import { allotAndWrite, type SiteNews } from './feed';
 const byNodeAnd =
 	<T extends { nodeId: number }>(second: (row: T) => number) =>
 	(a: T, b: T): number =>
-		a.nodeId - b.nodeId || second(a) - second(b);
+		firstDiffering(a.nodeId - b.nodeId, second(a) - second(b));
 
 /** What came, before detection has a say: readings, marks of receipt, rollups, pulses, rejections. */
 export async function storeArrivals(sql: Sql, work: Work): Promise<void> {
-	work.readings.sort(
-		(a, b) =>
-			a.nodeId - b.nodeId || a.atMs - b.atMs || a.boot - b.boot || a.seq - b.seq || a.row - b.row
+	work.readings.sort((a, b) =>
+		firstDiffering(
+			a.nodeId - b.nodeId,
+			a.atMs - b.atMs,
+			a.boot - b.boot,
+			firstDiffering(a.seq - b.seq, a.row - b.row)
+		)
 	);
-	work.blocks.sort((a, b) => a.nodeId - b.nodeId || a.boot - b.boot || a.block - b.block);
+	work.blocks.sort((a, b) =>
+		firstDiffering(a.nodeId - b.nodeId, a.boot - b.boot, a.block - b.block)
+	);
 	await readings.insert(sql, work.readings);
 	await received.mark(sql, work.blocks);
 	await rollups.addHours(sql, [...work.hours.values()].sort(byNodeAnd((h) => h.hourMs)));
@@ -42,7 +49,7 @@ export async function storeArrivals(sql: Sql, work: Work): Promise<void> {
 
 export interface Hosts {
 	/** Detection's view of a node; null while it has none. */
-	viewOf(entry: NodeEntry): ReturnType<typeof shownOf> | null;
+	viewOf(entry: NodeEntry): ingest.ShownRow | null;
 	/** Detection's fast state of a node; empty = leave the stored one. */
 	fastOf(entry: NodeEntry): Uint8Array;
 }

@@ -34,25 +34,3 @@ export function heardMs(stretches: readonly Stretch[], fromMs: number, toMs: num
 	}
 	return sum;
 }
-
-export interface SiteHearing {
-	/** Nodes in service or learning, and how many of them are not silent. */
-	nodesExpected: number;
-	nodesHeard: number;
-	/** Arrival of the newest message of any of them. */
-	asOfMs: number | null;
-}
-
-/** For a copy that runs no pipeline: what the stored states say of a site's nodes. */
-export async function ofSite(sql: Sql, siteId: number): Promise<SiteHearing> {
-	const rows = await select<SiteHearing>(
-		sql,
-		`SELECT COUNT(*) AS nodesExpected,
-			COUNT(CASE WHEN f.heard_at_ms IS NOT NULL AND s.\`condition\` <> 'silent' THEN 1 END) AS nodesHeard,
-			MAX(f.heard_at_ms) AS asOfMs
-		 FROM node n JOIN bay_state s ON s.bay_id = n.bay_id LEFT JOIN node_fast f ON f.node_id = n.id
-		 WHERE n.site_id = ? AND n.withdrawn_at_ms IS NULL`,
-		[siteId]
-	);
-	return rows[0] ?? { nodesExpected: 0, nodesHeard: 0, asOfMs: null };
-}

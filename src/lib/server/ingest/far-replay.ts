@@ -1,0 +1,70 @@
+import * as nodeState from '$lib/server/store/queries/node-state';
+import { hostsOf, inTransaction } from './batch';
+import { inService } from './node-entry';
+import type { Pipeline } from './pipeline';
+import { beginFar, continueTo, DENSE_MS, nextWindowEnd, type Replay } from './replay';
+import { adopt } from './steps/detect';
+import { storeResults } from './steps/store';
+import { Work } from './work';
+
+/** What is newer than this is replayed under the pipeline's own lock, so that nothing comes in between. */
+const TAIL_MS = 120_000;
+
+/** Replays one group with marked hours; false when none is marked. */
+export async function replayMarked(pipeline: Pipeline): Promise<boolean> {
+	const { room } = pipeline;
+	const marks = await nodeState.markedHours(room.pool);
+	const first = marks[0];
+	if (first === undefined) return false;
+	const ids = room.registry.groupOf(first.nodeId) ?? [first.nodeId];
+	const entries = room.groups.entriesOf(ids).filter(inService);
+	const beganMs = room.stamps.next();
+	if (entries.length !== ids.length || entries.length === 0) {
+		// Withdrawn or moved since: its rows move nothing any more.
+		await nodeState.clearMarks(room.pool, [first.nodeId], beganMs);
+		return true;
+	}
+	const markedMs = Math.min(
+		...marks.filter(({ nodeId }) => ids.includes(nodeId)).map(({ hourMs }) => hourMs)
+	);
+	const replay = await beginFar(room.pool, room.groups, entries, markedMs);
+	const denseFromMs = Date.now() - DENSE_MS;
+	for (
+		let endMs = nextWindowEnd(replay);
+		endMs < Date.now() - TAIL_MS;
+		endMs = nextWindowEnd(replay)
+	)
+		await continueTo(room.pool, replay, endMs, denseFromMs, room.stamps);
+	await pipeline.exclusive(async () => await finish(pipeline, replay, ids, beganMs));
+	return true;
+}
+
+/** The last rows, and the swap: between two batches, in one transaction. */
+async function finish(
+	pipeline: Pipeline,
+	replay: Replay,
+	ids: readonly number[],
+	beganMs: number
+): Promise<void> {
+	const { room } = pipeline;
+	const now = room.registry.groupOf(ids[0] as number) ?? [];
+	// The group changed meanwhile: its marks stand, the next run takes the new one.
+	if (now.length !== ids.length || !now.every((id, i) => id === ids[i])) return;
+	const work = new Work(room.stamps.next(), Date.now());
+	try {
+		await inTransaction(room, async (sql) => {
+			await continueTo(sql, replay, Number.MAX_SAFE_INTEGER, Date.now() - DENSE_MS, room.stamps);
+			await adopt(sql, room, work, replay);
+			work.groups.add(replay.group);
+			replay.group.noteProgress();
+			for (const slow of replay.group.allSlow()) work.slow.push(slow);
+			await nodeState.writeSnapshots(sql, replay.group.snapshot(room.stamps.next(), false));
+			await nodeState.clearMarks(sql, ids, beganMs);
+			await storeResults(sql, work, hostsOf(room));
+		});
+	} catch (error) {
+		room.groups.forget(ids);
+		await room.registry.loadLives(room.pool, [...ids]);
+		throw error;
+	}
+}
