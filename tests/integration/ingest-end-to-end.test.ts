@@ -7,6 +7,7 @@ import { Bench } from '../support/broker';
 import { startDatabase, type TestDatabase } from '../support/database';
 import {
 	act,
+	eventually,
 	makeSite,
 	noisy,
 	openStore,
@@ -42,15 +43,6 @@ beforeAll(async () => {
 	pipeline = bench.ending(await runPipeline(store, subscriber), async (p) => await p.close());
 });
 afterAll(async () => await bench.end());
-
-async function eventually<T>(look: () => Promise<T>, good: (seen: T) => boolean): Promise<T> {
-	const endMs = Date.now() + 10_000;
-	for (;;) {
-		const seen = await look();
-		if (good(seen) || Date.now() > endMs) return seen;
-		await new Promise((resolve) => setTimeout(resolve, 50));
-	}
-}
 
 test('a vehicle over a learned bay becomes a stored arrival in the feed', async () => {
 	const [node] = site.nodes;

@@ -11,9 +11,10 @@ import { BUILT_IN_PROFILES } from '$lib/magnetics/sensor-profile';
 import { sealUp } from '$lib/wire/frames';
 import { upTopic } from '$lib/wire/topics';
 import type { ReadingFrame, UpFrame } from '$lib/wire/types';
+import { SECRET } from './ingest-fixed';
 import { testKey, type TestKey } from './mqtt-node';
 
-export const SECRET = 'an installation secret for tests, long enough';
+export { SECRET };
 
 /** Deterministic key of a test node: a child process can sign as it too. */
 export const keyFor = (serial: string): TestKey =>
@@ -143,13 +144,13 @@ export async function runPipeline(
 		mayStore,
 		onLost: () => undefined
 	});
-	return Object.assign(pipeline, {
-		close: async () => {
-			clearInterval(keep);
-			await Object.getPrototypeOf(pipeline).close.call(pipeline);
-			await lease.release(store.pool, lease.PIPELINE_LEASE, holder);
-		}
-	});
+	const close = pipeline.close.bind(pipeline);
+	pipeline.close = async () => {
+		clearInterval(keep);
+		await close();
+		await lease.release(store.pool, lease.PIPELINE_LEASE, holder).catch(() => undefined);
+	};
+	return pipeline;
 }
 
 export const openStore = (url: string): Store => connect(url);
@@ -197,3 +198,17 @@ export const sealed = (node: Pick<TestNode, 'serial' | 'key'>, frame: UpFrame): 
 	sealUp(upTopic(node.serial, frame.kind), frame, node.key.key, 5);
 
 export { select };
+
+/** Looks until it is good; gives back what was seen last. */
+export async function eventually<T>(
+	look: () => Promise<T>,
+	good: (seen: T) => boolean,
+	limitMs = 15_000
+): Promise<T> {
+	const endMs = Date.now() + limitMs;
+	for (;;) {
+		const seen = await look();
+		if (good(seen) || Date.now() > endMs) return seen;
+		await new Promise((resolve) => setTimeout(resolve, 40));
+	}
+}
