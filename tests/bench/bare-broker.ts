@@ -10,6 +10,8 @@ import { testKey, type TestKey } from '../support/mqtt-node';
 export interface BrokerFigures {
 	/** Messages of QoS 1 a second that bare aedes acknowledges and passes to one subscriber. */
 	barePerS: number;
+	/** The same without a subscriber: bare aedes only acknowledges. */
+	bareUnreadPerS: number;
 	/** The same through the held list: handed over, receipted (no database), acknowledged. */
 	heldPerS: number;
 	nodes: number;
@@ -47,9 +49,10 @@ export async function measureBrokers(options: BrokerBenchOptions = {}): Promise<
 	const keys = Array.from({ length: nodes }, (_, i) => testKey(`BENCH-${i}`));
 	const payload = Buffer.alloc(payloadBytes, 0x5a);
 	const load = { keys, payload, window, warmMs, measureMs };
-	const barePerS = await measureBare(load);
+	const barePerS = await measureBare(load, 'read');
+	const bareUnreadPerS = await measureBare(load, 'unread');
 	const heldPerS = await measureHeld(load);
-	return { barePerS, heldPerS, nodes, window, payloadBytes };
+	return { barePerS, bareUnreadPerS, heldPerS, nodes, window, payloadBytes };
 }
 
 interface Load {
@@ -60,12 +63,12 @@ interface Load {
 	measureMs: number;
 }
 
-async function measureBare(load: Load): Promise<number> {
+async function measureBare(load: Load, reading: 'read' | 'unread'): Promise<number> {
 	const child = spawn(process.execPath, ['--input-type=module', '-e', BARE], childOptions({}));
 	try {
 		const port = await portOf(child);
 		const reader = await mqtt.connectAsync(`mqtt://127.0.0.1:${port}`, { protocolVersion: 4 });
-		await reader.subscribeAsync('lodekeep/1/+/up/#', { qos: 0 });
+		if (reading === 'read') await reader.subscribeAsync('lodekeep/1/+/up/#', { qos: 0 });
 		const rate = await rateOf(port, load);
 		await reader.endAsync(true);
 		return rate;

@@ -5,6 +5,10 @@ export interface AnswerPort {
 	flush(): void;
 }
 
+const NOTHING = Buffer.alloc(0);
+/** Enough for a node that repeats in order; bounds what a node that doesn't costs at each message. */
+const ADOPT_SEARCH = 256;
+
 /** One message that was taken and is not committed yet. */
 export interface Held {
 	receipt: number;
@@ -12,8 +16,8 @@ export interface Held {
 	/** null once the connection it came by is gone: then nobody waits for its PUBACK. */
 	port: AnswerPort | null;
 	messageId: number;
-	readonly topic: Buffer;
-	readonly payload: Buffer;
+	topic: Buffer;
+	payload: Buffer;
 	readonly arrivedAtMs: number;
 	readonly promised: boolean;
 	readonly costBytes: number;
@@ -52,13 +56,13 @@ export class NodeQueue {
 	 */
 	adopt(port: AnswerPort, messageId: number, topic: Buffer, payload: Buffer): boolean {
 		if (this.orphans === 0) return false;
-		const span = this.size;
+		const span = Math.min(this.size, ADOPT_SEARCH);
 		const start = Math.max(0, this.#adoptAt - this.head);
 		for (let step = 0; step < span; step++) {
-			const i = this.head + ((start + step) % span);
+			const i = this.head + ((start + step) % this.size);
 			const held = this.items[i]!;
-			if (held.port !== null || !held.promised || !held.payload.equals(payload)) continue;
-			if (!held.topic.equals(topic)) continue;
+			if (held.port !== null || !held.promised || held.settled) continue;
+			if (!held.payload.equals(payload) || !held.topic.equals(topic)) continue;
 			held.port = port;
 			held.messageId = messageId;
 			this.orphans--;
@@ -162,6 +166,9 @@ export class HeldList {
 			const held = this.#items[i]!;
 			if (held.settled) continue;
 			held.settled = true;
+			// The entry may stay for its place in a queue; its bytes need not.
+			held.topic = NOTHING;
+			held.payload = NOTHING;
 			this.#size--;
 			this.bytes -= held.costBytes;
 			if (i < this.#next) {
