@@ -1,5 +1,5 @@
 import type uPlot from 'uplot';
-import type { Curve, PlotEvent, Threshold } from './Plot.svelte';
+import type { Curve, PlotEvent, Threshold } from './plot-types';
 
 interface Wanted {
 	style: CSSStyleDeclaration;
@@ -58,7 +58,11 @@ export function plotOptions(wanted: Wanted): {
 			y: { range: (_plot, least, most) => room(least, most, wanted.thresholds) }
 		},
 		axes: [
-			axis(inks),
+			{
+				...axis(inks),
+				space: 74,
+				values: (_plot, ticks, _axis, _space, stepS) => timeLabels(ticks, stepS, wanted.timezone)
+			},
 			{ ...axis(inks), size: AXIS_PX, values: (_plot, ticks) => ticks.map((v) => wanted.write(v)) }
 		],
 		cursor: {
@@ -153,12 +157,10 @@ function selected(plot: uPlot, onrange: (fromS: number, toS: number) => void): v
 	onrange(Math.round(from), Math.round(to));
 }
 
-/** A Date whose local parts are the wall time of the zone: what uPlot labels its axis with. */
+/** A Date whose local parts are the wall time of the zone: what uPlot lays its ticks by. */
 function zoned(seconds: number, timezone: string): Date {
 	const parts = Object.fromEntries(
-		new Intl.DateTimeFormat('en-GB', {
-			timeZone: timezone,
-			hourCycle: 'h23',
+		formatter('parts', timezone, {
 			year: 'numeric',
 			month: '2-digit',
 			day: '2-digit',
@@ -177,4 +179,34 @@ function zoned(seconds: number, timezone: string): Date {
 		parts['minute'] ?? 0,
 		parts['second'] ?? 0
 	);
+}
+
+const DAY_S = 86_400;
+
+/** '07:55', with the date under the first tick and where it changes; '3 Mar' where ticks are days. */
+function timeLabels(ticks: readonly number[], stepS: number, timezone: string): string[] {
+	const day = formatter('day', timezone, { day: 'numeric', month: 'short' });
+	if (stepS >= DAY_S) return ticks.map((tick) => day.format(tick * 1000));
+	const clock = formatter(stepS < 60 ? 'clockS' : 'clock', timezone, {
+		hour: '2-digit',
+		minute: '2-digit',
+		...(stepS < 60 ? { second: '2-digit' } : {})
+	});
+	let last = '';
+	return ticks.map((tick) => {
+		const date = day.format(tick * 1000);
+		const label = clock.format(tick * 1000);
+		if (date === last) return label;
+		last = date;
+		return `${label}\n${date}`;
+	});
+}
+
+const kept = new Map<string, Intl.DateTimeFormat>();
+function formatter(name: string, timeZone: string, options: Intl.DateTimeFormatOptions) {
+	const key = `${name} ${timeZone}`;
+	const format =
+		kept.get(key) ?? new Intl.DateTimeFormat('en-GB', { timeZone, hourCycle: 'h23', ...options });
+	kept.set(key, format);
+	return format;
 }

@@ -9,6 +9,8 @@ export interface Column<Row> {
 	sortBy?: (row: Row) => string | number | null;
 	/** What the filter searches and what an unadorned cell shows. */
 	text: (row: Row) => string;
+	/** Codes, serials and times stay in one line. */
+	tight?: boolean;
 	/** Left out on narrow screens unless chosen. */
 	minor?: boolean;
 }
