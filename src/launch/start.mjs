@@ -6,6 +6,7 @@ import {
 	checkNode,
 	installDebian,
 	installNpm,
+	orEnd,
 	syncKit,
 	DATABASE_PACKAGES
 } from './prepare.mjs';
