@@ -26,7 +26,7 @@ const FLOATS = [
 	'peakMg',
 	'passMg'
 ] as const satisfies readonly (keyof Fast)[];
-const COUNTS = ['boxN', 'levelN', 'openN'] as const satisfies readonly (keyof Fast)[];
+const COUNTS = ['boxN', 'levelN', 'openN', 'polarity'] as const satisfies readonly (keyof Fast)[];
 const BYTES = [
 	'passN',
 	'rebase',
@@ -59,7 +59,7 @@ export function encodeFastState(fast: Fast): Uint8Array {
 		at += 4;
 	}
 	for (const name of COUNTS) {
-		to.setUint32(at, fast[name], true);
+		to.setInt32(at, fast[name], true);
 		at += 4;
 	}
 	for (const name of BYTES) bytes[at++] = fast[name];
@@ -89,7 +89,7 @@ export function decodeFastState(bytes: Uint8Array): Fast {
 		at += 4;
 	}
 	for (const name of COUNTS) {
-		fast[name] = from.getUint32(at, true);
+		fast[name] = from.getInt32(at, true);
 		at += 4;
 	}
 	for (const name of BYTES) fast[name] = bytes[at++] ?? 0;

@@ -67,20 +67,23 @@ export function takeInversion(n: Node, step: Step): boolean {
 	return true;
 }
 
+/** A film turns over at once; a vehicle is seen on its way. */
+const AT_ONCE_MS = 1200;
+
 function invertedAxes(n: Node, step: Step): Triple | null {
 	const { fast, slow, params } = n;
 	if (slow.offset === null || slow.reference === null) return null;
+	if (step.burst && step.toMs - step.newMs > AT_ONCE_MS) return null;
 	const { baseline, level } = fast;
-	const known: Triple[] = [triple(baseline)];
 	const old: Triple = [level[0] - step.j[0], level[1] - step.j[1], level[2] - step.j[2]];
-	known.push(old);
-	const tolerance = Math.max(offMg(n), params.invertedRatio * size3(baseline));
-	if (known.some((k) => apart(level, k) <= 2 * tolerance)) return null;
+	const near = Math.max(2 * stillMg(n), params.invertedRatio * size3(old));
+	const known = step.gapS > 0 ? [old, triple(baseline)] : [old];
+	if (known.some((k) => apart(level, k) <= 2 * Math.max(near, offMg(n)))) return null;
 	let best: Triple | null = null;
-	let bestMg = tolerance;
+	let bestMg = near;
 	for (const signs of AXIS_SETS) {
-		const carries = [0, 1, 2].every(
-			(i) => signs[i as 0] > 0 || Math.abs(baseline[i as 0]) > params.invertedAxisMg
+		const carries = ([0, 1, 2] as const).some(
+			(i) => signs[i] < 0 && Math.abs(old[i]) > params.invertedAxisMg
 		);
 		if (!carries) continue;
 		const back = mirrored(level, signs);

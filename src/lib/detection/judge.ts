@@ -2,7 +2,7 @@ import { arrivalConfidence, capOf, carriedConfidence, departureConfidence } from
 import { clearDoubt, doubtIt, enter, remember } from './entries';
 import { disturbanceWords, evidence, neighbourWords, spanWords, stepWords } from './evidence';
 import { atReference, fromReferenceMg, unexplainedByTempMg } from './reference';
-import { summed, touch, triple, type Group, type Node, type Step } from './state';
+import { summed, touch, triple, type Group, type Node, type Step, type Triple } from './state';
 import { addStay } from './stays';
 import { offMg, onMg, releaseMg } from './thresholds';
 import { apart, set3, size3, sumSize } from './vec';
@@ -25,24 +25,30 @@ export function isArrival(n: Node, step: Step): boolean {
 	if (step.gapS > 0) {
 		return d >= on + unexplainedByTempMg(n, n.fast.baselineTempC) && size3(step.j) >= on;
 	}
-	const before = Math.hypot(
-		level[0] - step.j[0] - baseline[0],
-		level[1] - step.j[1] - baseline[1],
-		level[2] - step.j[2] - baseline[2]
-	);
-	return d - before >= n.params.stepRatio * on;
+	return size3(step.j) >= n.params.stepRatio * on;
 }
+
+/** A departure takes back most of what the arrival brought; less is the vehicle next to it, or drift. */
+const MOST_OF_IT = 0.6;
+const HALF_OF_IT = 0.5;
 
 /** Would this step at an occupied bay be the vehicle's leaving (step ledger, release)? */
 export function isDeparture(n: Node, step: Step): boolean {
 	const { arrival } = n.slow;
-	const off = offMg(n);
-	if (size3(step.j) < n.params.stepRatio * onMg(n)) return false;
-	if (arrival !== null) {
-		const undone = Math.max(off, n.params.undoRatio * size3(arrival.step));
-		if (sumSize(step.j, arrival.step) <= undone) return true;
-	}
+	const size = size3(step.j);
+	if (size < n.params.stepRatio * onMg(n)) return false;
+	if (arrival === null) return apart(n.fast.level, n.fast.baseline) < releaseMg(n);
+	const stood = Math.min(size3(arrival.first), size3(arrival.step));
+	if (step.gapS === 0 && size < MOST_OF_IT * Math.min(stood, n.fast.stayMg)) return false;
+	if (undoes(n, step, arrival.first) || undoes(n, step, arrival.step)) return true;
 	return apart(n.fast.level, n.fast.baseline) < releaseMg(n) || atReference(n, n.fast.level);
+}
+
+/** Step ledger: does this step take that one back? */
+function undoes(n: Node, step: Step, came: Triple): boolean {
+	const size = size3(came);
+	const near = Math.min(offMg(n), HALF_OF_IT * size);
+	return sumSize(step.j, came) <= Math.max(near, n.params.undoRatio * size);
 }
 
 /** Judges a settled step by the node's own evidence. */

@@ -7,6 +7,8 @@ import { apart, axisApart, set3 } from './vec';
 
 /** The window holds this many readings at most; older ones fall out. */
 const WINDOW = 64;
+/** Readings of a burst would fill the window within seconds. */
+const APART_MS = 1900;
 const MAD_TO_SIGMA = 1.4826;
 /** The last readings must lie this near the median, else something has just driven up. */
 const LAST_AGREE = 3;
@@ -34,6 +36,7 @@ function noiseOf(values: number[]): number {
 /** Takes a reading into the learning window; learns when it is long, still and quiet enough. */
 export function learn(g: Group, n: Node, atMs: number): void {
 	const { slow, fast, params } = n;
+	if (atMs - (slow.windowAtMs.at(-1) ?? 0) < APART_MS) return;
 	slow.window.push(fast.last[0], fast.last[1], fast.last[2]);
 	slow.windowAtMs.push(atMs);
 	if (slow.windowAtMs.length > WINDOW) {

@@ -1,7 +1,7 @@
 import { enter, lookBy, putBack, putBaselineBack, voidEntry } from './entries';
 import { evidence, named, stepWords } from './evidence';
 import { isArrival, judge, startStay, takeVacant, type Overlap } from './judge';
-import { aisleEnds, takeAisle } from './queue';
+import { aisleLimitMg, takeAisle } from './queue';
 import { summed, touch, type Echo, type Group, type Node, type Step } from './state';
 import { offMg, onMg } from './thresholds';
 import { apart, shift3, size3, sumSize } from './vec';
@@ -43,7 +43,7 @@ const weak = (n: Node, step: Step): boolean =>
 	n.slow.state === 'vacant' &&
 	step.gapS === 0 &&
 	isArrival(n, step) &&
-	apart(n.fast.level, n.fast.baseline) < n.params.queueOnRatio * onMg(n);
+	apart(n.fast.level, n.fast.baseline) < aisleLimitMg(n, step);
 
 /** Decides the pending step when nothing it must be compared with is open any more. */
 export function resolve(
@@ -97,7 +97,6 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 		}
 	}
 	markUndone(n, step);
-	aisleEnds(n, step);
 	for (const m of n.near) resolve(g, m, atMs, 'neighbour');
 }
 

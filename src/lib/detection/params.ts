@@ -42,6 +42,7 @@ export const PARAMS = {
 	gapPeriods: spec(2.5, 1.5, 10, 'periods', 'the same in reporting periods'),
 	baselineTauS: spec(1800, 120, 14400, 's', 'the baseline follows weather, not vehicles'),
 	undoRatio: spec(0.4, 0.1, 0.8, '1', 'a departure undoes its arrival within this share of it'),
+	slopeSeMgPerC: spec(1, 0, 2, 'mG/°C', 'a slope less sure than this is not used'),
 	slopePriorMgPerC: spec(1, 0, 3, 'mG/°C', 'spread of temperature slopes while a node has none'),
 	neighbourM: spec(4, 0, 20, 'm', 'vehicles are felt as far as the next bay'),
 	echoRatio: spec(0.55, 0.1, 0.9, '1', 'a step under this share of the neighbour’s is its echo'),
@@ -61,6 +62,8 @@ export const PARAMS = {
 	queueS: spec(20, 5, 120, 's', 'vehicles of a queue stop within this time of each other'),
 	queueFactor: spec(2.5, 1, 10, '1', 'steps of one queue are alike within this factor'),
 	queueOnRatio: spec(2, 1, 5, '1', 'a level under this many thresholds may stand in the aisle'),
+	queueFlatOnRatio: spec(3, 1, 6, '1', 'the same for what rose without an axle’s peak'),
+	flatRatio: spec(1.3, 1.05, 3, '1', 'a peak under this many times the level shows no axle'),
 	queueMaxS: spec(600, 60, 7200, 's', 'what stands longer is parked'),
 	invertedAxisMg: spec(50, 20, 200, 'mG', 'an axis must carry this much to show its sign'),
 	invertedRatio: spec(

@@ -8,9 +8,9 @@ import type { PulseItem } from './types';
 import { axisApart, set3, shift3, size3, type Axes } from './vec';
 
 const MS_PER_S = 1000;
-/** `after` repeats `set` within this many sigma (method 2), never asked finer than a few counts. */
-const REPEAT_SIGMA = 4;
-const REPEAT_LEAST_MG = 1.5;
+/** `after` repeats `set` within 4 sigma of a difference (method 2), never asked finer than this. */
+const REPEAT_SIGMA = 4 * Math.SQRT2;
+const REPEAT_LEAST_MG = 4;
 const CAP_AFTER_SCALING = 0.8;
 /** A film does not gain or lose more than this at once without flipping. */
 const LEAST_RATIO = 0.4;
@@ -36,15 +36,14 @@ function refusal(n: Node, pulse: PulseItem): string | null {
 	}
 	if (pulse.before === null || fast.levelN === 0) return null;
 	const recent = pulse.atMs - fast.lastAtMs <= n.member.periodS * MS_PER_S;
-	const before = fieldOf(n, pulse.before.rawMg, pulse.before.polarity, n.slow.offset);
+	const before = fieldOf(n, pulse.before.rawMg, polarityBefore(n, pulse), n.slow.offset);
 	return recent && axisApart(before, fast.level) > 2 * stillMg(n)
 		? 'the field moved around it'
 		: null;
 }
 
-/** Raw field to the field at the node: B = s p (r - O); polarity 0 = not known, taken as after a SET. */
-function fieldOf(n: Node, rawMg: Vec3, polarity: number, offset: Axes | null): Triple {
-	const p = polarity === 0 ? 1 : polarity;
+/** Raw field to the field at the node: B = s p (r - O). */
+function fieldOf(n: Node, rawMg: Vec3, p: number, offset: Axes | null): Triple {
 	const o = offset ?? [0, 0, 0];
 	const s = n.slow.signs;
 	return [s[0] * p * (rawMg[0] - o[0]), s[1] * p * (rawMg[1] - o[1]), s[2] * p * (rawMg[2] - o[2])];
@@ -61,7 +60,7 @@ export function takePulse(g: Group, n: Node, pulse: PulseItem): void {
 	fast.quietUntilMs = pulse.atMs + n.params.pulseQuietS * MS_PER_S;
 	if (fast.checkAtMs === 0) fast.checkAtMs = pulse.atMs;
 	if (why === null && pulse.setMg !== null && pulse.resetMg !== null) {
-		takeOffset(n, midOf(pulse.setMg, pulse.resetMg));
+		takeOffset(n, pulse, midOf(pulse.setMg, pulse.resetMg));
 	}
 	if (fast.levelN > 0 && fast.open === 0) carryOver(n, pulse);
 	slow.signs = [1, 1, 1];
@@ -77,11 +76,18 @@ export function takePulse(g: Group, n: Node, pulse: PulseItem): void {
 	});
 }
 
+/** The polarity in which levels were read until this pulse. */
+const polarityBefore = (n: Node, pulse: PulseItem): number =>
+	pulse.before === null || pulse.before.polarity === 0 ? n.fast.polarity : pulse.before.polarity;
+
 /** A better offset never looks like a vehicle: b' = b - (O' - O), and so with all that is kept (method 2). */
-function takeOffset(n: Node, offset: Triple): void {
+function takeOffset(n: Node, pulse: PulseItem, offset: Triple): void {
 	const { fast, slow } = n;
 	const was = slow.offset ?? [0, 0, 0];
-	const by: Triple = [was[0] - offset[0], was[1] - offset[1], was[2] - offset[2]];
+	const frame = polarityBefore(n, pulse);
+	const by = [0, 1, 2].map(
+		(i) => frame * slow.signs[i as 0] * (was[i as 0] - offset[i as 0])
+	) as Triple;
 	shift3(fast.baseline, by);
 	shift3(fast.level, by);
 	shift3(fast.last, by);
@@ -112,7 +118,7 @@ function carryOver(n: Node, pulse: PulseItem): void {
 		fast.reanchor = slow.reference === null ? 0 : 1;
 		return;
 	}
-	const before = fieldOf(n, pulse.before.rawMg, pulse.before.polarity, slow.offset);
+	const before = fieldOf(n, pulse.before.rawMg, polarityBefore(n, pulse), slow.offset);
 	slow.signs = [1, 1, 1];
 	const healed = fieldOf(n, after, pulse.polarityAfter, slow.offset);
 	const occupied = slow.state === 'occupied' || slow.lastKnown?.state === 'occupied';

@@ -3,7 +3,7 @@ import { lookBy } from './entries';
 import { arrive, isArrival } from './judge';
 import { touch, type Group, type Node, type Step } from './state';
 import { offMg, onMg } from './thresholds';
-import { apart, size3, sumSize } from './vec';
+import { apart, size3 } from './vec';
 
 const MS_PER_S = 1000;
 
@@ -24,13 +24,23 @@ function likeStep(n: Node, step: Step): { node: Node; step: Step } | null {
 	return null;
 }
 
+/** What drives over a node shows its axles; what passes beside it rises to its level and no higher. */
+export const isFlat = (n: Node, step: Step): boolean =>
+	step.burst && step.peakMg < n.params.flatRatio * size3(step.j);
+
+/** A level under this may stand in the aisle, mG. */
+export function aisleLimitMg(n: Node, step: Step): number {
+	const { queueOnRatio, queueFlatOnRatio } = n.params;
+	return onMg(n) * (isFlat(n, step) ? queueFlatOnRatio : queueOnRatio);
+}
+
 /** A low level beside a like one of the row may stand in the aisle: the state stays for now. */
 export function takeAisle(g: Group, n: Node, step: Step, atMs: number): boolean {
 	const { slow, fast, params } = n;
 	if (slow.state !== 'vacant') return false;
 	const d = apart(fast.level, fast.baseline);
 	if (slow.aisle !== null) return followAisle(g, n, step, d, atMs);
-	if (step.gapS > 0 || d >= params.queueOnRatio * onMg(n) || !isArrival(n, step)) return false;
+	if (step.gapS > 0 || d >= aisleLimitMg(n, step) || !isArrival(n, step)) return false;
 	const like = likeStep(n, step);
 	if (like === null) return false;
 	step.became = 'aisle';
@@ -49,26 +59,19 @@ export function takeAisle(g: Group, n: Node, step: Step, atMs: number): boolean 
 /** A further step while 'aisle': gone, grown into a vehicle, or still waiting. */
 function followAisle(g: Group, n: Node, step: Step, d: number, atMs: number): boolean {
 	const { slow, params } = n;
-	if (d < offMg(n)) {
-		slow.aisle = null;
+	const { aisle } = slow;
+	if (d >= aisleLimitMg(n, step)) arrive(g, n, step, [], atMs);
+	else {
 		step.became = 'nothing';
-	} else if (d >= params.queueOnRatio * onMg(n)) arrive(g, n, step, [], atMs);
-	else step.became = 'nothing';
+		// Another vehicle stands there now: the queue has moved up.
+		const deadlineMs = step.toMs + params.queueMaxS * MS_PER_S;
+		if (d < offMg(n)) slow.aisle = null;
+		else if (aisle !== null && size3(step.j) >= offMg(n)) {
+			slow.aisle = { ...aisle, step: { ...step, before: null }, deadlineMs };
+		}
+	}
 	touch(n);
 	return true;
-}
-
-/** When the other of the queue moves on, who stays is parked: looked at after another queueS. */
-export function aisleEnds(n: Node, step: Step): void {
-	for (const m of n.mates) {
-		const { aisle } = m.slow;
-		if (aisle?.by !== n.id) continue;
-		const undone = Math.max(offMg(n), n.params.echoUndoRatio * size3(aisle.byJ));
-		if (sumSize(step.j, aisle.byJ) > undone) continue;
-		aisle.deadlineMs = Math.min(aisle.deadlineMs, step.toMs + n.params.queueS * MS_PER_S);
-		lookBy(m, aisle.deadlineMs);
-		touch(m);
-	}
 }
 
 /** What outlasts the queue is parked, since its own time. */

@@ -10,13 +10,13 @@ const NEAR_TEMP_C = 5;
  * null when there is none or its temperature is too far off to say.
  */
 export function referenceNow(n: Node): Triple | null {
-	const { reference, offset, slope } = n.slow;
+	const { reference, offset, slope, signs } = n.slow;
 	if (reference === null) return null;
 	const now: Triple = [...reference.fieldMg];
 	const deltaC = n.fast.tempC - (reference.tempC ?? NaN);
 	for (let i = 0; i < 3; i++) {
 		const was = reference.offsetMg?.[i as 0] ?? 0;
-		now[i as 0] += was - (offset?.[i as 0] ?? 0);
+		now[i as 0] += n.fast.polarity * signs[i as 0] * (was - (offset?.[i as 0] ?? 0));
 		if (slope !== null && !Number.isNaN(deltaC)) now[i as 0] += slope.k[i as 0] * deltaC;
 	}
 	if (slope === null && Math.abs(deltaC) > NEAR_TEMP_C) return null;

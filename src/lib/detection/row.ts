@@ -33,6 +33,7 @@ export function takeRow(g: Group, n: Node, row: RowItem): void {
 	}
 	const [o0, o1, o2] = slow.offset ?? ZERO;
 	const p = row.polarity;
+	fast.polarity = p;
 	const { last, signs } = { last: fast.last, signs: slow.signs };
 	const x = Math.fround(p * signs[0] * (row.rawMg[0] - o0));
 	const y = Math.fround(p * signs[1] * (row.rawMg[1] - o1));
@@ -51,6 +52,16 @@ export function takeRow(g: Group, n: Node, row: RowItem): void {
 	else inService(g, n, atMs, dtMs, dx, dy, dz);
 	fast.lastAtMs = atMs;
 	if (atMs >= fast.checkAtMs) keepHouse(g, n, atMs);
+}
+
+/** A magnet seen through the film that it has just weakened reads lower than it is. */
+const WEAKENED = 0.5;
+
+function pastHalfFilm(n: Node): boolean {
+	const { last, openClipped } = n.fast;
+	const limit = WEAKENED * n.member.profile.filmSafeMg;
+	const high = Math.max(Math.abs(last[0]), Math.abs(last[1]), Math.abs(last[2]));
+	return high > limit && openClipped < MAGNET_ROWS;
 }
 
 const ZERO = [0, 0, 0] as const;
@@ -104,8 +115,12 @@ function inService(
 		return;
 	}
 	if (fast.open === 1) {
-		continueStep(g, n, atMs);
-		return;
+		const rested = dtMs > BURST_MS && fast.boxN >= STILL_READINGS;
+		if (!rested) {
+			continueStep(g, n, atMs);
+			return;
+		}
+		settle(g, n, atMs);
 	}
 	const still = stillMg(n);
 	const { last, level } = fast;
@@ -144,7 +159,8 @@ function quiet(
 		fast.stayMg = Math.fround(fast.stayMg + (d > fast.stayMg ? step : -step));
 		return;
 	}
-	if (slow.state !== 'vacant' || fast.boxN < STILL_READINGS || d >= offMg(n)) return;
+	if (slow.state !== 'vacant' || slow.aisle !== null || fast.boxN < STILL_READINGS) return;
+	if (d >= onMg(n)) return;
 	let take = 1 - Math.exp(-Math.min(dtMs, LONGEST_DT_MS) / (params.baselineTauS * MS_PER_S));
 	if (fast.rebase > 0) {
 		take = Math.max(take, 1 / (5 - fast.rebase));
@@ -205,6 +221,7 @@ function continueStep(g: Group, n: Node, atMs: number): void {
 	}
 	extendBox(n, atMs);
 	fast.peakMg = Math.fround(Math.max(fast.peakMg, apart(fast.last, fast.level)));
+	if (pastHalfFilm(n)) fast.openClipped++;
 	noteCrossing(n, atMs);
 	if (fast.boxN >= 2 && atMs - fast.boxFromMs >= n.params.stillS * MS_PER_S) settle(g, n, atMs);
 }
@@ -216,7 +233,7 @@ const ALONE_MS = 10_000;
 function isBack(n: Node, atMs: number): boolean {
 	const { fast } = n;
 	const still = stillMg(n);
-	if (axisApart(fast.last, fast.level) > still || fast.openClipped === 1) return false;
+	if (axisApart(fast.last, fast.level) > still || fast.openClipped > 0) return false;
 	return fast.peakMg <= SMALL_MOVES * still || atMs - fast.lastAtMs >= ALONE_MS;
 }
 
@@ -250,6 +267,9 @@ function meanOfBox(n: Node): void {
 	level[1] = boxSum[1] / boxN;
 	level[2] = boxSum[2] / boxN;
 }
+
+/** An axle may pass the film's limit for a row or two; a magnet stays. */
+const MAGNET_ROWS = 3;
 
 /** The field is still again: back on the old level (a pass), or on a new one (a step). */
 function settle(g: Group, n: Node, atMs: number): void {
@@ -311,7 +331,8 @@ function makeStep(n: Node, old: [number, number, number], atMs: number): Step {
 		riseS: burst
 			? Math.max(1, Math.round((fast.boxFromMs - fromMs) / MS_PER_S))
 			: Math.round((fast.openNewAtMs - fast.openOldAtMs) / MS_PER_S),
-		clipped: fast.openClipped === 1,
+		peakMg: fast.peakMg,
+		clipped: fast.openClipped >= MAGNET_ROWS,
 		became: 'pending',
 		before: null
 	};

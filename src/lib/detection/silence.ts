@@ -8,6 +8,10 @@ const MS_PER_S = 1000;
 /** One clipped reading is an accident; two are a state (method 1). */
 const CLIPPED_READINGS = 2;
 
+/** A row at the end of the range is worth as many rows past the film's limit. */
+const CLIPPED_COUNTS_AS = 3;
+const MANY = 250;
+
 /** A row after a silence that hides how the field moved; over the grace time the state was unknown. */
 export function atSilence(g: Group, n: Node, atMs: number, dtMs: number): void {
 	const { fast, slow } = n;
@@ -48,13 +52,14 @@ export function takeClipped(g: Group, n: Node, atMs: number, clipped: boolean): 
 		fast.openNewAtMs = atMs;
 		fast.openGap = 0;
 		fast.openN = 0;
+		fast.openClipped = 0;
 		fast.peakMg = 0;
 		fast.crossAtMs = 0;
 		fast.visibleAtMs = atMs;
 		g.active++;
 	}
 	fast.openN++;
-	fast.openClipped = 1;
+	fast.openClipped = Math.min(MANY, fast.openClipped + (clipped ? CLIPPED_COUNTS_AS : 1));
 	fast.boxN = 0;
 	if (!clipped) return;
 	if (fast.clippedRun === 0) fast.clippedFromMs = atMs;

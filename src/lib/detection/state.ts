@@ -5,6 +5,8 @@ import { view3, type V3 } from './vec';
 export type Triple = [number, number, number];
 
 const VECTORS = 8;
+/** Median |difference| of a sensor of 0.6 mG rms: where the running estimate begins. */
+const USUAL_NOISE_MG = 0.6;
 
 /**
  * What changes with every row. Vectors are float32 in one buffer; scalars listed in codec.ts are held
@@ -26,6 +28,10 @@ export class Fast {
 	readonly noise: V3 = view3(this.buffer, 18);
 	/** Site's geomagnetic change when last told, (h, e, z), mG. */
 	readonly site: V3 = view3(this.buffer, 21);
+
+	constructor() {
+		for (const i of [0, 1, 2] as const) this.noise[i] = USUAL_NOISE_MG;
+	}
 
 	lastAtMs = 0;
 	boxFromMs = 0;
@@ -67,6 +73,8 @@ export class Fast {
 	openGap = 0;
 	openClipped = 0;
 	clippedRun = 0;
+	/** Polarity of the last row. */
+	polarity = 1;
 	/** 1 = the level after a pulse is still to be taken, its jump being the film's. */
 	reanchor = 0;
 }
@@ -87,6 +95,8 @@ export interface Step {
 	/** Silence it happened in, s; 0 = none. */
 	gapS: number;
 	riseS: number;
+	/** Largest distance from the old level on the way, mG. */
+	peakMg: number;
 	clipped: boolean;
 	became: 'pending' | 'nothing' | 'arrival' | 'departure' | 'echo' | 'aisle' | 'film';
 	/** State before it, to be put back when it proves an echo. */

@@ -111,7 +111,7 @@ const KEEP = 0.8;
 function learnSlope(n: Node): void {
 	const { slow } = n;
 	const fresh = slopeOf(slow.hours);
-	if (fresh === null) return;
+	if (fresh === null || Math.max(...fresh.se) > n.params.slopeSeMgPerC) return;
 	slow.slope = slow.slope === null ? fresh : blend(slow.slope, fresh);
 	n.fast.baselineTempC = n.fast.tempC;
 }
