@@ -9,7 +9,7 @@ import { mutable, secure } from '$lib/server/api/headers';
 import { closeInstance, instance, startInstance, type Instance } from '$lib/server/api/instance';
 import { observe } from '$lib/server/api/metrics';
 import { problem, problemResponse } from '$lib/server/api/problem';
-import { asProblem } from '$lib/server/api/refusals';
+import { asProblem, noRoute } from '$lib/server/api/refusals';
 import { authConfig } from '$lib/server/auth/authjs';
 import { identify, isProgram, NOBODY, type Caller } from '$lib/server/auth/identify';
 import { forgedRequest } from '$lib/server/auth/origin';
@@ -68,6 +68,8 @@ async function answer(app: Instance, event: Event, resolve: Resolve): Promise<Re
 	if (url.pathname.startsWith('/api/v1') && request.method === 'OPTIONS') {
 		return preflight(request.headers.get('origin'), await originsOfKeys(app));
 	}
+	// Without the framework: it would draw a page of refusal first.
+	if (api && event.route.id === null) return noRoute(url.pathname);
 	if (url.pathname.startsWith('/auth/')) return await authRoute(event);
 	const caller = await callerOf(app, event, authorization);
 	if (caller === null) return refuse(api, 503, 'The database is away. Try again.');

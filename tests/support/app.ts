@@ -77,6 +77,8 @@ export async function startApp(o: AppOptions): Promise<TestApp> {
 			BODY_SIZE_LIMIT: '20M',
 			LOG_LEVEL: 'debug',
 			SHUTDOWN_TIMEOUT: '5',
+			// No broker unless a test brings one: the pipeline still takes acts.
+			MQTT_URL: 'mqtt://127.0.0.1:9',
 			...o.env
 		}
 	});

@@ -50,7 +50,7 @@ async function reportOf(app: Instance, db: Db, row: bays.BayViewRow): Promise<Re
 		profile === null || x === null || y === null || z === null
 			? null
 			: scale(countsToMg([x, y, z], profile), heard.polarity ?? 1);
-	const view = app.nodeView(row.nodeId);
+	const view = await app.nodeView(row.nodeId);
 	return {
 		serial: row.serial,
 		heardAt: rfc3339OrNull(heard.heardAtMs),

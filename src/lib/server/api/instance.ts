@@ -8,7 +8,8 @@ import { startSender, type Sender } from '$lib/server/outbox/sender';
 import { createSecret, type Secret } from '$lib/server/secret';
 import { connect, type Store } from '$lib/server/store/connect';
 import { reachRows } from '$lib/server/store/queries/people';
-import { start as startUpkeep } from '../upkeep';
+import { startSupervisor, type SupervisorStatus } from '$lib/server/supervisor';
+import { start as startUpkeep } from '$lib/server/upkeep';
 import { CodedCache } from './compress';
 import { RateLimiter } from './rate-limit';
 
@@ -26,11 +27,10 @@ export interface Instance {
 	readonly coded: CodedCache;
 	readonly sender: Sender;
 	/** The pipeline looks for acts now. */
-	nudge(): void;
-	/** What detection holds of a node now; null while its group is not loaded. */
-	nodeView(nodeId: number): NodeView | null;
-	/** Broker reached, and this copy's (or another's) pipeline takes messages. */
-	ingestReady(): { broker: boolean; subscriber: boolean };
+	readonly nudge: () => void;
+	/** What detection holds of a node now; null while nothing is stored. */
+	readonly nodeView: (nodeId: number) => Promise<NodeView | null>;
+	readonly ingest: () => SupervisorStatus;
 	/** Cookies carry Secure and the __Host- prefix. */
 	readonly secureCookies: boolean;
 	close(): Promise<void>;
@@ -80,6 +80,7 @@ function create(config: Config): Instance {
 		.map((text) => createSecret(text).derive('session').toString('hex'));
 	const sender = startSender({ db: store.db, secret, log, config });
 	const upkeep = startUpkeep(databaseUrl, log);
+	const supervisor = startSupervisor({ config, store, secret, log });
 	return {
 		config,
 		log,
@@ -92,11 +93,14 @@ function create(config: Config): Instance {
 		limiter: new RateLimiter(),
 		coded: new CodedCache(),
 		sender,
-		nudge: () => undefined,
-		nodeView: () => null,
-		ingestReady: () => ({ broker: false, subscriber: false }),
+		nudge: () => {
+			supervisor.nudge();
+		},
+		nodeView: async (nodeId) => await supervisor.nodeView(nodeId),
+		ingest: () => supervisor.status(),
 		secureCookies,
 		close: async () => {
+			await supervisor.close();
 			await sender.close();
 			await upkeep.close();
 			await store.close();

@@ -1,4 +1,6 @@
-import { Counter, Histogram, Registry, collectDefaultMetrics } from 'prom-client';
+import { Counter, Gauge, Histogram, Registry, collectDefaultMetrics } from 'prom-client';
+import type { PipelineStatus } from '$lib/server/ingest/pipeline-status';
+import { instance } from './instance';
 
 const KEY = Symbol.for('lodekeep.metrics');
 
@@ -20,6 +22,7 @@ export function metrics(): Metrics {
 function create(): Metrics {
 	const registry = new Registry();
 	collectDefaultMetrics({ register: registry, prefix: 'lodekeep_' });
+	for (const [figure, help] of Object.entries(INGEST)) ingestGauge(registry, figure, help);
 	return {
 		registry,
 		requests: new Counter({
@@ -36,6 +39,35 @@ function create(): Metrics {
 			registers: [registry]
 		})
 	};
+}
+
+type Figure = {
+	[K in keyof PipelineStatus]: PipelineStatus[K] extends number ? K : never;
+}[keyof PipelineStatus];
+
+/** Figures of the pipeline that runs here; absent in a copy that waits. */
+const INGEST = {
+	messages: 'Messages stored since this pipeline began.',
+	readings: 'Readings stored since this pipeline began.',
+	rejected: 'Messages rejected since this pipeline began.',
+	events: 'Events told since this pipeline began.',
+	batches: 'Batches committed since this pipeline began.',
+	retries: 'Batches tried again since this pipeline began.',
+	pending: 'Messages taken and not yet acknowledged.',
+	delayS: 'Seconds from arrival to commit of the last batch.'
+} as const satisfies Partial<Record<Figure, string>>;
+
+function ingestGauge(registry: Registry, figure: string, help: string): void {
+	const name = figure.replace(/[A-Z]/g, (letter) => `_${letter.toLowerCase()}`);
+	new Gauge({
+		name: `lodekeep_ingest_${name}`,
+		help,
+		registers: [registry],
+		collect() {
+			const status = instance().ingest().pipeline;
+			if (status !== null) this.set(status[figure as Figure]);
+		}
+	});
 }
 
 const METHODS = new Set(['GET', 'HEAD', 'POST', 'PUT', 'PATCH', 'DELETE', 'OPTIONS']);

@@ -106,7 +106,7 @@ export async function nodeDetail(app: Instance, serial: string): Promise<Answer 
 	const summary = row === null ? null : await nodes.summaryOf(db, row.id);
 	if (row === null || summary === null) return problem(404, 'There is no such node.');
 	const learned = await referenceView(db, row.id);
-	const inUse = app.nodeView(row.id)?.offsetMg ?? null;
+	const inUse = (await app.nodeView(row.id))?.offsetMg ?? null;
 	return ok({
 		...nodeSummary(summary),
 		periodS: row.periodS,

@@ -24,6 +24,13 @@ async function databaseAnswers(app: Instance): Promise<boolean> {
 	});
 }
 
+/** A copy that waits while another runs the pipeline has no need of the broker: it is ready to wait. */
 export async function readiness(app: Instance): Promise<Readiness> {
-	return { database: await databaseAnswers(app), ...app.ingestReady() };
+	const { state, brokerConnected, pipeline } = app.ingest();
+	const waiting = state === 'idle';
+	return {
+		database: await databaseAnswers(app),
+		broker: waiting || brokerConnected === true,
+		subscriber: waiting || (state === 'running' && pipeline !== null && pipeline.hold === null)
+	};
 }

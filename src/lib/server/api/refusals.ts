@@ -10,6 +10,21 @@ const DETAILS: Record<number, string> = {
 	500: 'Something broke here. The reference finds it in the log.'
 };
 
+/** A path that leads nowhere, or that is no UTF-8. */
+export function noRoute(pathname: string): Response {
+	const status = isReadable(pathname) ? 404 : 400;
+	return problemResponse(problem(status, DETAILS[status] ?? ''));
+}
+
+function isReadable(pathname: string): boolean {
+	try {
+		decodeURIComponent(pathname);
+		return true;
+	} catch {
+		return false;
+	}
+}
+
 async function referenceOf(response: Response): Promise<string | null> {
 	if (response.headers.get('content-type')?.includes('json') !== true) return null;
 	const body: unknown = await response.json().catch(() => null);

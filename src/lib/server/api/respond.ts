@@ -76,7 +76,8 @@ export async function unchanged(place: Place, media: Media): Promise<Response | 
 			return new Response(null, { status: 304, headers: { ...(await commonFields(place)), etag } });
 		}
 		const kept = app.coded.get(cacheKey(place, etag));
-		if (kept !== undefined) {
+		// A short answer goes uncoded whatever is accepted; a long one only to who accepts no coding.
+		if (kept !== undefined && (tried === coding || kept.length < MIN_CODED_BYTES)) {
 			return bytesResponse(kept, 200, {
 				...(await commonFields(place)),
 				'content-type': media,
