@@ -3,6 +3,7 @@ import { createHash } from 'node:crypto';
 import { existsSync } from 'node:fs';
 import { readFile, readdir, rm, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
+import { alone } from './lock-file';
 import { StartProblem } from './mariadb';
 
 const MARK = join('build', '.lodekeep-sources');
@@ -32,14 +33,22 @@ async function sourceFiles(): Promise<string[]> {
 
 /** Builds when the sources are not those of the last build. True when it did. */
 export async function buildWhenStale(onBegin: () => void, signal?: AbortSignal): Promise<boolean> {
-	const hash = await hashSources();
-	const before = await readFile(MARK, 'utf8').catch(() => '');
-	if (before === hash && existsSync(join('build', 'index.js'))) return false;
+	if (await isFresh(await hashSources())) return false;
 	onBegin();
-	await rm(MARK, { force: true });
-	await build(signal);
-	await writeFile(MARK, hash);
-	return true;
+	// Two builds at once would write over each other; the second finds the work done.
+	return await alone(join('.svelte-kit', 'build.lock'), async () => {
+		const hash = await hashSources();
+		if (signal?.aborted === true || (await isFresh(hash))) return false;
+		await rm(MARK, { force: true });
+		await build(signal);
+		await writeFile(MARK, hash);
+		return true;
+	});
+}
+
+async function isFresh(hash: string): Promise<boolean> {
+	const before = await readFile(MARK, 'utf8').catch(() => '');
+	return before === hash && existsSync(join('build', 'index.js'));
 }
 
 async function build(signal: AbortSignal | undefined): Promise<void> {
