@@ -1,0 +1,60 @@
+import { robustSigma } from '$lib/numeric/mad';
+import { median } from '$lib/numeric/quantile';
+import { magnitude, subtract, ZERO, type Vec3 } from '$lib/magnetics/vector';
+import type { DriftSettings } from './params';
+
+/** What one node says of the site's geomagnetic change in one hour, in its heading-free frame. */
+export interface LineVote {
+	/** What its level has moved since its reference less temperature and all that pairs have explained. */
+	residualMg: Vec3;
+	/** What of it stood there on most of the last days: the node's own, not the site's. */
+	ownMg: Vec3;
+}
+
+export type LineVerdict = 'known' | 'few_nodes' | 'cause_not_known';
+
+/** The site's geomagnetic change (h, e, z); zero unless known. */
+export interface SiteLine {
+	verdict: LineVerdict;
+	changeMg: Vec3;
+	/** Largest of the three components' robust spread. */
+	spreadMg: number | null;
+	nodes: number;
+}
+
+function column(vectors: readonly Vec3[], of: (values: number[]) => number): Vec3 {
+	const axis = (i: 0 | 1 | 2) => of(vectors.map((v) => v[i]));
+	return [axis(0), axis(1), axis(2)];
+}
+
+function agreement(vectors: readonly Vec3[]): { changeMg: Vec3; spreadMg: number } {
+	return {
+		changeMg: column(vectors, median),
+		spreadMg: Math.max(...column(vectors, robustSigma))
+	};
+}
+
+/**
+ * Component-wise median over the nodes (method 5.2). Where nodes have wandered apart over months their plain
+ * spread would silence the line for ever; then each node's own standing residual is taken out first, which
+ * keeps storms and daily variation and loses only what all nodes share for a week.
+ */
+export function siteLine(votes: readonly LineVote[], settings: DriftSettings): SiteLine {
+	const nodes = votes.length;
+	if (nodes < settings.lineNodes)
+		return { verdict: 'few_nodes', changeMg: ZERO, spreadMg: null, nodes };
+	const tries = [
+		() => votes.map(({ residualMg }) => residualMg),
+		() => votes.map(({ residualMg, ownMg }) => subtract(residualMg, ownMg))
+	];
+	let spreadMg = Infinity;
+	for (const vectors of tries) {
+		const found = agreement(vectors());
+		spreadMg = Math.min(spreadMg, found.spreadMg);
+		const common = found.spreadMg <= settings.lineSpreadMg;
+		if (common && magnitude(found.changeMg) <= settings.lineLimitMg)
+			return { verdict: 'known', ...found, nodes };
+		if (common) break;
+	}
+	return { verdict: 'cause_not_known', changeMg: ZERO, spreadMg, nodes };
+}
