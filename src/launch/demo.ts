@@ -1,4 +1,4 @@
-import { mkdir } from 'node:fs/promises';
+import { mkdir, open, rm, stat } from 'node:fs/promises';
 import { join } from 'node:path';
 import type { Config } from '../lib/server/config';
 import { makeKey } from '../lib/server/auth/make-key';
@@ -38,11 +38,18 @@ export interface SimulatorOptions {
 	logFile: string;
 }
 
+export const demoDir = (config: Config) => join(config.dataDir, 'demo');
+
+/** What a simulator of a former database remembers is of no use to a new one. */
+export async function forgetFormerDemo(config: Config): Promise<void> {
+	await rm(demoDir(config), { recursive: true, force: true });
+}
+
 const STOP_MS = 5_000;
 
 /** The simulator makes the site over the API, sends a week of history and goes on living. */
 export async function startSimulator(options: SimulatorOptions): Promise<Child> {
-	const dir = join(options.config.dataDir, 'demo');
+	const dir = demoDir(options.config);
 	await mkdir(dir, { recursive: true, mode: 0o700 });
 	return startNode({
 		name: 'simulator',
@@ -50,6 +57,8 @@ export async function startSimulator(options: SimulatorOptions): Promise<Child> 
 		env: {
 			PATH: process.env['PATH'],
 			NODE_ENV: 'production',
+			// On loopback; the certificate is for the name that people use.
+			...(options.apiUrl.startsWith('https:') ? { NODE_TLS_REJECT_UNAUTHORIZED: '0' } : {}),
 			LODEKEEP_API_URL: options.apiUrl,
 			LODEKEEP_API_KEY: await simulatorKey(options.db),
 			MQTT_HOST: options.mqtt.host,
@@ -72,4 +81,42 @@ export async function adoptDemo(db: Database, isStopping: () => boolean): Promis
 		await new Promise((resolve) => setTimeout(resolve, LOOK_MS));
 	}
 	return null;
+}
+
+/** The simulator's own line when its week has been taken; null when told to stop. */
+const WEEK_SENT = /history sent: (.+?);/;
+const TAIL_BYTES = 4_000;
+
+/** Waits for the end of the week in the simulator's log, from `fromByte` on. */
+export async function untilWeekSent(
+	logFile: string,
+	fromByte: number,
+	isStopping: () => boolean
+): Promise<string | null> {
+	while (!isStopping()) {
+		const said = await tail(logFile, fromByte);
+		const found = WEEK_SENT.exec(said)?.[1];
+		if (found !== undefined) return found;
+		await new Promise((resolve) => setTimeout(resolve, LOOK_MS));
+	}
+	return null;
+}
+
+export const sizeOf = async (file: string): Promise<number> =>
+	await stat(file).then(
+		({ size }) => size,
+		() => 0
+	);
+
+async function tail(file: string, fromByte: number): Promise<string> {
+	const length = Math.min(TAIL_BYTES, (await sizeOf(file)) - fromByte);
+	if (length <= 0) return '';
+	const handle = await open(file);
+	try {
+		const position = (await sizeOf(file)) - length;
+		const { buffer, bytesRead } = await handle.read(Buffer.alloc(length), 0, length, position);
+		return buffer.subarray(0, bytesRead).toString();
+	} finally {
+		await handle.close();
+	}
 }

@@ -5,7 +5,14 @@ import { reachable, startApp, startBroker } from './app';
 import { buildWhenStale } from './build';
 import { explain, openDataFolder } from './data-folder';
 import { embeddedDatabase, readyStore, untilAnswers } from './database';
-import { adoptDemo, demoWanted, startSimulator } from './demo';
+import {
+	adoptDemo,
+	demoWanted,
+	forgetFormerDemo,
+	sizeOf,
+	startSimulator,
+	untilWeekSent
+} from './demo';
 import { addressOf, childEnvironment } from './environment';
 import { keepLogsSmall, logFileOf, type LoggedPart } from './log-files';
 import { startMailCatcher } from './mail';
@@ -226,21 +233,27 @@ export class Launcher {
 		const scheme = config.tls === null ? 'http' : 'https';
 		const apiUrl = `${scheme}://${reachable(config.host)}:${config.port}`;
 		const mqtt = { host: reachable(config.mqtt.host), port: config.mqtt.port };
-		await this.#supervise(
-			'simulator',
-			'simulator',
-			async () => await startSimulator({ config, db: store.db, apiUrl, mqtt, logFile })
-		);
-		if (!isNew) {
-			say('demo', 'its vehicles come and go on');
-			return;
-		}
+		const options = { config, db: store.db, apiUrl, mqtt, logFile };
+		if (isNew) await forgetFormerDemo(config);
+		const fromByte = await sizeOf(logFile);
+		await this.#supervise('simulator', 'simulator', async () => await startSimulator(options));
+		if (isNew) this.#tellOfDemo(store, logFile, fromByte);
+		else say('demo', 'its vehicles come and go on');
+	}
+
+	/** A person may sign in meanwhile and watch the week come in. */
+	#tellOfDemo(store: Store, logFile: string, fromByte: number): void {
 		say('demo', 'making a site with a week of history (about a minute)');
-		const adopting = adoptDemo(store.db, () => this.#stopping).then((slug) => {
-			if (slug !== null) say('demo', `site ${slug} is there; its week is being filled in`);
-		});
+		const isStopping = () => this.#stopping;
+		const telling = (async () => {
+			const slug = await adoptDemo(store.db, isStopping);
+			if (slug === null) return;
+			say('demo', `site ${slug} is there; its week is coming in`);
+			const sent = await untilWeekSent(logFile, fromByte, isStopping);
+			if (sent !== null) say('demo', `the week is there: ${sent}`);
+		})();
 		this.#addQuiet('demo', async () => {
-			await adopting;
+			await telling;
 		});
 	}
 
@@ -266,7 +279,9 @@ export class Launcher {
 				say(name, text);
 			},
 			onHopeless: (reason) => {
-				this.#hopeless(reason);
+				// The demo is no reason to take a product away from its nodes.
+				if (name === 'simulator') say('demo', `given up: ${reason}`);
+				else this.#hopeless(reason);
 			}
 		});
 		this.#parts.push(part);
