@@ -50,17 +50,19 @@ export interface AppOptions {
 
 /**
  * The app as a process of its own against a database, on a free port: the built app (built anew when
- * the sources have changed); with LODEKEEP_TEST_DEV=1 vite's dev server, which starts sooner.
+ * the sources have changed); with LODEKEEP_TEST_DEV=1 vite's dev server, which starts sooner; with
+ * LODEKEEP_TEST_BUILD a build that lies elsewhere, as it is.
  */
 export async function startApp(o: AppOptions): Promise<TestApp> {
 	const dev = process.env['LODEKEEP_TEST_DEV'] === '1';
-	if (!dev) await buildWhenStale(() => undefined);
+	const elsewhere = process.env['LODEKEEP_TEST_BUILD'];
+	if (!dev && elsewhere === undefined) await buildWhenStale(() => undefined);
 	const port = await freePort();
 	const origin = `http://127.0.0.1:${port}`;
 	const vite = join(ROOT, 'node_modules', 'vite', 'bin', 'vite.js');
 	const args = dev
 		? [vite, 'dev', '--host', '127.0.0.1', '--port', String(port), '--strictPort']
-		: [join(ROOT, 'build', 'index.js')];
+		: [join(elsewhere ?? join(ROOT, 'build'), 'index.js')];
 	const child = spawn(process.execPath, args, {
 		cwd: ROOT,
 		stdio: ['ignore', 'pipe', 'pipe'],
