@@ -24,6 +24,13 @@ export function enter(g: Group, n: Node, change: Change, decidedAtMs: number): v
 	}
 	if (slow.state !== change.state) slow.sinceMs = change.atMs;
 	slow.entries++;
+	if (slow.strange !== null) {
+		const { entries } = slow.strange;
+		slow.strange = {
+			...slow.strange,
+			entries: [...entries, { type: change.type, atMs: change.atMs }]
+		};
+	}
 	slow.state = change.state;
 	slow.confidence = confidence ?? 0;
 	slow.evidence = change.evidence;
@@ -53,6 +60,10 @@ export function voidEntry(
 	decidedAtMs: number,
 	why: string
 ): void {
+	if (n.slow.strange !== null) {
+		const left = n.slow.strange.entries.filter((e) => e.type !== type || e.atMs !== atMs);
+		n.slow.strange = { ...n.slow.strange, entries: left };
+	}
 	touch(n);
 	g.out.push({ kind: 'void', nodeId: n.id, type, atMs, decidedAtMs, why });
 }

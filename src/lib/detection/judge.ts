@@ -123,7 +123,6 @@ export function startStay(n: Node, atMs: number): void {
 	slow.stayNo++;
 	fast.stayMg = Math.fround(size3(over));
 	fast.rebase = 0;
-	noteStrange(n);
 	touch(n);
 }
 
@@ -185,21 +184,6 @@ function countReturn(n: Node): void {
 		slow.reference = { ...slow.reference, provisional: false };
 }
 
-/** 'Occupied' spells that keep ending at one field which the reference lacks (method 3). */
-function noteStrange(n: Node): void {
-	const { slow, fast } = n;
-	if (slow.reference?.provisional !== true) return;
-	if (slow.strange !== null && apart(slow.strange.level, fast.level) <= n.params.returnMg) {
-		slow.strange.count++;
-		if (slow.strange.count >= n.params.returnsToProve) {
-			doubtIt(n, 'reference may hold a vehicle', fast.lastAtMs);
-		}
-	} else if (slow.strange === null || slow.strange.count < 2) {
-		slow.strange = { level: triple(fast.level), count: 1 };
-	}
-	touch(n);
-}
-
 /** A level that is no vehicle: back at the reference, or drift over a silence. */
 function stayVacant(n: Node, step: Step): void {
 	const { fast } = n;
@@ -218,7 +202,6 @@ function stayOccupied(n: Node, step: Step): void {
 	const { arrival } = n.slow;
 	if (arrival === null || size3(step.j) < offMg(n)) return;
 	n.slow.arrival = { ...arrival, step: summed(arrival.step, step.j) };
-	noteStrange(n);
 	touch(n);
 }
 

@@ -165,6 +165,7 @@ export function startLearning(g: Group, n: Node, preCommissioned: boolean, atMs:
 	slow.slope = null;
 	slow.window = [];
 	slow.windowAtMs = [];
+	slow.strange = null;
 	slow.doubt = null;
 	fast.open = 0;
 	fast.boxN = 0;

@@ -1,6 +1,7 @@
 import { enter, lookBy, putBack, putBaselineBack, voidEntry } from './entries';
 import { evidence, named, stepWords } from './evidence';
 import { isArrival, judge, startStay, takeVacant, type Overlap } from './judge';
+import { watchReference } from './provisional';
 import { aisleLimitMg, takeAisle } from './queue';
 import { summed, touch, type Echo, type Group, type Node, type Step } from './state';
 import { offMg, onMg } from './thresholds';
@@ -86,7 +87,10 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 	const size = size3(step.j);
 	if (big !== null && isEchoOf(n, step, size, big) && !undoesOwn(n, step)) {
 		takeEcho(n, step, big);
-	} else if (!takeAisle(g, n, step, atMs)) judge(g, n, step, others, atMs);
+	} else if (!takeAisle(g, n, step, atMs)) {
+		judge(g, n, step, others, atMs);
+		watchReference(g, n, step, atMs);
+	}
 	keepInLedger(n, step);
 	for (const o of others) {
 		if (
@@ -105,8 +109,10 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
  * driving off, or ends with its coming to rest.
  */
 function isEchoOf(n: Node, step: Step, size: number, big: Overlap): boolean {
-	if (size >= n.params.echoRatio * size3(big.step.j)) return false;
-	if (!step.burst || !big.step.burst) return true;
+	const sharp = step.burst && big.step.burst;
+	const limit = sharp ? n.params.echoRatio : n.params.echoSlowRatio;
+	if (size >= limit * size3(big.step.j)) return false;
+	if (!sharp) return true;
 	const earlyMs = n.params.echoEarlyS * MS_PER_S;
 	const lateMs = n.params.echoLateS * MS_PER_S;
 	const ends = step.toMs - big.step.toMs;

@@ -46,6 +46,13 @@ export const PARAMS = {
 	slopePriorMgPerC: spec(1, 0, 3, 'mG/°C', 'spread of temperature slopes while a node has none'),
 	neighbourM: spec(4, 0, 20, 'm', 'vehicles are felt as far as the next bay'),
 	echoRatio: spec(0.55, 0.1, 0.9, '1', 'a step under this share of the neighbour’s is its echo'),
+	echoSlowRatio: spec(
+		0.28,
+		0.1,
+		0.9,
+		'1',
+		'the same where only a beat’s bracket tells the time: nearly all echoes are smaller'
+	),
 	echoEarlyS: spec(
 		4,
 		0,
@@ -80,6 +87,13 @@ export const PARAMS = {
 	learnS: spec(120, 30, 3600, 's', 'shorter stillness is also a pause in traffic'),
 	learnSigmaMg: spec(3, 0.5, 10, 'mG', 'a field noisier than this is not quiet'),
 	returnMg: spec(10, 3, 50, 'mG', 'a field this near to the reference has come back to it'),
+	swapVisits: spec(
+		3,
+		0,
+		10,
+		'visits',
+		'a provisional reference gives way to a field that stays return to so often; 0 = never'
+	),
 	returnsToProve: spec(3, 1, 20, 'returns', 'a provisional reference is proved by as many returns'),
 	longStayH: spec(48, 6, 336, 'h', 'a stay longer than usual is held against its arrival'),
 	longStayFactor: spec(1.5, 1, 5, '1', 'the same against this bay’s 99th percentile'),

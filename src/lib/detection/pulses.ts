@@ -94,10 +94,6 @@ function takeOffset(n: Node, pulse: PulseItem, offset: Triple): void {
 	fast.boxN = 0;
 	slow.hours = [];
 	slow.window = slow.window.map((v, k) => v + by[(k % 3) as 0]);
-	if (slow.strange !== null) {
-		const { level, count } = slow.strange;
-		slow.strange = { level: [level[0] + by[0], level[1] + by[1], level[2] + by[2]], count };
-	}
 	if (slow.candidate !== null && slow.reference === null) {
 		const f = slow.candidate.fieldMg;
 		slow.candidate = {

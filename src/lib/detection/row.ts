@@ -212,6 +212,9 @@ function begin(g: Group, n: Node, atMs: number, dtMs: number): void {
 	continueStep(g, n, atMs);
 }
 
+/** A movement under this share of what follows is not its beginning. */
+const SLIGHT = 0.25;
+
 function continueStep(g: Group, n: Node, atMs: number): void {
 	const { fast } = n;
 	fast.openN++;
@@ -220,7 +223,14 @@ function continueStep(g: Group, n: Node, atMs: number): void {
 		return;
 	}
 	extendBox(n, atMs);
-	fast.peakMg = Math.fround(Math.max(fast.peakMg, apart(fast.last, fast.level)));
+	const offLevel = apart(fast.last, fast.level);
+	if (fast.peakMg < SLIGHT * offLevel) {
+		// What came before was slight: the movement that counts begins here.
+		fast.openOldAtMs = fast.lastAtMs;
+		fast.openNewAtMs = atMs;
+		fast.openN = 1;
+	}
+	fast.peakMg = Math.fround(Math.max(fast.peakMg, offLevel));
 	if (pastHalfFilm(n)) fast.openClipped++;
 	noteCrossing(n, atMs);
 	if (fast.boxN >= 2 && atMs - fast.boxFromMs >= n.params.stillS * MS_PER_S) settle(g, n, atMs);

@@ -1,4 +1,11 @@
-import type { BayState, Evidence, GroupMember, LearnedReference, Outcome } from './types';
+import type {
+	BayState,
+	Evidence,
+	GroupMember,
+	HistoryType,
+	LearnedReference,
+	Outcome
+} from './types';
 import type { Params } from './params';
 import { view3, type V3 } from './vec';
 
@@ -154,6 +161,16 @@ export interface SettleUndo {
 	entries: number;
 }
 
+/** A field that a provisional reference lacks and that keeps coming back (provisional.ts). */
+export interface Strange {
+	visits: number;
+	/** Sum of the steps since it was left; null while the field stands on it. */
+	out: Triple | null;
+	moves: { to: 'empty' | 'taken'; atMs: number; uncertaintyS: number }[];
+	/** What history was told since it was first seen. */
+	entries: { type: HistoryType; atMs: number }[];
+}
+
 /** Slope of the field over temperature, per axis, with standard error. */
 export interface Slope {
 	k: Triple;
@@ -182,8 +199,7 @@ export interface Slow {
 	candidate: LearnedReference | null;
 	reference: Reference | null;
 	returns: number;
-	/** Levels at which 'occupied' spells ended that the reference lacks. */
-	strange: { level: Triple; count: number } | null;
+	strange: Strange | null;
 	arrival: Arrival | null;
 	steps: Step[];
 	pending: Step | null;
