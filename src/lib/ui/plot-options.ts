@@ -63,7 +63,12 @@ export function plotOptions(wanted: Wanted): {
 				space: 74,
 				values: (_plot, ticks, _axis, _space, stepS) => timeLabels(ticks, stepS, wanted.timezone)
 			},
-			{ ...axis(inks), size: AXIS_PX, values: (_plot, ticks) => ticks.map((v) => wanted.write(v)) }
+			{
+				...axis(inks),
+				size: AXIS_PX,
+				space: 26,
+				values: (_plot, ticks) => ticks.map((v) => wanted.write(v))
+			}
 		],
 		cursor: {
 			sync: { key: wanted.group, setSeries: false },

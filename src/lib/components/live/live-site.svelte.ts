@@ -48,7 +48,7 @@ export function liveSite(
 			if (before !== undefined && polled.book !== before) note(before, polled.book);
 			return polled.book;
 		},
-		...(first() === null ? {} : { initialData: first()?.book ?? EMPTY }),
+		initialData: () => first()?.book,
 		refetchInterval: BAYS_EVERY_MS,
 		structuralSharing: false as const,
 		retry: false,

@@ -1,3 +1,4 @@
+import { wholeList } from '$lib/components/live/bay-poll';
 import { instance } from '$lib/server/api/instance';
 import { personIdOf } from '$lib/server/auth/reach';
 import { listed, outlines } from '$lib/server/store/queries/desk-sites';
@@ -13,8 +14,8 @@ const polygon = z.object({
 /** Under this the person has not been away. */
 const AWAY_MS = 600_000;
 
-/** Outlines and zones; the states follow by the page's own poll of the API. */
-export const load: PageServerLoad = async ({ locals, params, depends }) => {
+/** Outlines, zones and the states of this moment; from then on the page polls the API itself. */
+export const load: PageServerLoad = async ({ locals, params, depends, fetch }) => {
 	depends('desk:plan');
 	const { reach } = locals;
 	const { db } = instance().store;
@@ -23,9 +24,14 @@ export const load: PageServerLoad = async ({ locals, params, depends }) => {
 	);
 	if (reach === null || site === undefined)
 		error(404, 'This site is not there, or not among your sites.');
-	const drawn = await outlines(db, site.id);
+	const [drawn, first] = await Promise.all([outlines(db, site.id), wholeList(site.slug, fetch)]);
 	return {
 		zones: drawn.zones,
+		first: {
+			bays: [...first.book.bays.values()],
+			changes: first.book.changes,
+			asOfMs: first.asOfMs
+		},
 		outlines: drawn.bays.map(({ code, zone, geometry }) => ({
 			code,
 			zone,

@@ -1,0 +1,116 @@
+import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { AxeBuilder } from '@axe-core/playwright';
+import type { Page } from 'playwright-core';
+import { alive, Office } from './support/desk';
+
+let office: Office;
+beforeAll(async () => (office = await Office.open()));
+afterAll(async () => await office.end());
+
+const SITE = '/sites/tallow-yard';
+const SHEETS = [
+	'/sites',
+	`${SITE}/plan`,
+	`${SITE}/plan?bay=A-09`,
+	`${SITE}/plan?as=table`,
+	`${SITE}/bays/A-09`,
+	`${SITE}/bays/A-09/record`,
+	`${SITE}/nodes`,
+	`${SITE}/closures`,
+	`${SITE}/sent-for`,
+	'/connections',
+	'/people',
+	'/mail',
+	'/desk',
+	'/password',
+	'/sign-out',
+	'/primer'
+];
+const PUBLIC = ['/sign-in', '/reset', '/invitation?ticket=none'];
+const WCAG = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'];
+
+async function findings(page: Page, path: string): Promise<string[]> {
+	await page.goto(path);
+	await alive(page);
+	await page.waitForTimeout(300);
+	const { violations } = await new AxeBuilder({ page }).withTags(WCAG).analyze();
+	return violations.map(
+		(v) =>
+			`${path}: ${v.id}: ${v.nodes
+				.map((n) => n.target.join(' '))
+				.join(' | ')
+				.slice(0, 300)}`
+	);
+}
+
+describe.each(['paper', 'blueprint'] as const)('%s', (theme) => {
+	test('axe finds nothing on any sheet', async () => {
+		const page = await office.signIn('admin', { theme });
+		const found: string[] = [];
+		for (const path of SHEETS) found.push(...(await findings(page, path)));
+		expect(found).toEqual([]);
+		await page.context().close();
+	});
+	test('axe finds nothing on the public sheets', async () => {
+		const page = await (await office.context({ theme })).newPage();
+		const found: string[] = [];
+		for (const path of PUBLIC) found.push(...(await findings(page, path)));
+		expect(found).toEqual([]);
+		await page.context().close();
+	});
+});
+
+test('on a phone no sheet is wider than the screen, and targets of the bar are 44 px', async () => {
+	const page = await office.signIn('admin', { width: 360, height: 740, phone: true });
+	const wide: string[] = [];
+	for (const path of SHEETS) {
+		await page.goto(path);
+		await alive(page);
+		const over = await page.evaluate(
+			() => document.documentElement.scrollWidth - window.innerWidth
+		);
+		if (over > 0) wide.push(`${path}: ${over} px`);
+	}
+	expect(wide).toEqual([]);
+	await page.goto('/sites');
+	const bar = page.getByRole('navigation', { name: 'Main' });
+	for (const target of await bar.locator('a, button').all()) {
+		const box = await target.boundingBox();
+		expect(Math.min(box?.width ?? 0, box?.height ?? 0)).toBeGreaterThanOrEqual(44);
+	}
+	await page.context().close();
+});
+
+test('at 320 px the sheets reflow', async () => {
+	const page = await office.signIn('operator', { width: 320, height: 640 });
+	for (const path of [`${SITE}/bays/A-09`, `${SITE}/plan`, '/sites', '/desk']) {
+		await page.goto(path);
+		await alive(page);
+		const over = await page.evaluate(
+			() => document.documentElement.scrollWidth - window.innerWidth
+		);
+		expect(over, path).toBeLessThanOrEqual(0);
+	}
+	await page.context().close();
+});
+
+test('a tap on a small bay brings it to size, the second picks it', async () => {
+	const page = await office.signIn('operator', { width: 360, height: 740, phone: true });
+	await page.goto(`${SITE}/plan`);
+	await alive(page);
+	const plan = page.locator('.plan');
+	const box = await plan.boundingBox();
+	const centre = {
+		x: (box?.x ?? 0) + (box?.width ?? 0) / 2,
+		y: (box?.y ?? 0) + (box?.height ?? 0) / 2
+	};
+	// The lowest row (A) of the fitted plan, about its middle.
+	const scale = async () => await page.locator('[aria-label="Title block"]').textContent();
+	const before = await scale();
+	await page.touchscreen.tap(centre.x, centre.y);
+	await expect.poll(scale).not.toBe(before);
+	expect(new URL(page.url()).searchParams.get('bay')).toBeNull();
+	await page.touchscreen.tap(centre.x, centre.y);
+	await expect.poll(() => new URL(page.url()).searchParams.get('bay')).toMatch(/^[ABC]-\d\d$/);
+	await page.context().close();
+});
