@@ -17,7 +17,7 @@ export async function playHistory(
 	demo: DemoWorld,
 	members: readonly Member[],
 	stop: AbortSignal,
-	onStays: (stays: Stay[]) => void,
+	onStays: (stays: Stay[], upToMs: number) => void,
 	onProgress: (atMs: number, rows: number) => void
 ): Promise<number> {
 	let rows = 0;
@@ -26,7 +26,7 @@ export async function playHistory(
 	const onTheWay: Promise<void[]>[] = [];
 	while (!stop.aborted && Date.now() - atMs > NEAR_MS) {
 		atMs = Math.min(Date.now(), atMs + CHUNK_MS);
-		onStays(extendTo(demo, atMs + CHUNK_MS));
+		onStays(extendTo(demo, atMs + CHUNK_MS), atMs);
 		const sends = members.flatMap((member) =>
 			advanceMember(member, atMs, 'history').map(async (sent) => {
 				if (sent.frame.kind === 'reading') rows += sent.frame.rows.length;

@@ -68,12 +68,12 @@ async function live(
 	members: readonly Member[],
 	stop: AbortSignal,
 	save: () => void,
-	told: (stays: Stay[]) => void
+	told: (stays: Stay[], upToMs: number) => void
 ): Promise<void> {
 	let savedMs = Date.now();
 	while (!stop.aborted) {
 		const nowMs = Date.now();
-		told(extendTo(demo, nowMs + LOOK_AHEAD_MS));
+		told(extendTo(demo, nowMs + LOOK_AHEAD_MS), nowMs);
 		for (const member of members) {
 			for (const sent of advanceMember(member, nowMs, 'live')) post(member, sent);
 		}
@@ -113,9 +113,19 @@ async function run(stop: AbortSignal): Promise<void> {
 			keepsake.nodes[member.node.config.serial] = keepMember(member, clean === 'clean');
 		saveKeepsake(dir, keepsake);
 	};
-	const told = (stays: Stay[]) => {
-		tellStays(dir, demo.world.plan, stays, keepsake.toldToMs);
-		for (const { fromMs } of stays) keepsake.toldToMs = Math.max(keepsake.toldToMs, fromMs);
+	const ahead: Stay[] = [];
+	// A stay is told once its time has come: the world is drawn some hours ahead, bay by bay.
+	const told = (stays: Stay[], upToMs: number) => {
+		ahead.push(...stays);
+		const due = ahead.filter(({ fromMs }) => fromMs <= upToMs);
+		const later = ahead.filter(({ fromMs }) => fromMs > upToMs);
+		ahead.splice(0, ahead.length, ...later);
+		tellStays(
+			dir,
+			demo.world.plan,
+			due.filter(({ fromMs }) => fromMs > keepsake.toldToMs)
+		);
+		keepsake.toldToMs = Math.max(keepsake.toldToMs, upToMs);
 	};
 	const startedMs = Date.now();
 	const rows = await playHistory(demo, members, stop, told, progress(bornMs));

@@ -6,14 +6,9 @@ import type { Stay } from './truth';
 const FILE = 'truth.jsonl';
 
 /** Appends what really happens to a file of JSON lines: one a stay, times in RFC 3339, sizes in mG. */
-export function tellStays(
-	dir: string,
-	plan: SitePlan,
-	stays: readonly Stay[],
-	afterMs: number
-): void {
-	const lines = stays
-		.filter(({ fromMs }) => fromMs > afterMs)
+export function tellStays(dir: string, plan: SitePlan, stays: readonly Stay[]): void {
+	const lines = [...stays]
+		.sort((a, b) => a.fromMs - b.fromMs)
 		.map((stay) =>
 			JSON.stringify({
 				what: 'stay',

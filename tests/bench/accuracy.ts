@@ -18,6 +18,10 @@ const { values } = parseArgs({
 	}
 });
 
+/** What the columns of node_fast and node_slow take (store/schema/node.ts). */
+const FAST_BYTES = 300;
+const SLOW_BYTES = 4096;
+
 const seed = values.fresh ? Date.now() % 1_000_000 : Number(values.seed);
 const names = values.scenarios?.split(',') ?? ALL_SCENARIOS.map(({ name }) => name);
 
@@ -41,8 +45,14 @@ for (const name of names) {
 	const scenario = scenarioByName(name);
 	if (scenario === undefined) throw new Error(`no scenario is called ${name}`);
 	const generated = generate(scenario, seed);
-	const score = grade(generated, detect(generated));
+	const detected = detect(generated);
+	const score = grade(generated, detected);
 	console.log(line(name, score));
+	if (detected.fastBytes > FAST_BYTES || detected.slowBytes > SLOW_BYTES) {
+		console.log(
+			`   STORED STATE TOO LONG: fast ${detected.fastBytes} of ${FAST_BYTES} B, slow ${detected.slowBytes} of ${SLOW_BYTES} B: ingest stands still`
+		);
+	}
 	for (const miss of score.misses.slice(0, Number(values.misses))) {
 		const { code } = generated.plan.bays[miss.bayIndex]!;
 		const at = new Date(miss.atMs).toISOString();

@@ -1,4 +1,4 @@
-import { advance, newGroup, view, type Group } from '$lib/detection/group';
+import { advance, encodeFast, encodeSlow, newGroup, view, type Group } from '$lib/detection/group';
 import type { ActItem, BayState, HistoryEntry, Outcome } from '$lib/detection/types';
 import { builtInProfile, type SensorProfile } from '$lib/magnetics/sensor-profile';
 import { chain } from '$lib/server/ingest/chain';
@@ -23,6 +23,9 @@ export interface Detected {
 	looks: Look[];
 	rows: number;
 	detectMs: number;
+	/** Largest stored state of any node at any look, bytes; the store takes 300 and 4096. */
+	fastBytes: number;
+	slowBytes: number;
 	/** Why pulses were not believed, counted. */
 	pulsesRefused: Map<string, number>;
 }
@@ -42,6 +45,8 @@ export function detect(generated: Generated, options: DetectOptions = {}): Detec
 		looks: [],
 		rows: 0,
 		detectMs: 0,
+		fastBytes: 0,
+		slowBytes: 0,
 		pulsesRefused: new Map()
 	};
 	const placed = generated.plan.nodes.map(({ eastM, northM }, id) => ({
@@ -159,6 +164,8 @@ function look(
 	for (const nodeId of nodes) {
 		const { bayIndex } = generated.plan.nodes[nodeId]!;
 		const { state, confidence, doubt } = view(group, nodeId);
+		detected.fastBytes = Math.max(detected.fastBytes, encodeFast(group, nodeId).length);
+		detected.slowBytes = Math.max(detected.slowBytes, encodeSlow(group, nodeId).length);
 		detected.looks.push({ bayIndex, atMs, state, confidence, doubt: doubt?.reason ?? null });
 	}
 }

@@ -202,7 +202,7 @@ export function explain(generated: Generated, bayIndex: number, atMs: number): s
 		const within = incident.atMs <= atMs && incident.toMs >= atMs;
 		if ((slow && within) || starts || ends) near.push(say(incident));
 	}
-	return near.slice(0, 8).join(' · ') || 'nothing near';
+	return near.length === 0 ? 'nothing near' : near.slice(0, 8).join(' · ');
 }
 
 const signed = (value: number): string => `${value >= 0 ? '+' : ''}${value.toFixed(0)}`;
