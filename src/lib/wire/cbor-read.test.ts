@@ -1,4 +1,4 @@
-import { Decoder } from 'cbor-x';
+import { decode } from 'cborg';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { Malformed, readWhole, type CborValue } from './cbor-read';
@@ -126,12 +126,11 @@ describe('the writer', () => {
 		);
 	});
 
-	test('cbor-x, written apart from us, reads the same', () => {
-		const decoder = new Decoder({ mapsAsObjects: false, int64AsNumber: true } as object);
+	test('cborg, written apart from us, reads the same', () => {
 		fc.assert(
 			fc.property(writable, (value) => {
 				const bytes = Buffer.from(writeCbor(value));
-				const theirs = decoder.decode(bytes) as unknown;
+				const theirs = decode(bytes, { useMaps: true }) as unknown;
 				expect(toHex(writeCbor(plain(theirs)))).toBe(toHex(bytes));
 			})
 		);
@@ -150,7 +149,7 @@ function isWritable(value: CborValue): boolean {
 	return value !== null && value !== undefined && !['bigint', 'boolean'].includes(typeof value);
 }
 
-/** cbor-x gives Buffers for byte strings. */
+/** cborg may give views of the input for byte strings. */
 function plain(value: unknown): Writable {
 	if (value instanceof Uint8Array) return Uint8Array.from(value);
 	if (Array.isArray(value)) return value.map(plain);

@@ -1,6 +1,7 @@
 /**
  * Deterministic CBOR (RFC 8949, section 4.2.1): shortest heads, definite lengths, map entries in the
- * order given. Own code because cbor-x writes integers over 32 bits as floats, which the protocol forbids.
+ * order given. Own code because it is the twin of the strict
+ * reader: what the protocol forbids (floats, tags, indefinite lengths) can't be written by mistake.
  */
 export type Writable =
 	number | string | Uint8Array | readonly Writable[] | ReadonlyMap<number | string, Writable>;
