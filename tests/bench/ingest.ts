@@ -42,6 +42,7 @@ export async function measureIngest(): Promise<IngestFigures> {
 		const answered = () => nodes.reduce((sum, node) => sum + node.answered, 0);
 		for (const node of nodes) node.flow(WINDOW);
 		await sleep(WARM_MS);
+		if (process.env['BENCH_APP'] !== undefined) bench.app.child.kill('SIGUSR1');
 		const before = answered();
 		const beganMs = performance.now();
 		while (performance.now() - beganMs < MEASURE_MS && !nodes.some((node) => node.done))

@@ -5,6 +5,7 @@ import type { Database } from '$lib/server/store/connect';
 import * as t from '$lib/server/store/schema';
 import type { Role } from '$lib/schemas/roles';
 import { mqttPassword } from '$lib/wire/frames';
+import { seedStory } from './seed-rows';
 
 /** Every seeded person signs in with this. */
 export const SEED_PASSWORD = 'nine quiet bays';
@@ -209,30 +210,31 @@ async function writeFeed(
 	return firstId + numbered.length - 1;
 }
 
-/** Counts at 16384 per gauss: a quiet field of about 480 mG, and 212 mG more while taken. */
-async function seedReadings(db: Database, nodeId: number, taken: boolean, nowMs: number) {
-	const rows = Array.from({ length: 120 }, (_, i) => {
-		const shift = taken ? 3_473 : 0;
-		return {
-			nodeId,
-			atMs: nowMs - (119 - i) * MIN,
-			boot: 1,
-			seq: i,
-			row: 0,
-			x: 2_949 + ((i * 7) % 11),
-			y: -410 + ((i * 5) % 9),
-			z: 7_209 + shift + ((i * 3) % 13),
-			polarity: 1,
-			tempDc: 150 + Math.round(40 * Math.sin(i / 20)),
-			batteryMv: 3_590
-		};
+/** Readings that tell the bay's story, and the state that detection holds after them. */
+async function seedReadings(
+	db: Database,
+	nodeId: number,
+	taken: boolean,
+	sinceMs: number,
+	nowMs: number
+) {
+	const story = seedStory(nodeId, taken, sinceMs, nowMs);
+	const common = { nodeId, boot: 1, row: 0, polarity: 1, batteryMv: 3_590 };
+	const rows = story.rows.map(({ atMs, seq, counts, tempC }) => {
+		const [x, y, z] = counts;
+		return { ...common, atMs, seq, x, y, z, tempDc: tempC * 10 };
 	});
 	await db.insert(t.reading).values(rows);
-	const { x, y, z, polarity, tempDc, batteryMv } = rows[rows.length - 1]!;
-	const last = { lastAtMs: nowMs, x, y, z, polarity, tempDc, batteryMv };
-	await db
-		.insert(t.nodeFast)
-		.values({ nodeId, heardAtMs: nowMs, state: Buffer.from([0]), ...last });
+	const { atMs, ...last } = rows[rows.length - 1]!;
+	const state = {
+		heardAtMs: nowMs,
+		heardBoot: 1,
+		rowAtMs: atMs,
+		lastAtMs: atMs,
+		state: story.fast
+	};
+	await db.insert(t.nodeFast).values({ ...last, ...state });
+	await db.insert(t.nodeSlow).values({ nodeId, state: story.slow });
 }
 
 async function seedYard(db: Database, siteId: number, nowMs: number) {
@@ -280,7 +282,8 @@ async function seedYard(db: Database, siteId: number, nowMs: number) {
 				evidence: EVIDENCE
 			});
 			feed.push(...eventsOf(siteId, bayId, s, nowMs));
-			await seedReadings(db, nodeId, s.state === 'occupied', nowMs);
+			const sinceMs = nowMs - s.sinceMin * MIN;
+			await seedReadings(db, nodeId, s.state === 'occupied', sinceMs, nowMs);
 		}
 	}
 	const lastChange = await writeFeed(db, siteId, 1, feed);

@@ -23,6 +23,8 @@ export interface PipelineStatus {
 	events: number;
 	batches: number;
 	retries: number;
+	/** Groups taken back to a snapshot and replayed for a late row. */
+	replays: number;
 	/** Times that a group's detection threw and was set aside. */
 	setAside: number;
 	groups: number;
@@ -44,6 +46,7 @@ export class PipelineCounters {
 	#batches = 0;
 	#retries = 0;
 	#delayS = 0;
+	#replays = 0;
 	setAside = 0;
 
 	took(messages: readonly HeldMessage[]): void {
@@ -60,6 +63,7 @@ export class PipelineCounters {
 		this.#rejected += work.rejected.length;
 		this.#events += work.loose.length + work.drafts.filter(({ event }) => event !== null).length;
 		this.#batches += 1;
+		this.#replays += work.replayed.size;
 	}
 
 	held(hold: Hold | null, detail: string | null = null): void {
@@ -95,6 +99,7 @@ export class PipelineCounters {
 			events: this.#events,
 			batches: this.#batches,
 			retries: this.#retries,
+			replays: this.#replays,
 			setAside: this.setAside,
 			groups: loaded,
 			waitingRows,

@@ -212,7 +212,7 @@ class RunningPipeline implements Pipeline {
 		return work;
 	}
 
-	/** Structural acts are run one by one; the others up to the next structural one go with the batch. */
+	/** Structural acts are run by themselves; the others up to the next structural one go with the batch. */
 	async #takeActs(): Promise<ActRow[]> {
 		const nowMs = Date.now();
 		if (!this.#nudged && nowMs - this.#actsAtMs < ACTS_EVERY_MS) return [];
@@ -228,7 +228,9 @@ class RunningPipeline implements Pipeline {
 			return first === -1 ? due : due.slice(0, first);
 		}
 		this.#nudged = true;
-		const woken = await runStructural(this.room, due[0] as ActRow, nowMs);
+		const after = due.findIndex((act) => !isStructural(act));
+		const together = after === -1 ? due : due.slice(0, after);
+		const woken = await runStructural(this.room, together, nowMs);
 		for (const id of woken) this.#toLoad.add(id);
 		return [];
 	}

@@ -18,24 +18,36 @@ type ActRow = acts.ActRow;
 export const isStructural = ({ kind, nodeId }: ActRow): boolean =>
 	nodeId === null || kind === 'place' || kind === 'accept_boot' || kind === 'ask';
 
-/** Runs one; returns the nodes whose groups must be loaded with the next batch. */
-export async function runStructural(room: Room, act: ActRow, nowMs: number): Promise<number[]> {
-	const { nodeId } = act;
-	if (nodeId !== null) await room.registry.loadSome(room.pool, { ids: [nodeId] }, nowMs);
-	const outcome = await inTransaction(room, async (sql) => {
-		const said = await runOne(room, sql, act, nowMs);
-		await acts.settleOutcome(sql, act.id, room.stamps.next(), said);
-		return said;
+/** Runs some in one transaction; returns the nodes whose groups must be loaded with the next batch. */
+export async function runStructural(
+	room: Room,
+	structural: readonly ActRow[],
+	nowMs: number
+): Promise<number[]> {
+	const ids = [...new Set(structural.flatMap(({ nodeId }) => nodeId ?? []))];
+	await room.registry.loadSome(room.pool, { ids }, nowMs);
+	const moved: number[] = [];
+	await inTransaction(room, async (sql) => {
+		for (const act of structural) {
+			const outcome = await runOne(room, sql, act, nowMs);
+			await acts.settleOutcome(sql, act.id, room.stamps.next(), outcome);
+			if (act.nodeId !== null && act.kind !== 'ask' && outcome === 'done') moved.push(act.nodeId);
+		}
 	});
-	if (nodeId === null) return [];
-	await room.registry.loadSome(room.pool, { ids: [nodeId] }, nowMs);
-	if (act.kind === 'ask') return [];
-	if (outcome !== 'done') return [];
-	room.groups.forget([nodeId, ...(room.registry.groupOf(nodeId) ?? [])]);
-	room.seen.forget(nodeId);
-	await room.registry.loadLives(room.pool, [nodeId]);
+	if (moved.length > 0) await takeUp(room, moved, nowMs);
+	const placed = new Set(structural.filter(({ kind }) => kind === 'place').map((a) => a.nodeId));
+	return moved.filter((id) => placed.has(id));
+}
+
+/** What was written is read back: bays, groups, how far rows are taken. */
+async function takeUp(room: Room, ids: readonly number[], nowMs: number): Promise<void> {
+	await room.registry.loadSome(room.pool, { ids }, nowMs);
+	for (const id of ids) {
+		room.groups.forget([id]);
+		room.seen.forget(id);
+	}
+	await room.registry.loadLives(room.pool, ids);
 	room.groups.reconcile();
-	return act.kind === 'place' ? [nodeId] : [];
 }
 
 async function runOne(room: Room, sql: Sql, act: ActRow, nowMs: number): Promise<string> {
