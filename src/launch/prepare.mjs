@@ -101,6 +101,15 @@ function isAllThere() {
 	);
 }
 
+/** npm says what is wrong first, and how its commands are used last. */
+const firstWords = (stderr) =>
+	`${stderr ?? ''}`
+		.split('\n')
+		.map((text) => text.replace(/^npm error ?/, '').trim())
+		.filter((text) => text !== '')
+		.slice(0, 4)
+		.join(' ');
+
 /** `npm ci` when the lock file changed since the last time. */
 export function installNpm() {
 	const hash = hashOfLock();
@@ -110,8 +119,7 @@ export function installNpm() {
 		const args = ['ci', '--include=dev', '--loglevel=error', '--no-progress'];
 		const result = spawnSync('npm', args, { cwd: ROOT, encoding: 'utf8' });
 		if (result.status !== 0) {
-			const why = `${result.stderr ?? ''}`.trim().split('\n').slice(-4).join(' ');
-			fail(`npm ci did not succeed: ${why || result.error?.message}`);
+			fail(`npm ci did not succeed: ${firstWords(result.stderr) || result.error?.message}`);
 		}
 	}
 	writeFileSync(at(MARK), hash);
