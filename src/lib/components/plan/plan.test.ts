@@ -2,6 +2,7 @@ import { describe, expect, test } from 'vitest';
 import { layOut } from './layout';
 import { localMetres } from './local-metres';
 import type { BayOutline } from './types';
+import { nextOf, nextThatWay, rowEnd, typedBay } from './steps';
 import { fit, panned, stepM, toPage, toScreen, zoomAt } from './view';
 
 /** Two back-to-back rows of `n` bays 2.5 m by 5 m, turned by `deg` clockwise from north-up, at 52° N. */
@@ -89,4 +90,34 @@ test('zooming keeps the point under the pointer; panning never loses the page', 
 });
 test('marks come in steps of 1, 2 and 5', () => {
 	expect([stepM(20, 60), stepM(5, 60), stepM(0.5, 60), stepM(100, 60)]).toEqual([5, 20, 200, 1]);
+});
+
+test('typed codes are found with or without their hyphen, numbers by themselves', () => {
+	const outlines = twoRows(12, 0).map((bay) => ({
+		...bay,
+		code: bay.code.replace(/(\d+)/, '-0$1')
+	}));
+	const layout = layOut(outlines);
+	const code = (at: number | null) => (at === null ? null : layout.bays[at]!.code);
+	expect(['a-03', 'A03', 'b', '7', '-', 'x'].map((typed) => code(typedBay(layout, typed)))).toEqual(
+		['A-03', 'A-03', 'B-01', 'A-07', null, null]
+	);
+});
+test('arrows go to the nearest bay that way, ends along the row, needs in a ring', () => {
+	const layout = layOut(twoRows(12, 0));
+	const code = (at: number | null) => (at === null ? null : layout.bays[at]!.code);
+	const a5 = typedBay(layout, 'A5')!;
+	expect(
+		(['left', 'right', 'up', 'down'] as const).map((way) => code(nextThatWay(layout, a5, way)))
+	).toEqual(['A4', 'A6', 'B5', 'A5']);
+	expect([code(rowEnd(layout, a5, 'first')), code(rowEnd(layout, a5, 'last'))]).toEqual([
+		'A1',
+		'A12'
+	]);
+	expect([
+		nextOf([1, 7], 3, 1),
+		nextOf([1, 7], 7, 1),
+		nextOf([1, 7], 1, -1),
+		nextOf([], 0, 1)
+	]).toEqual([7, 1, 7, null]);
 });

@@ -46,10 +46,16 @@ export function nextOf(list: readonly number[], from: number, by: 1 | -1): numbe
 	return sorted.findLast((at) => at < from) ?? sorted.at(-1) ?? null;
 }
 
-/** The first bay whose code begins with what was typed, or has it after a letter ('7' finds 'B07'). */
+const bare = (code: string) => code.toUpperCase().replace(/[^A-Z0-9]/g, '');
+
+/**
+ * The first bay whose code begins with what was typed, or whose number does ('7' finds 'B-07'); dots,
+ * hyphens and underscores don't matter. null when there is none.
+ */
 export function typedBay(layout: PlanLayout, typed: string): number | null {
-	const wanted = typed.toUpperCase();
-	const codes = layout.bays.map((bay) => bay.code.toUpperCase());
+	const wanted = bare(typed);
+	if (wanted === '') return null;
+	const codes = layout.bays.map((bay) => bare(bay.code));
 	const begins = codes.findIndex((code) => code.startsWith(wanted));
 	if (begins >= 0) return begins;
 	const numbered = codes.findIndex((code) => code.replace(/^[^0-9]*0*/, '').startsWith(wanted));
