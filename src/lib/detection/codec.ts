@@ -1,3 +1,4 @@
+import { pack, unpack } from './pack';
 import { Fast, newSlow, type Slow } from './state';
 
 /** First byte of every stored state; a change of what is stored takes a new number. */
@@ -96,20 +97,20 @@ export function decodeFastState(bytes: Uint8Array): Fast {
 	return fast;
 }
 
-/** Slow state is JSON (numbers come back bit for bit) but for the learning window and hours, packed as floats. */
+/** Slow state is packed (numbers come back bit for bit); the learning window and hours as floats. */
 export function encodeSlowState(slow: Slow): Uint8Array {
 	const { window, windowAtMs, hours, ...plain } = slow;
-	const json = new TextEncoder().encode(JSON.stringify(plain));
+	const packed = pack(plain);
 	const numbers = [...windowAtMs, ...hours.map((h) => h[0])];
 	const floats = [...window, ...hours.flatMap((h) => h.slice(1))];
-	const bytes = new Uint8Array(7 + json.length + 8 * numbers.length + 4 * floats.length);
+	const bytes = new Uint8Array(7 + packed.length + 8 * numbers.length + 4 * floats.length);
 	const to = new DataView(bytes.buffer);
 	bytes[0] = LAYOUT;
-	to.setUint16(1, json.length, true);
+	to.setUint16(1, packed.length, true);
 	to.setUint16(3, windowAtMs.length, true);
 	to.setUint16(5, hours.length, true);
-	bytes.set(json, 7);
-	let at = 7 + json.length;
+	bytes.set(packed, 7);
+	let at = 7 + packed.length;
 	for (const v of numbers) {
 		to.setFloat64(at, v, true);
 		at += 8;
@@ -124,12 +125,12 @@ export function encodeSlowState(slow: Slow): Uint8Array {
 export function decodeSlowState(bytes: Uint8Array): Slow {
 	checkLayout(bytes);
 	const from = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-	const jsonLength = from.getUint16(1, true);
+	const packedLength = from.getUint16(1, true);
 	const readings = from.getUint16(3, true);
 	const hours = from.getUint16(5, true);
-	const text = new TextDecoder().decode(bytes.subarray(7, 7 + jsonLength));
-	const slow: Slow = { ...newSlow(), ...(JSON.parse(text) as Partial<Slow>) };
-	let at = 7 + jsonLength;
+	const plain = unpack(bytes.subarray(7, 7 + packedLength)) as Partial<Slow>;
+	const slow: Slow = { ...newSlow(), ...plain };
+	let at = 7 + packedLength;
 	const time = (): number => from.getFloat64((at += 8) - 8, true);
 	const float = (): number => from.getFloat32((at += 4) - 4, true);
 	slow.windowAtMs = Array.from({ length: readings }, time);
