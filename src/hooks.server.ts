@@ -20,10 +20,18 @@ export const init: ServerInit = async () => {
 	await startInstance();
 };
 
-// adapter-node: after the last answer has gone out.
+/** Under the launcher's patience: whatever still hangs then ends with the process. */
+const CLOSE_MS = 10_000;
+
+/** adapter-node says so after the last answer has gone out. */
+async function shutDown(): Promise<void> {
+	const late = new Promise((resolve) => setTimeout(resolve, CLOSE_MS).unref());
+	await Promise.race([closeInstance(), late]);
+	process.exit(0);
+}
 if (!building) {
 	process.removeAllListeners('sveltekit:shutdown');
-	process.on('sveltekit:shutdown', () => void closeInstance());
+	process.on('sveltekit:shutdown', () => void shutDown());
 }
 
 type Event = Parameters<Handle>[0]['event'];

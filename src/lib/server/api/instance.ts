@@ -100,10 +100,11 @@ function create(config: Config): Instance {
 		ingest: () => supervisor.status(),
 		secureCookies,
 		close: async () => {
-			await supervisor.close();
-			await sender.close();
-			await upkeep.close();
-			await store.close();
+			const parts = { supervisor, sender, upkeep, store };
+			for (const [part, running] of Object.entries(parts)) {
+				log.debug({ closing: part }, 'ends');
+				await running.close();
+			}
 		}
 	};
 }
