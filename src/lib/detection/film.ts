@@ -42,7 +42,10 @@ function filmCould(n: Node, step: Step): boolean {
 export function takeMagnet(n: Node, step: Step): boolean {
 	if (!step.clipped || !filmCould(n, step)) return false;
 	if (n.slow.state === 'occupied' && isDeparture(n, step)) return false;
+	const { atMs, uncertaintyS, settledMs, j } = step;
 	carryFilmStep(n, step);
+	// Undone by itself, without a pulse, it was a vehicle after all (neighbours.ts, leaveAlone).
+	n.slow.echoes.push({ by: n.id, j, byJ: j, atMs, uncertaintyS, settledMs, checkAfterMs: 0 });
 	doubtIt(n, 'magnet', step.atMs);
 	n.slow.refreshWhy = 'a strong field met the film';
 	return true;
@@ -78,7 +81,8 @@ function invertedAxes(n: Node, step: Step): Triple | null {
 	const old: Triple = [level[0] - step.j[0], level[1] - step.j[1], level[2] - step.j[2]];
 	const near = Math.max(2 * stillMg(n), params.invertedRatio * size3(old));
 	const known = step.gapS > 0 ? [old, triple(baseline)] : [old];
-	if (known.some((k) => apart(level, k) <= 2 * Math.max(near, offMg(n)))) return null;
+	const far = 2 * Math.max(near, offMg(n));
+	if (apart(level, old) <= far || apart(level, baseline) <= far) return null;
 	let best: Triple | null = null;
 	let bestMg = near;
 	for (const signs of AXIS_SETS) {

@@ -21,11 +21,24 @@ export function isArrival(n: Node, step: Step): boolean {
 	const { level, baseline } = n.fast;
 	const d = apart(level, baseline);
 	const on = onMg(n);
-	if (d < on || fromReferenceMg(n, level) <= n.params.returnMg) return false;
+	if (d < on || comesHome(n, step)) return false;
 	if (step.gapS > 0) {
 		return d >= on + unexplainedByTempMg(n, n.fast.baselineTempC) && size3(step.j) >= on;
 	}
 	return size3(step.j) >= n.params.stepRatio * on;
+}
+
+/**
+ * A level at the accepted reference is vacant whatever the running baseline says (method 3): when it is right
+ * on it, or when the level that it left was far away.
+ */
+function comesHome(n: Node, step: Step): boolean {
+	const { level } = n.fast;
+	const nowMg = fromReferenceMg(n, level);
+	if (nowMg <= n.params.returnMg) return true;
+	if (nowMg > offMg(n)) return false;
+	const left = triple(level).map((v, i) => v - step.j[i as 0]) as Triple;
+	return fromReferenceMg(n, left) > 2 * onMg(n);
 }
 
 /** A departure takes back most of what the arrival brought; less is the vehicle next to it, or drift. */
@@ -33,22 +46,24 @@ const MOST_OF_IT = 0.6;
 const HALF_OF_IT = 0.5;
 
 /** Would this step at an occupied bay be the vehicle's leaving (step ledger, release)? */
-export function isDeparture(n: Node, step: Step): boolean {
+export function isDeparture(n: Node, step: Step, echoMg = 0): boolean {
 	const { arrival } = n.slow;
 	const size = size3(step.j);
 	if (size < n.params.stepRatio * onMg(n)) return false;
 	if (arrival === null) return apart(n.fast.level, n.fast.baseline) < releaseMg(n);
 	const stood = Math.min(size3(arrival.first), size3(arrival.step));
 	if (step.gapS === 0 && size < MOST_OF_IT * Math.min(stood, n.fast.stayMg)) return false;
-	if (undoes(n, step, arrival.first) || undoes(n, step, arrival.step)) return true;
+	if (undoes(n, step, arrival.first, echoMg) || undoes(n, step, arrival.step, echoMg)) return true;
 	return apart(n.fast.level, n.fast.baseline) < releaseMg(n) || atReference(n, n.fast.level);
 }
 
 /** Step ledger: does this step take that one back? */
-function undoes(n: Node, step: Step, came: Triple): boolean {
+function undoes(n: Node, step: Step, came: Triple, echoMg: number): boolean {
 	const size = size3(came);
 	const near = Math.min(offMg(n), HALF_OF_IT * size);
-	return sumSize(step.j, came) <= Math.max(near, n.params.undoRatio * size);
+	return (
+		sumSize(step.j, came) <= Math.max(near, n.params.undoRatio * size) + Math.min(echoMg, size / 4)
+	);
 }
 
 /** Judges a settled step by the node's own evidence. */
@@ -65,10 +80,14 @@ export function judge(
 		if (isArrival(n, step)) arrive(g, n, step, overlapping, atMs);
 		else stayVacant(n, step);
 	} else if (n.slow.state === 'occupied') {
-		if (isDeparture(n, step)) depart(g, n, step, overlapping, atMs);
+		if (isDeparture(n, step, echoOf(n, overlapping))) depart(g, n, step, overlapping, atMs);
 		else stayOccupied(n, step);
 	}
 }
+
+/** What a neighbour's step at the same time may have left here on top of it, mG. */
+const echoOf = (n: Node, overlapping: readonly Overlap[]): number =>
+	n.params.echoSureRatio * Math.max(0, ...overlapping.map((o) => size3(o.step.j)));
 
 export function arrive(
 	g: Group,
@@ -189,7 +208,7 @@ function stayVacant(n: Node, step: Step): void {
 	const { fast } = n;
 	const d = apart(fast.level, fast.baseline);
 	step.became = 'nothing';
-	if (d >= onMg(n) && fromReferenceMg(n, fast.level) <= n.params.returnMg) takeVacant(n);
+	if (d >= onMg(n) && comesHome(n, step)) takeVacant(n);
 	else if (step.gapS > 0 && d >= offMg(n)) {
 		doubtIt(n, 'field moved during a gap', step.toMs);
 		set3(fast.baseline, fast.level);

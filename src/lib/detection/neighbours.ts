@@ -88,6 +88,7 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 	if (big !== null && isEchoOf(n, step, size, big) && !undoesOwn(n, step)) {
 		takeEcho(n, step, big);
 	} else if (!takeAisle(g, n, step, atMs)) {
+		leaveAlone(g, n, step, atMs);
 		judge(g, n, step, others, atMs);
 		watchReference(g, n, step, atMs);
 	}
@@ -112,7 +113,7 @@ function isEchoOf(n: Node, step: Step, size: number, big: Overlap): boolean {
 	const sharp = step.burst && big.step.burst;
 	const limit = sharp ? n.params.echoRatio : n.params.echoSlowRatio;
 	if (size >= limit * size3(big.step.j)) return false;
-	if (!sharp) return true;
+	if (!sharp || size < n.params.echoSureRatio * size3(big.step.j)) return true;
 	const earlyMs = n.params.echoEarlyS * MS_PER_S;
 	const lateMs = n.params.echoLateS * MS_PER_S;
 	const ends = step.toMs - big.step.toMs;
@@ -142,7 +143,10 @@ function markDecided(n: Node, atMs: number): void {
 function undoesOwn(n: Node, step: Step): boolean {
 	const { arrival } = n.slow;
 	if (arrival === null || n.slow.state !== 'occupied') return false;
-	return sumSize(step.j, arrival.step) <= n.params.exactRatio * size3(arrival.step);
+	const rest = Math.min(sumSize(step.j, arrival.step), sumSize(step.j, arrival.first));
+	const stood = size3(arrival.step);
+	if (rest <= n.params.exactRatio * stood) return true;
+	return !step.burst && rest <= n.params.exactSlowRatio * Math.min(stood, size3(step.j));
 }
 
 function keepInLedger(n: Node, step: Step): void {
@@ -250,6 +254,21 @@ function reveal(g: Group, n: Node, e: Echo, atMs: number): void {
 	if (slow.state === 'vacant' && without >= onMg(n) && withEcho < without)
 		arriveAfterAll(g, n, e, atMs);
 	else if (slow.state === 'occupied') leaveAfterAll(g, n, e, atMs);
+}
+
+/** A step that takes an echo back by itself shows that the echo was a vehicle: it came then, it leaves now. */
+function leaveAlone(g: Group, n: Node, step: Step, atMs: number): void {
+	if (n.slow.state !== 'vacant' || movingBeside(n, step)) return;
+	const e = n.slow.echoes.find(
+		(known) =>
+			size3(known.j) >= onMg(n) && sumSize(step.j, known.j) <= n.params.exactRatio * size3(known.j)
+	);
+	if (e === undefined || (n.slow.sinceMs ?? 0) > e.atMs) return;
+	n.slow.echoes = n.slow.echoes.filter((known) => known !== e);
+	shift3(n.fast.baseline, e.j, -1);
+	arriveAfterAll(g, n, e, atMs);
+	n.slow.arrival = { step: e.j, first: e.j, atMs: e.atMs };
+	n.fast.stayMg = Math.fround(size3(e.j));
 }
 
 function arriveAfterAll(g: Group, n: Node, e: Echo, atMs: number): void {

@@ -53,6 +53,7 @@ export const PARAMS = {
 		'1',
 		'the same where only a beat’s bracket tells the time: nearly all echoes are smaller'
 	),
+	echoSureRatio: spec(0.14, 0, 0.5, '1', 'under this share it is an echo whatever its timing'),
 	echoEarlyS: spec(
 		4,
 		0,
@@ -63,7 +64,14 @@ export const PARAMS = {
 	echoLateS: spec(1.5, 0, 30, 's', 'but hardly after it'),
 	echoUndoRatio: spec(0.5, 0.1, 0.9, '1', 'an echo goes with its vehicle within this share'),
 	exactRatio: spec(0.25, 0, 0.5, '1', 'a step this near to undoing the arrival is no echo'),
-	pendS: spec(12, 2, 120, 's', 'how long a step waits for a neighbour that still moves'),
+	exactSlowRatio: spec(
+		0.5,
+		0,
+		0.8,
+		'1',
+		'the same between beats, where an echo may lie on top of it'
+	),
+	pendS: spec(60, 2, 120, 's', 'how long a step waits for a neighbour that still moves'),
 	onsetS: spec(6, 1, 30, 's', 'within a burst the movement began at most this long before'),
 	slackS: spec(2, 0, 30, 's', 'time brackets of neighbours may miss each other by this much'),
 	queueS: spec(20, 5, 120, 's', 'vehicles of a queue stop within this time of each other'),

@@ -65,6 +65,7 @@ export function takePulse(g: Group, n: Node, pulse: PulseItem): void {
 	if (fast.levelN > 0 && fast.open === 0) carryOver(n, pulse);
 	slow.signs = [1, 1, 1];
 	slow.refreshWhy = null;
+	slow.echoes = slow.echoes.filter((e) => e.by !== n.id);
 	if (slow.doubt?.reason === 'magnet') clearDoubt(n);
 	g.out.push({
 		kind: 'pulse_judged',
