@@ -1,6 +1,6 @@
 /**
  * Drift bench: causes injected into simulated sites, and what drift says of them. `npx tsx tests/bench/drift.ts
- * [seed]`. Prints JSON lines: the confusion table of causes with Wilson limits, magnitudes, flagging of steps,
+ * [seed] [causes,steps,cost,false]`. Prints JSON lines: the confusion table of causes with Wilson limits, magnitudes, flagging of steps,
  * false 'drifting' a node and year on autocorrelated residuals, cost of an hour's close.
  */
 import { add, magnitude, scale, subtract, type Vec3 } from '../../src/lib/magnetics/vector';
@@ -128,7 +128,7 @@ function runHour(
 		const drifting = drift.watch.driftingSinceMs !== null;
 		const sinceH = h - site.pairAtH[i]!;
 		const due =
-			(rule.diagnose && drifting && sinceH >= 6) ||
+			(rule.diagnose && drifting && sinceH >= 6 && drift.line !== 'cause_not_known') ||
 			(rule.calibrate && !drifting && sinceH >= 7 * HOURS_A_DAY);
 		const diagnosis = due ? pairAt(site, i, h) : null;
 		seen({ i, h, parts, wasDrifting, diagnosis, trueMg });
@@ -156,8 +156,7 @@ function right(cause: Injected, sizeMg: number, said: string): boolean {
 
 function benchCauses(sites: number): void {
 	const table: Record<string, Record<string, number>> = {};
-	let hits = 0;
-	let n = 0;
+	let [hits, n, ordinary, ordinaryN] = [0, 0, 0, 0];
 	let sized = 0;
 	let sizes = 0;
 	let undiagnosed = 0;
@@ -175,17 +174,22 @@ function benchCauses(sites: number): void {
 		for (let h = 1; h < days * HOURS_A_DAY; h++) {
 			runHour(site, h, { calibrate: true, diagnose: true }, AR, (seen) => {
 				const { injection } = site.sims[seen.i]!;
-				if (injection === null || done.has(seen.i) || h < injection.startH) {
+				if (injection === null || done.has(seen.i)) return;
+				if (h < injection.startH) {
 					judgeOrdinary(seen, site, note, (good) => {
-						n++;
-						if (good) hits++;
+						ordinaryN++;
+						if (good) ordinary++;
 					});
 					return;
 				}
-				if (seen.diagnosis === null || magnitude(seen.trueMg) < 10) return;
+				if (seen.diagnosis === null) return;
+				const sim = site.sims[seen.i]!;
+				const sizeMg = magnitude(subtract(seen.trueMg, told.get(sim) ?? [0, 0, 0]));
+				// A slow cause may be told in part by the weekly pair; film is healed by it.
+				if (injection.cause !== 'film') told.set(sim, seen.trueMg);
+				if (sizeMg < 10) return;
 				done.add(seen.i);
 				const { cause, magnitudeMg } = seen.diagnosis.named;
-				const sizeMg = magnitude(sizeAtPair(site, seen));
 				note(injection.cause, cause);
 				n++;
 				sizes++;
@@ -197,14 +201,11 @@ function benchCauses(sites: number): void {
 	}
 	for (const [truth, said] of Object.entries(table))
 		console.log(JSON.stringify({ bench: 'drift-confusion', truth, said }));
-	console.log(JSON.stringify({ bench: 'drift-cause', ...ratio(hits, n) }));
+	console.log(JSON.stringify({ bench: 'drift-cause-injected', ...ratio(hits, n) }));
+	console.log(JSON.stringify({ bench: 'drift-cause-ordinary', ...ratio(ordinary, ordinaryN) }));
 	console.log(JSON.stringify({ bench: 'drift-magnitude', ...ratio(sized, sizes), undiagnosed }));
 }
 
-/** A pair sees what came since the last one: slow causes may have been told in part before. */
-function sizeAtPair(site: Site, seen: HourSeen): Vec3 {
-	return subtract(seen.trueMg, told.get(site.sims[seen.i]!) ?? [0, 0, 0]);
-}
 const told = new WeakMap<SimNode, Vec3>();
 
 /** Hours before anything was done: temperature, geomagnetic or nothing, whichever is clearly larger. */
@@ -323,9 +324,12 @@ function benchCost(): void {
 	);
 }
 
-benchCauses(25);
-benchSteps(12);
-benchCost();
-benchFalse(4, { rho: 0.9, sigmaMg: 2 }, { calibrate: true, diagnose: false });
-benchFalse(4, { rho: 0.9, sigmaMg: 2 }, { calibrate: false, diagnose: false });
-benchFalse(2, { rho: 0, sigmaMg: 2 }, { calibrate: false, diagnose: false });
+const WANTED = new Set((process.argv[3] ?? 'causes,steps,cost,false').split(','));
+if (WANTED.has('causes')) benchCauses(25);
+if (WANTED.has('steps')) benchSteps(12);
+if (WANTED.has('cost')) benchCost();
+if (WANTED.has('false')) {
+	benchFalse(4, { rho: 0.9, sigmaMg: 2 }, { calibrate: true, diagnose: false });
+	benchFalse(4, { rho: 0.9, sigmaMg: 2 }, { calibrate: false, diagnose: false });
+	benchFalse(2, { rho: 0, sigmaMg: 2 }, { calibrate: false, diagnose: false });
+}

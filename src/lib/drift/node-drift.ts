@@ -1,5 +1,5 @@
 import { pairOffset } from '$lib/magnetics/set-reset';
-import { add, magnitude, subtract, ZERO, type Vec3 } from '$lib/magnetics/vector';
+import { add, magnitude, scale, subtract, ZERO, type Vec3 } from '$lib/magnetics/vector';
 import {
 	decompose,
 	geomagneticPart,
@@ -14,12 +14,14 @@ import {
 	explainedBy,
 	filmOf,
 	NO_PAIRS,
+	splitSlope,
 	withPair,
 	type Diagnosis,
+	type PairSetting,
 	type PairState
 } from './pairs';
 import type { DriftSettings } from './params';
-import type { LineVote, SiteLine } from './site-line';
+import type { LineVerdict, LineVote, SiteLine } from './site-line';
 import { addToSlope, breakSlope, SLOPE_START, slopeOf, type Slope, type SlopeState } from './slope';
 import type { DriftReference, HourParts, HourRecord, PairRecord } from './types';
 import { ownResidual, WATCH_START, watchHour, watchPair, type WatchState } from './watch';
@@ -37,9 +39,20 @@ export interface NodeDrift {
 	slope: Slope | null;
 	pairs: PairState;
 	watch: WatchState;
-	/** Geomagnetic change at the last closed hour, node axes. */
+	/** Geomagnetic change at the last closed hour, node axes; zero where it was not known. */
 	geomagneticMg: Vec3;
+	line: LineVerdict;
+	/** First hour of the running stay, from which an occupied node votes. */
+	stay: StayAnchor | null;
 	last: HourParts | null;
+}
+
+interface StayAnchor {
+	stay: string;
+	levelMg: Vec3;
+	tempC: number;
+	/** The site's line then. */
+	lineMg: Vec3;
 }
 
 /** A film loss from here on is worth a new run of movement. */
@@ -62,6 +75,8 @@ export function startDrift(
 		pairs,
 		watch: WATCH_START,
 		geomagneticMg: ZERO,
+		line: 'few_nodes',
+		stay: null,
 		last: null
 	};
 }
@@ -80,11 +95,20 @@ function known(drift: NodeDrift): Decomposed {
 	};
 }
 
+/** An occupied node tells what has changed since its stay began: a parked vehicle keeps still too. */
+function voteFromStay({ frame, slope, stay }: NodeDrift, hour: HourRecord): LineVote | null {
+	if (frame === null || slope === null || stay === null || stay.stay !== hour.stay) return null;
+	if (hour.tempC === null) return null;
+	const warming = scale(slope.perC, hour.tempC - stay.tempC);
+	const movedMg = subtract(subtract(levelOf(hour), stay.levelMg), warming);
+	return { residualMg: add(stay.lineMg, intoFrame(frame, movedMg)), ownMg: ZERO };
+}
+
 /** What the node says of the site's line in this hour; null when it has nothing to say (method 5.2). */
 export function voteOf(drift: NodeDrift, hour: HourRecord): LineVote | null {
+	if (hour.stay !== null) return voteFromStay(drift, hour);
 	const { reference, frame, slope } = drift;
-	if (hour.stay !== null || frame === null || reference.offsetMg === null || slope === null)
-		return null;
+	if (frame === null || reference.offsetMg === null || slope === null) return null;
 	const temperature = temperaturePart(hour.tempC, reference, slope);
 	if (temperature.note !== null) return null;
 	const { explained } = known(drift);
@@ -98,17 +122,23 @@ export function voteOf(drift: NodeDrift, hour: HourRecord): LineVote | null {
 	};
 }
 
-/** Takes the hour into the slope, less what the site's line explains of it. */
-function learnSlope(
-	drift: NodeDrift,
-	hour: HourRecord,
-	geomagneticMg: Vec3,
-	settings: DriftSettings
-): NodeDrift {
+function anchored({ stay }: NodeDrift, hour: HourRecord, line: SiteLine): StayAnchor | null {
+	if (hour.stay === null || hour.tempC === null) return null;
+	if (stay?.stay === hour.stay) return stay;
+	if (line.verdict !== 'known') return null;
+	const { tempC } = hour;
+	return { stay: hour.stay, levelMg: levelOf(hour), tempC, lineMg: line.changeMg };
+}
+
+/**
+ * Takes the hour into the slope: the level as it is. Less the site's line it would feed itself, since the line
+ * holds whatever slope error the nodes share (on the bench it then locked in 0.2 mG/°C of it).
+ */
+function learnSlope(drift: NodeDrift, hour: HourRecord, settings: DriftSettings): NodeDrift {
 	if (hour.tempC === null) return drift;
-	const levelMg = subtract(levelOf(hour), geomagneticMg);
 	const { hourMs, tempC, stay } = hour;
-	const slopeState = addToSlope(drift.slopeState, { hourMs, levelMg, tempC, stay }, settings);
+	const point = { hourMs, levelMg: levelOf(hour), tempC, stay };
+	const slopeState = addToSlope(drift.slopeState, point, settings);
 	return { ...drift, slopeState, slope: slopeOf(slopeState, settings) ?? drift.slope };
 }
 
@@ -123,11 +153,16 @@ export function closeHour(
 	settings: DriftSettings
 ): { drift: NodeDrift; parts: HourParts | null } {
 	const geomagneticMg = geomagneticPart(drift.frame, line, drift.reference).partMg;
-	const learned = learnSlope(drift, hour, geomagneticMg, settings);
-	if (hour.stay !== null) return { drift: { ...learned, geomagneticMg }, parts: null };
+	const learned: NodeDrift = {
+		...learnSlope(drift, hour, settings),
+		geomagneticMg,
+		line: line.verdict,
+		stay: anchored(drift, hour, line)
+	};
+	if (hour.stay !== null) return { drift: learned, parts: null };
 	const parts = decompose(hour, line, known(learned));
 	const watch = watchHour(learned.watch, parts, settings);
-	return { drift: { ...learned, geomagneticMg, watch, last: parts }, parts };
+	return { drift: { ...learned, watch, last: parts }, parts };
 }
 
 /** A reference without an offset takes it from the first pair; its level stays what it was. */
@@ -148,8 +183,9 @@ export function applyPair(
 	const first = drift.reference.offsetMg === null;
 	const reference = first ? completed(drift.reference, pair) : drift.reference;
 	const at: NodeDrift = { ...drift, reference, frame: frameOf(reference.fieldMg) };
-	const fallbackC = drift.last?.tempC ?? reference.tempC ?? 0;
-	const pairs = withPair(at.pairs, pair, at.geomagneticMg, fallbackC, settings);
+	// While a whole site moves and nobody knows why, a pair would take that for the node's surroundings.
+	const told = { ...pair, vacant: pair.vacant && at.line !== 'cause_not_known' };
+	const pairs = withPair(at.pairs, told, pairSetting(at), settings);
 	const film = filmOf(pair);
 	const healed = film !== null && magnitude(film) >= HEALED_MG ? 'film' : 'nothing';
 	const next: NodeDrift = {
@@ -159,7 +195,19 @@ export function applyPair(
 		watch: watchPair(at.watch, healed)
 	};
 	if (first) return { drift: next, diagnosis: null };
-	const before = known(at).explained;
-	const after = known(next).explained;
-	return { drift: next, diagnosis: diagnose(pair, reference, before, after, settings) };
+	// One k_O on both sides: what the pair adds to it is no change of the bridge.
+	const after = known({ ...next, pairs: { ...pairs, offsetPerC: at.pairs.offsetPerC } }).explained;
+	return {
+		drift: next,
+		diagnosis: diagnose(told, reference, known(at).explained, after, settings)
+	};
+}
+
+function pairSetting(drift: NodeDrift): PairSetting {
+	const { reference, tempcoPerC, slope, pairs, last, geomagneticMg } = drift;
+	return {
+		geomagneticMg,
+		fallbackTempC: last?.tempC ?? reference.tempC ?? 0,
+		offsetPerC: splitSlope(reference, tempcoPerC, slope, pairs.offsetPerC).offset
+	};
 }

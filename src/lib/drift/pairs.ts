@@ -53,17 +53,34 @@ function offsetSlope(points: readonly PairPoint[], spanC: number): Vec3 | null {
 }
 
 /** How offset and field move with temperature; together the total slope k where it is known. */
+interface SplitSlope {
+	offset: Vec3;
+	field: Vec3;
+}
+
+/** How far the true κ may lie from the profile's, as a share of it. */
+const TEMPCO_DOUBT = 0.2;
+
+/**
+ * k_O and the field's own slope. Until pairs tell k_O it is k - κ b_ref. Once they do, it is theirs, held within
+ * what κ may be off: an offset that drifts while the season turns looks like a slope, and would take the field's
+ * part with it.
+ */
 export function splitSlope(
 	reference: DriftReference,
 	tempcoPerC: number,
 	slope: Slope | null,
 	offsetPerC: Vec3 | null
-): { offset: Vec3; field: Vec3 } {
+): SplitSlope {
 	const byProfile = scale(reference.fieldMg, tempcoPerC);
 	if (slope === null) return { offset: offsetPerC ?? ZERO, field: byProfile };
-	if (offsetPerC === null) return { offset: subtract(slope.perC, byProfile), field: byProfile };
-	// Both measured: the field's own slope is what is left of k, which is truer than the profile's κ.
-	return { offset: offsetPerC, field: subtract(slope.perC, offsetPerC) };
+	const rest = subtract(slope.perC, byProfile);
+	if (offsetPerC === null) return { offset: rest, field: byProfile };
+	const doubt = TEMPCO_DOUBT * Math.abs(tempcoPerC) * magnitude(reference.fieldMg);
+	const held = (i: 0 | 1 | 2) =>
+		Math.min(rest[i] + doubt, Math.max(rest[i] - doubt, offsetPerC[i]));
+	const offset: Vec3 = [held(0), held(1), held(2)];
+	return { offset, field: subtract(slope.perC, offset) };
 }
 
 /** What pairs explain since the reference (method 5.3, 5.4), at reference temperature. */
@@ -159,12 +176,20 @@ export function diagnose(
 	return { ...told, surroundingsChangeMg, surroundingsKind: kind, named: largest(causes) };
 }
 
-/** Takes an accepted pair; one without a temperature only where the reference has none either. */
+/** What of the site's and the node's state a pair is read with. */
+export interface PairSetting {
+	geomagneticMg: Vec3;
+	/** For a pair that came without a temperature. */
+	fallbackTempC: number;
+	/** k_O as used so far. */
+	offsetPerC: Vec3;
+}
+
+/** Takes an accepted pair. One whose offset jumped begins a new series for k_O. */
 export function withPair(
 	state: PairState,
 	pair: PairRecord,
-	geomagneticMg: Vec3,
-	fallbackTempC: number,
+	{ geomagneticMg, fallbackTempC, offsetPerC }: PairSetting,
 	settings: DriftSettings
 ): PairState {
 	const point: PairPoint = {
@@ -174,12 +199,10 @@ export function withPair(
 		tempC: pair.tempC ?? fallbackTempC,
 		geomagneticMg
 	};
-	const last = state.any;
-	const expected = scale(state.offsetPerC ?? ZERO, last === null ? 0 : point.tempC - last.tempC);
-	const jumped =
-		last !== null &&
-		magnitude(subtract(subtract(point.offsetMg, last.offsetMg), expected)) > JUMP_MG &&
-		state.offsetPerC !== null;
+	const last = state.kept.at(-1);
+	const expected = scale(offsetPerC, last === undefined ? 0 : point.tempC - last.tempC);
+	const moved = subtract(point.offsetMg, last?.offsetMg ?? point.offsetMg);
+	const jumped = magnitude(subtract(moved, expected)) > JUMP_MG;
 	const kept = [...(jumped ? [] : state.kept), point].slice(-KEPT);
 	return {
 		vacant: pair.vacant ? point : state.vacant,

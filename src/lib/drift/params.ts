@@ -33,6 +33,13 @@ export const DRIFT_PARAMS = {
 	offsetSlopeSpanC: param(10, 4, 40, '°C', 'pairs that span less do not tell an offset slope'),
 	lineNodes: param(5, 3, 50, '1', 'fewer nodes cannot outvote one that moved'),
 	lineSpreadMg: param(2, 0.5, 10, 'mG', 'nodes that disagree more see no common cause'),
+	lineSpreadShare: param(
+		0.15,
+		0,
+		0.5,
+		'1',
+		'local steel turns frames by some degrees: a large storm scatters more'
+	),
 	lineLimitMg: param(25, 5, 100, 'mG', 'no geomagnetic storm is wider here'),
 	cusumK: param(0.5, 0.1, 2, 'sigma', 'best against a shift of one sigma'),
 	cusumKMg: param(2, 0.5, 10, 'mG', 'slower movement than this is left to the rate'),

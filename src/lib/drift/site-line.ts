@@ -37,7 +37,8 @@ function agreement(vectors: readonly Vec3[]): { changeMg: Vec3; spreadMg: number
 /**
  * Component-wise median over the nodes (method 5.2). Where nodes have wandered apart over months their plain
  * spread would silence the line for ever; then each node's own standing residual is taken out first, which
- * keeps storms and daily variation and loses only what all nodes share for a week.
+ * keeps storms and daily variation and loses only what all nodes share for a week. The spread allowed grows
+ * with the change: steel near the nodes turns their frames by some degrees, which scatters a large storm.
  */
 export function siteLine(votes: readonly LineVote[], settings: DriftSettings): SiteLine {
 	const nodes = votes.length;
@@ -51,9 +52,10 @@ export function siteLine(votes: readonly LineVote[], settings: DriftSettings): S
 	for (const vectors of tries) {
 		const found = agreement(vectors());
 		spreadMg = Math.min(spreadMg, found.spreadMg);
-		const common = found.spreadMg <= settings.lineSpreadMg;
-		if (common && magnitude(found.changeMg) <= settings.lineLimitMg)
-			return { verdict: 'known', ...found, nodes };
+		const sizeMg = magnitude(found.changeMg);
+		const common =
+			found.spreadMg <= Math.max(settings.lineSpreadMg, settings.lineSpreadShare * sizeMg);
+		if (common && sizeMg <= settings.lineLimitMg) return { verdict: 'known', ...found, nodes };
 		if (common) break;
 	}
 	return { verdict: 'cause_not_known', changeMg: ZERO, spreadMg, nodes };

@@ -89,7 +89,7 @@ function pool(batches: readonly Batch[], atMs: number): Batch {
 
 const dayOf = (atMs: number): number => Math.floor(atMs / DAY_MS) * DAY_MS;
 
-/** Takes one closed hour, later than all before it. `levelMg` = field + offset, less the site's line. */
+/** Takes one closed hour, later than all before it. `levelMg` = field + offset. */
 export function addToSlope(state: SlopeState, point: Point, settings: DriftSettings): SlopeState {
 	const dayMs = dayOf(point.hourMs);
 	const turned = state.hours.length > 0 && dayOf((state.hours[0] as Batch).atMs) < dayMs;
