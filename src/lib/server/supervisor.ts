@@ -1,7 +1,7 @@
-import { randomUUID } from 'node:crypto';
 import type { NodeView } from '$lib/detection/types';
 import type { Config } from './config';
 import { diskFree } from './disk';
+import { holderName, isGone } from './ingest/holder';
 import { periodic } from './ingest/periodic';
 import type { PipelineStatus } from './ingest/pipeline-status';
 import { readNodeView } from './ingest/node-view';
@@ -55,7 +55,7 @@ const DISK_EVERY_MS = 5_000;
  */
 export function startSupervisor(deps: SupervisorDeps): Supervisor {
 	const { store, log } = deps;
-	const holder = randomUUID();
+	const holder = holderName();
 	let state: SupervisorState = 'starting';
 	let service: IngestService | null = null;
 	let subscriber: Subscriber | null = null;
@@ -98,6 +98,10 @@ export function startSupervisor(deps: SupervisorDeps): Supervisor {
 	/** Without an answer from the database a running service goes on: it holds its batch by itself. */
 	async function holdOr(otherwise: boolean): Promise<boolean> {
 		try {
+			if (await lease.hold(store.pool, lease.PIPELINE_LEASE, holder)) return true;
+			const other = await lease.holderOf(store.pool, lease.PIPELINE_LEASE);
+			if (other === null || !isGone(other)) return false;
+			await lease.takeOver(store.pool, lease.PIPELINE_LEASE, other, holder);
 			return await lease.hold(store.pool, lease.PIPELINE_LEASE, holder);
 		} catch (error) {
 			if (service !== null) {

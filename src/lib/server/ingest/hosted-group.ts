@@ -1,6 +1,12 @@
 import * as detection from '$lib/detection/group';
 import type { GroupItem, GroupMember, NodeView, Outcome } from '$lib/detection/types';
-import type { Pointer, SnapshotRow, States } from '$lib/server/store/queries/node-state';
+import {
+	FAST_BYTES,
+	SLOW_BYTES,
+	type Pointer,
+	type SnapshotRow,
+	type States
+} from '$lib/server/store/queries/node-state';
 import type { NodeEntry } from './node-entry';
 import { compareOrder, eraAt, firstDiffering, type Order } from './order';
 
@@ -27,6 +33,25 @@ export interface Pumped {
 	late: Queued[];
 	/** Nodes whose rows went in. */
 	taken: Set<number>;
+	/** Slow states that changed. */
+	slow: SlowState[];
+}
+
+export interface SlowState {
+	nodeId: number;
+	state: Uint8Array;
+}
+
+/** Detection's state outgrew its column: the group is set aside rather than holding everybody up. */
+export class StateTooLong extends RangeError {
+	constructor(nodeId: number, bytes: number) {
+		super(`Detection's state of node ${nodeId} has ${bytes} bytes.`);
+	}
+}
+
+function fitting(nodeId: number, state: Uint8Array, most: number): Uint8Array {
+	if (state.length > most) throw new StateTooLong(nodeId, state.length);
+	return state;
 }
 
 /** A neighbour whose last two rows lie this near is bursting: its next row is about to come. */
@@ -40,6 +65,7 @@ interface Heard {
 /** Nodes chained within 4 m, with detection's state and what waits to go into it. */
 export class HostedGroup {
 	#queue: Queued[] = [];
+	#pumped: Queued[] = [];
 	readonly #heard = new Map<number, Heard>();
 	/** How far each member's rows are taken. */
 	readonly pointers = new Map<number, Pointer | null>();
@@ -68,8 +94,9 @@ export class HostedGroup {
 		return this.entries.map(({ id }) => id);
 	}
 
-	get queued(): readonly Queued[] {
-		return this.#queue;
+	/** What went in or waits since progress was last noted. */
+	get unnoted(): readonly Queued[] {
+		return [...this.#pumped, ...this.#queue];
 	}
 
 	get waiting(): number {
@@ -104,8 +131,10 @@ export class HostedGroup {
 		const taken = new Set<number>();
 		const rest: Queued[] = [];
 		const blocked = new Set<number>();
-		if (this.#queue.length > 1) this.#queue.sort(byTime);
-		for (const queued of this.#queue) {
+		this.#pumped = this.#queue;
+		this.#queue = [];
+		if (this.#pumped.length > 1) this.#pumped.sort(byTime);
+		for (const queued of this.#pumped) {
 			if (this.#mustWait(queued, blocked, nowMs)) {
 				blocked.add(queued.item.nodeId);
 				rest.push(queued);
@@ -116,7 +145,8 @@ export class HostedGroup {
 			}
 		}
 		this.#queue = rest;
-		return { outcomes, late, taken };
+		for (const nodeId of taken) this.fast(nodeId);
+		return { outcomes, late, taken, slow: this.changedSlow() };
 	}
 
 	#mustWait(queued: Queued, blocked: ReadonlySet<number>, nowMs: number): boolean {
@@ -173,6 +203,7 @@ export class HostedGroup {
 
 	/** Tells each member's own memory how far it is taken and from when on stored rows wait. */
 	noteProgress(): void {
+		this.#pumped = [];
 		for (const { id, live } of this.entries) {
 			live.pointer = this.pointers.get(id) ?? null;
 			live.waitingFromMs = null;
@@ -189,23 +220,23 @@ export class HostedGroup {
 	}
 
 	fast(nodeId: number): Uint8Array {
-		return detection.encodeFast(this.state, nodeId);
+		return fitting(nodeId, detection.encodeFast(this.state, nodeId), FAST_BYTES);
 	}
 
 	/** The slow states that changed since they were last asked for. */
-	changedSlow(): { nodeId: number; state: Uint8Array }[] {
-		const changed: { nodeId: number; state: Uint8Array }[] = [];
+	changedSlow(): SlowState[] {
+		const changed: SlowState[] = [];
 		for (const { id } of this.entries) {
 			const revision = detection.slowRevision(this.state, id);
 			if (this.#slowWritten.get(id) === revision) continue;
 			this.#slowWritten.set(id, revision);
-			changed.push({ nodeId: id, state: detection.encodeSlow(this.state, id) });
+			changed.push({ nodeId: id, state: this.#slow(id) });
 		}
 		return changed;
 	}
 
 	/** All slow states, whatever was written before. */
-	allSlow(): { nodeId: number; state: Uint8Array }[] {
+	allSlow(): SlowState[] {
 		this.#slowWritten.clear();
 		return this.changedSlow();
 	}
@@ -218,9 +249,13 @@ export class HostedGroup {
 			takenAtMs,
 			daily,
 			pointer: this.pointers.get(id) ?? null,
-			fast: detection.encodeFast(this.state, id),
-			slow: detection.encodeSlow(this.state, id)
+			fast: this.fast(id),
+			slow: this.#slow(id)
 		}));
+	}
+
+	#slow(nodeId: number): Uint8Array {
+		return fitting(nodeId, detection.encodeSlow(this.state, nodeId), SLOW_BYTES);
 	}
 }
 

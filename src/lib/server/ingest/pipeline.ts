@@ -293,7 +293,7 @@ class RunningPipeline implements Pipeline {
 		);
 		this.#counters.setAside += 1;
 		for (const id of group.ids) this.#aside.set(id, Date.now() + SET_ASIDE_MS);
-		for (const { item, order } of group.queued) {
+		for (const { item, order } of group.unnoted) {
 			const live = this.room.registry.byId(item.nodeId)?.live;
 			if (live === undefined || order === null) continue;
 			live.waitingFromMs = Math.min(live.waitingFromMs ?? item.atMs, item.atMs);

@@ -53,13 +53,32 @@ export async function settleAll(
 	pumped: ReadonlyMap<HostedGroup, Pumped>
 ): Promise<void> {
 	for (const [group, result] of pumped) {
-		const replay = await replayIfLate(sql, room, work, group, result);
+		const replay = await replayOrAside(sql, room, work, group, result);
+		if (replay === 'aside') continue;
 		if (replay === null) await tell(sql, room.registry, work, result.outcomes);
 		const now = replay?.group ?? group;
 		touch(room, work, now, result);
 		settleSilence(work, now, replay === null ? result.taken : new Set(now.ids));
 		now.noteProgress();
-		await keepSnapshot(sql, work, now, replay);
+		await keepSnapshot(sql, room, now, replay);
+	}
+}
+
+/** An error of detection, not of the database, sets the group aside; its late rows mark their hours. */
+async function replayOrAside(
+	sql: Sql,
+	room: DetectRoom,
+	work: Work,
+	group: HostedGroup,
+	result: Pumped
+): Promise<Replay | null | 'aside'> {
+	try {
+		return await replayIfLate(sql, room, work, group, result);
+	} catch (error) {
+		if (typeof (error as { code?: unknown }).code === 'string') throw error;
+		for (const { item } of result.late) work.mark(item.nodeId, item.atMs);
+		room.setAside(group, error);
+		return 'aside';
 	}
 }
 
@@ -83,6 +102,8 @@ async function replayIfLate(
 	}
 	if (replay === null) return null;
 	await continueTo(sql, replay, Number.MAX_SAFE_INTEGER, 0, room.stamps);
+	for (const id of replay.group.ids) replay.group.fast(id);
+	result.slow = replay.group.allSlow();
 	await adopt(sql, room, work, replay);
 	return replay;
 }
@@ -112,7 +133,7 @@ function touch(room: DetectRoom, work: Work, group: HostedGroup, result: Pumped)
 		touched.add(nodeId);
 		for (const near of room.registry.neighboursOf(nodeId)) touched.add(near);
 	}
-	for (const slow of work.replayed.has(group) ? group.allSlow() : group.changedSlow()) {
+	for (const slow of result.slow) {
 		work.slow.push(slow);
 		touched.add(slow.nodeId);
 	}
@@ -142,14 +163,15 @@ function settleSilence(work: Work, group: HostedGroup, taken: ReadonlySet<number
 
 async function keepSnapshot(
 	sql: Sql,
-	work: Work,
+	room: DetectRoom,
 	group: HostedGroup,
 	replay: Replay | null
 ): Promise<void> {
 	const due = replay !== null || mustSnapshot(group, group.newestAtMs) || isNewDay(group);
 	if (!due || group.newestAtMs === 0) return;
 	const daily = isNewDay(group);
-	await nodeState.writeSnapshots(sql, group.snapshot(work.stampMs, daily));
+	// A new stamp: what a replay of this batch recorded lies above the batch's own.
+	await nodeState.writeSnapshots(sql, group.snapshot(room.stamps.next(), daily));
 	await nodeState.thinSnapshots(
 		sql,
 		group.ids,

@@ -21,11 +21,25 @@ export async function hold(sql: Sql, name: string, holder: string): Promise<bool
 	return (await holderOf(sql, name)) === holder;
 }
 
-async function holderOf(sql: Sql, name: string): Promise<string | null> {
+export async function holderOf(sql: Sql, name: string): Promise<string | null> {
 	const rows = await select<{ holder: string }>(sql, 'SELECT holder FROM lease WHERE name = ?', [
 		name
 	]);
 	return rows[0]?.holder ?? null;
+}
+
+/** Takes a lease over from a holder that is known to be gone. */
+export async function takeOver(
+	sql: Sql,
+	name: string,
+	from: string,
+	holder: string
+): Promise<void> {
+	await run(
+		sql,
+		`UPDATE lease SET holder = ?, until_ms = ${NOW_MS} + ? WHERE name = ? AND holder = ?`,
+		[holder, LEASE_MS, name, from]
+	);
 }
 
 /**

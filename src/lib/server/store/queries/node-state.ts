@@ -1,5 +1,9 @@
 import { hexLiteral, insertTuples, numeral, run, select, type Sql } from './bulk';
 
+/** What the columns hold of detection's states. */
+export const FAST_BYTES = 300;
+export const SLOW_BYTES = 4096;
+
 /** How far detection has taken a node's rows. */
 export interface Pointer {
 	atMs: number;
