@@ -1,61 +1,71 @@
 import { parseArgs } from 'node:util';
 import { ALL_SCENARIOS, scenarioByName } from '../../simulator/scenarios/lines';
-import { generate } from '../../simulator/generate';
-import { detect } from '../accuracy/support/detect';
-import { grade, type Score } from '../accuracy/support/grade';
+import { addScores } from '../accuracy/support/grade';
+import {
+	detailLines,
+	jsonLine,
+	missLines,
+	publishedLines,
+	reliabilityLines,
+	scoreLine
+} from '../accuracy/support/report';
+import { runRound, type Round } from '../accuracy/support/round';
 
 /**
- * npm run bench:accuracy -- [--scenarios hard,echo] [--seed 1 | --fresh] [--rounds 1] [--misses 5] [--events 20000]
+ * npm run bench:accuracy -- [--scenarios hard,echo] [--seed 1 | --fresh] [--rounds 1] [--misses 5] [--alone]
  *
- * Prints one table line and one JSON line a scenario; --misses shows what was missed and why.
+ * Every line of method.md 11 and their mixture: events matched as section 9 says, Wilson limits, share
+ * of time in the right state, confidence as section 4 judges it, and beside them the published methods of
+ * section 12 on the same rows (left out with --alone). One round of everything holds over 50,000 events.
  */
 const { values } = parseArgs({
 	options: {
 		scenarios: { type: 'string' },
 		seed: { type: 'string', default: '1' },
 		fresh: { type: 'boolean', default: false },
-		misses: { type: 'string', default: '0' }
+		rounds: { type: 'string', default: '1' },
+		misses: { type: 'string', default: '0' },
+		alone: { type: 'boolean', default: false }
 	}
 });
 
-/** What the columns of node_fast and node_slow take (store/schema/node.ts). */
-const FAST_BYTES = 300;
-const SLOW_BYTES = 4096;
-
 const seed = values.fresh ? Date.now() % 1_000_000 : Number(values.seed);
 const names = values.scenarios?.split(',') ?? ALL_SCENARIOS.map(({ name }) => name);
+const print = (lines: readonly string[]): void => console.log(lines.join('\n'));
 
-function line(name: string, score: Score): string {
-	const percent = (share: number) => `${(100 * share).toFixed(2)} %`;
-	return [
-		name.padEnd(11),
-		`F1 ${score.f1.toFixed(4)}`,
-		`precision ${score.precision.toFixed(4)}`,
-		`recall ${score.recall.toFixed(4)}`,
-		`events ${score.truths}`,
-		`missed ${score.truths - score.hits}`,
-		`false ${score.falses}`,
-		`right ${percent(score.right)}`,
-		`unknown ${percent(score.unknown)}`,
-		JSON.stringify(score.apart)
-	].join('  ');
-}
-
-for (const name of names) {
+function bench(name: string): Round[] {
 	const scenario = scenarioByName(name);
 	if (scenario === undefined) throw new Error(`no scenario is called ${name}`);
-	const generated = generate(scenario, seed);
-	const detected = detect(generated);
-	const score = grade(generated, detected);
-	console.log(line(name, score));
-	if (detected.fastBytes > FAST_BYTES || detected.slowBytes > SLOW_BYTES) {
-		console.log(
-			`   STORED STATE TOO LONG: fast ${detected.fastBytes} of ${FAST_BYTES} B, slow ${detected.slowBytes} of ${SLOW_BYTES} B: ingest stands still`
-		);
+	const seeds = Array.from({ length: Number(values.rounds) }, (_, i) => seed + i);
+	const rounds = seeds.map((one) =>
+		runRound(scenario, one, values.alone ? {} : { published: 'with' })
+	);
+	const score = addScores(rounds.map((round) => round.score));
+	print([scoreLine(name, score), ...rounds.flatMap(detailLines)]);
+	if (Number(values.misses) > 0) {
+		print(rounds.flatMap((round) => missLines(round, Number(values.misses))));
 	}
-	for (const miss of score.misses.slice(0, Number(values.misses))) {
-		const { code } = generated.plan.bays[miss.bayIndex]!;
-		const at = new Date(miss.atMs).toISOString();
-		console.log(`   ${miss.kind} ${miss.type} ${code} (node ${miss.bayIndex}) ${at} ${miss.why}`);
-	}
+	if (!values.alone) print(publishedLines(rounds));
+	print([jsonLine(name, seeds, score)]);
+	return rounds;
 }
+
+console.log(`seeds from ${seed}${values.fresh ? ' (fresh)' : ''}`);
+const all = names.flatMap(bench);
+const total = addScores(all.map((round) => round.score));
+print([
+	'',
+	scoreLine('all of these', total),
+	...(values.alone ? [] : publishedLines(all)),
+	...reliabilityLines(
+		'confidence at random instants',
+		all.flatMap((round) => round.judged.random),
+		seed
+	),
+	...reliabilityLines(
+		'confidence within 30 min of events',
+		all.flatMap((round) => round.judged.nearEvents),
+		seed
+	),
+	jsonLine('all', [seed], total)
+]);

@@ -1,0 +1,55 @@
+import { generate } from '../../../simulator/generate';
+import type { Scenario } from '../../../simulator/scenarios/types';
+import type { Facts } from '../../../simulator/truth';
+import { gradePublished } from '../published/run';
+import { judgeLooks, type JudgedLooks } from './confidence';
+import { detect, type DetectOptions } from './detect';
+import { grade, type Score } from './grade';
+
+/** One scenario with one seed: invented, detected, graded. */
+export interface Round {
+	scenario: Scenario;
+	seed: number;
+	score: Score;
+	judged: JudgedLooks;
+	/** By place in PUBLISHED; empty when not asked for. */
+	published: Score[];
+	facts: Facts;
+	/** Bay codes, so that misses can be named. */
+	bays: string[];
+	rows: number;
+	generateMs: number;
+	detectMs: number;
+	voided: number;
+	fastBytes: number;
+	slowBytes: number;
+	pulsesRefused: Map<string, number>;
+}
+
+export interface RoundOptions extends DetectOptions {
+	published?: 'with';
+}
+
+export function runRound(scenario: Scenario, seed: number, options: RoundOptions = {}): Round {
+	const startedAt = performance.now();
+	const generated = generate(scenario, seed);
+	const generateMs = performance.now() - startedAt;
+	const detected = detect(generated, options);
+	const { rows, detectMs, voided, fastBytes, slowBytes, pulsesRefused } = detected;
+	return {
+		scenario,
+		seed,
+		score: grade(generated, detected),
+		judged: judgeLooks(generated, detected, `${scenario.name} ${seed}`),
+		published: options.published === undefined ? [] : gradePublished(generated),
+		facts: generated.truth.facts,
+		bays: generated.plan.bays.map(({ code }) => code),
+		rows,
+		generateMs,
+		detectMs,
+		voided,
+		fastBytes,
+		slowBytes,
+		pulsesRefused
+	};
+}
