@@ -34,6 +34,7 @@ const BYTES = [
 	'open',
 	'openGap',
 	'openClipped',
+	'openLow',
 	'clippedRun',
 	'reanchor'
 ] as const satisfies readonly (keyof Fast)[];

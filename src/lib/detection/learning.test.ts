@@ -29,8 +29,9 @@ test('29 readings over any time are too few to learn from', () => {
 	const street = placed();
 	street.play(beats(1, T0, T0 + 29 * 5 * S, QUIET, 5 * S));
 	expect(learned(street)).toEqual([]);
-	street.play(beats(1, T0 + 29 * 5 * S, T0 + 30 * 5 * S, QUIET, 5 * S));
-	expect(learned(street)).toHaveLength(1);
+	// The very first reading only says where the field stands.
+	street.play(beats(1, T0 + 29 * 5 * S, T0 + 31 * 5 * S, QUIET, 5 * S));
+	expect(learned(street)[0]?.readings).toBe(30);
 });
 
 test('30 readings within less than 2 min are too few', () => {
@@ -41,7 +42,10 @@ test('30 readings within less than 2 min are too few', () => {
 
 test('a burst does not fill the learning window within seconds', () => {
 	const street = placed();
-	street.play(beats(1, T0, T0 + 30 * S, QUIET, 0.25 * S), beats(1, T0 + 121 * S, T0 + 122 * S, QUIET));
+	street.play(
+		beats(1, T0, T0 + 30 * S, QUIET, 0.25 * S),
+		beats(1, T0 + 121 * S, T0 + 122 * S, QUIET)
+	);
 	expect(learned(street)).toEqual([]);
 });
 
@@ -149,16 +153,23 @@ test('three returns within 10 mG lift the cap of a provisional reference', () =>
 	expect(street.view().confidence).toBeGreaterThan(0.9);
 });
 
+const OTHER: Vec3[] = [
+	[-150, 40, 200],
+	[90, 140, -120],
+	[-60, -130, 160]
+];
+
 test('returns 15 mG off the reference prove nothing', () => {
 	const street = new Street().commission('rule');
 	const home = plus(QUIET, [15, 0, 0]);
 	visit(street, READY, home);
-	for (const k of [1, 2, 3]) {
+	for (const [k, other] of OTHER.entries()) {
+		const atMs = READY + (k + 1) * 20 * MIN;
 		street.play(
-			drives(1, READY + k * 20 * MIN, home, plus(home, CAR)),
-			beats(1, READY + k * 20 * MIN + MIN, READY + k * 20 * MIN + 10 * MIN, plus(home, CAR)),
-			drives(1, READY + k * 20 * MIN + 10 * MIN, plus(home, CAR), home),
-			beats(1, READY + k * 20 * MIN + 11 * MIN, READY + k * 20 * MIN + 20 * MIN, home)
+			drives(1, atMs, home, plus(home, other)),
+			beats(1, atMs + MIN, atMs + 10 * MIN, plus(home, other)),
+			drives(1, atMs + 10 * MIN, plus(home, other), home),
+			beats(1, atMs + 11 * MIN, atMs + 20 * MIN, home)
 		);
 	}
 	expect(street.moves()).toHaveLength(8);
@@ -166,12 +177,6 @@ test('returns 15 mG off the reference prove nothing', () => {
 });
 
 const EMPTY = plus(QUIET, [70, -90, 60]);
-const OTHER: Vec3[] = [
-	[-150, 40, 200],
-	[90, 140, -120],
-	[-60, -130, 160]
-];
-
 /** Learned under a vehicle: it leaves, and others come and go at the field that the reference lacks. */
 function learnedUnderVehicle(visits: number): Street {
 	const street = new Street().commission('rule');

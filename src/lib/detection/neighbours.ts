@@ -85,8 +85,9 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 		null
 	);
 	const size = size3(step.j);
-	if (big !== null && isEchoOf(n, step, size, big) && !undoesOwn(n, step)) {
-		takeEcho(n, step, big);
+	const by = big !== null && isEchoOf(n, step, size, big) ? big : besideUs(n, step, size, others);
+	if (by !== null && !undoesOwn(n, step)) {
+		takeEcho(n, step, by);
 	} else if (!takeAisle(g, n, step, atMs)) {
 		leaveAlone(g, n, step, atMs);
 		judge(g, n, step, others, atMs);
@@ -130,6 +131,24 @@ function cameOrLeft({ node, step }: Overlap): 'came' | 'left' | 'either' {
 	if (step.became !== 'pending' || node.slow.state === 'unknown') return 'either';
 	return node.slow.state === 'vacant' ? 'came' : 'left';
 }
+
+/**
+ * What stands in the lane beside an occupied bay is felt alike by the bays next to each other, where a vehicle
+ * of the bay itself is felt by one far more than by the rest.
+ */
+function besideUs(n: Node, step: Step, size: number, others: readonly Overlap[]): Overlap | null {
+	const { queueFactor, queueFlatOnRatio, echoRatio } = n.params;
+	if (n.slow.state !== 'occupied' || !step.burst || size >= queueFlatOnRatio * onMg(n)) return null;
+	const alike = others.filter(({ step: other }) => {
+		const ratio = size3(other.j) / size;
+		const own = other.became === 'arrival' || other.became === 'departure';
+		return other.burst && !own && ratio > echoRatio / LESS_THAN_ECHO && ratio <= queueFactor;
+	});
+	return alike[0] ?? null;
+}
+
+/** An echo the other way round would be smaller than this part of the limit. */
+const LESS_THAN_ECHO = 1.2;
 
 /** Nodes that a decision reads or may write: rows of theirs up to here come late from now on. */
 function markDecided(n: Node, atMs: number): void {

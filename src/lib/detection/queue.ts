@@ -56,22 +56,34 @@ export function takeAisle(g: Group, n: Node, step: Step, atMs: number): boolean 
 	return true;
 }
 
-/** A further step while 'aisle': gone, grown into a vehicle, or still waiting. */
+/** A further step while 'aisle': gone, grown into a vehicle, or another of the queue in its place. */
 function followAisle(g: Group, n: Node, step: Step, d: number, atMs: number): boolean {
-	const { slow, params } = n;
-	const { aisle } = slow;
-	if (d >= aisleLimitMg(n, step)) arrive(g, n, step, [], atMs);
+	const { slow } = n;
+	const size = size3(step.j);
+	if (d >= aisleLimitMg(n, step) && size >= onMg(n)) arrive(g, n, step, [], atMs);
 	else {
 		step.became = 'nothing';
-		// Another vehicle stands there now: the queue has moved up.
-		const deadlineMs = step.toMs + params.queueMaxS * MS_PER_S;
 		if (d < offMg(n)) slow.aisle = null;
-		else if (aisle !== null && size3(step.j) >= offMg(n)) {
-			slow.aisle = { ...aisle, step: { ...step, before: null }, deadlineMs };
-		}
+		else if (size >= offMg(n)) startAgain(n, step);
 	}
 	touch(n);
 	return true;
+}
+
+function startAgain(n: Node, step: Step): void {
+	const { aisle } = n.slow;
+	if (aisle === null) return;
+	const deadlineMs = step.toMs + n.params.queueMaxS * MS_PER_S;
+	n.slow.aisle = { ...aisle, step: { ...step, before: null }, deadlineMs };
+}
+
+/** The level was left and came back: the next of the queue has taken the place of the one before. */
+export function moveUp(n: Node, atMs: number): void {
+	const { aisle } = n.slow;
+	if (aisle === null) return;
+	const { openOldAtMs, openNewAtMs } = n.fast;
+	startAgain(n, { ...aisle.step, fromMs: openOldAtMs, newMs: openNewAtMs, toMs: atMs, atMs });
+	touch(n);
 }
 
 /** What outlasts the queue is parked, since its own time. */

@@ -5,9 +5,11 @@ import { learn } from './learning';
 import { hold, resolve } from './neighbours';
 import { addPass } from './passes';
 import { settleAfterPulse } from './pulses';
+import { watchSlowCrossing } from './slow-crossing';
+import { moveUp } from './queue';
 import type { Group, Node, Step } from './state';
 import { followTemperature } from './temperature';
-import { gapMs, offMg, onMg, stillMg, trackNoise } from './thresholds';
+import { disturbanceMg, gapMs, offMg, onMg, stillMg, trackNoise } from './thresholds';
 import type { RowItem } from './types';
 import { apart, axisApart } from './vec';
 
@@ -160,6 +162,7 @@ function quiet(
 		return;
 	}
 	if (slow.state !== 'vacant' || slow.aisle !== null || fast.boxN < STILL_READINGS) return;
+	watchSlowCrossing(n, d, atMs);
 	if (d >= onMg(n)) return;
 	let take = 1 - Math.exp(-Math.min(dtMs, LONGEST_DT_MS) / (params.baselineTauS * MS_PER_S));
 	if (fast.rebase > 0) {
@@ -202,6 +205,7 @@ function begin(g: Group, n: Node, atMs: number, dtMs: number): void {
 	fast.openNewAtMs = atMs;
 	fast.openGap = dtMs > gapMs(n) ? 1 : 0;
 	fast.openClipped = 0;
+	fast.openLow = 0;
 	fast.openN = 0;
 	fast.peakMg = 0;
 	fast.crossAtMs = 0;
@@ -232,6 +236,8 @@ function continueStep(g: Group, n: Node, atMs: number): void {
 	}
 	fast.peakMg = Math.fround(Math.max(fast.peakMg, offLevel));
 	if (pastHalfFilm(n)) fast.openClipped++;
+	else if (fast.openClipped < MAGNET_ROWS) fast.openClipped = 0;
+	if (n.slow.aisle !== null && disturbanceMg(n) < offMg(n)) fast.openLow = 1;
 	noteCrossing(n, atMs);
 	if (fast.boxN >= 2 && atMs - fast.boxFromMs >= n.params.stillS * MS_PER_S) settle(g, n, atMs);
 }
@@ -306,6 +312,7 @@ function pass(g: Group, n: Node, step: Step, atMs: number): void {
 /** A movement that came back: neighbours that wait for it may go on. */
 function passed(g: Group, n: Node, atMs: number): void {
 	addPass(n);
+	if (n.fast.openLow === 1) moveUp(n, atMs);
 	if (n.slow.unknownWhy !== null) heardAgain(g, n, atMs);
 	n.fast.decidedAtMs = atMs;
 	for (const m of n.near) {

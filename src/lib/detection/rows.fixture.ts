@@ -129,8 +129,7 @@ export class Street {
 
 	item(reading: Reading): RowItem {
 		const noisy = ([0, 1, 2] as const).map(
-			(i) =>
-				this.polarity * (reading.fieldMg[i] + this.noiseMg * this.next()) + this.offsetMg[i]
+			(i) => this.polarity * (reading.fieldMg[i] + this.noiseMg * this.next()) + this.offsetMg[i]
 		) as unknown as Vec3;
 		return {
 			kind: 'row',

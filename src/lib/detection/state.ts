@@ -79,6 +79,8 @@ export class Fast {
 	open = 0;
 	openGap = 0;
 	openClipped = 0;
+	/** The open step has been near the baseline. */
+	openLow = 0;
 	clippedRun = 0;
 	/** Polarity of the last row. */
 	polarity = 1;

@@ -1,0 +1,16 @@
+import { clearDoubt, doubtIt } from './entries';
+import type { Node } from './state';
+import { offMg, onMg } from './thresholds';
+
+const REASON = 'the field crossed the threshold slowly';
+
+/**
+ * A still level over the threshold that no step brought: drift, or a vehicle that was not seen to come. The bay
+ * is doubtful, not occupied (method 4, step rule), until the field is back or a step tells.
+ */
+export function watchSlowCrossing(n: Node, dMg: number, atMs: number): void {
+	const { slow } = n;
+	if (slow.doubt === null) {
+		if (dMg >= onMg(n) && slow.pending === null) doubtIt(n, REASON, atMs);
+	} else if (slow.doubt.reason === REASON && dMg < offMg(n)) clearDoubt(n);
+}
