@@ -75,19 +75,20 @@ describe('the same effective history, however it came', () => {
 		await feedMatches(9);
 	});
 
-	test('one late row after another, each behind the snapshot of the replay before', async () => {
+	test('one late row after another, each after the snapshot that the replay before it took', async () => {
 		const held =
 			(min: number) =>
 			({ i, frame }: Delivery[number]) =>
 				i === 0 && frame.t >= START_MS + min * MIN && frame.t < START_MS + (min + 1) * MIN;
 		const all = inTime(START_MS);
-		const [early, later] = [all.filter(held(21)), all.filter(held(23))];
+		const [early, later] = [all.filter(held(21)), all.filter(held(26))];
 		const rest = all.filter((one) => !early.includes(one) && !later.includes(one));
-		const [a, b] = [24, 26].map((min) =>
+		const [a, b] = [24, 29].map((min) =>
 			rest.findIndex(({ frame }) => frame.t >= START_MS + min * MIN)
 		) as [number, number];
-		await deliver(15, [...rest.slice(0, a), ...early, ...rest.slice(a, b), ...later]);
-		await deliver(15, rest.slice(b));
+		// One after the other: what is in flight together goes in sorted.
+		for (const part of [rest.slice(0, a), early, rest.slice(a, b), later, rest.slice(b)])
+			await deliver(15, part);
 		await drained();
 		expect(await histories(15)).toEqual(undisturbed);
 		await feedMatches(15);
