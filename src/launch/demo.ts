@@ -1,4 +1,4 @@
-import { mkdir, open, rm, stat } from 'node:fs/promises';
+import { mkdir, rm } from 'node:fs/promises';
 import { join } from 'node:path';
 import type { Config } from '../lib/server/config';
 import { makeKey } from '../lib/server/auth/make-key';
@@ -69,54 +69,4 @@ export async function startSimulator(options: SimulatorOptions): Promise<Child> 
 		logFile: options.logFile,
 		stopMs: STOP_MS
 	});
-}
-
-const LOOK_MS = 1_000;
-
-/** Waits for the site that the simulator makes, and makes it the demo's. Null when told to stop. */
-export async function adoptDemo(db: Database, isStopping: () => boolean): Promise<string | null> {
-	while (!isStopping()) {
-		const [slug] = (await firstStart.siteIds(db)).keys();
-		if (slug !== undefined && (await firstStart.adoptDemoSite(db, slug, Date.now()))) return slug;
-		await new Promise((resolve) => setTimeout(resolve, LOOK_MS));
-	}
-	return null;
-}
-
-/** The simulator's own line when its week has been taken; null when told to stop. */
-const WEEK_SENT = /history sent: (.+?);/;
-const TAIL_BYTES = 4_000;
-
-/** Waits for the end of the week in the simulator's log, from `fromByte` on. */
-export async function untilWeekSent(
-	logFile: string,
-	fromByte: number,
-	isStopping: () => boolean
-): Promise<string | null> {
-	while (!isStopping()) {
-		const said = await tail(logFile, fromByte);
-		const found = WEEK_SENT.exec(said)?.[1];
-		if (found !== undefined) return found;
-		await new Promise((resolve) => setTimeout(resolve, LOOK_MS));
-	}
-	return null;
-}
-
-export const sizeOf = async (file: string): Promise<number> =>
-	await stat(file).then(
-		({ size }) => size,
-		() => 0
-	);
-
-async function tail(file: string, fromByte: number): Promise<string> {
-	const length = Math.min(TAIL_BYTES, (await sizeOf(file)) - fromByte);
-	if (length <= 0) return '';
-	const handle = await open(file);
-	try {
-		const position = (await sizeOf(file)) - length;
-		const { buffer, bytesRead } = await handle.read(Buffer.alloc(length), 0, length, position);
-		return buffer.subarray(0, bytesRead).toString();
-	} finally {
-		await handle.close();
-	}
 }

@@ -5,14 +5,8 @@ import { reachable, startApp, startBroker } from './app';
 import { buildWhenStale } from './build';
 import { explain, openDataFolder } from './data-folder';
 import { embeddedDatabase, readyStore, untilAnswers } from './database';
-import {
-	adoptDemo,
-	demoWanted,
-	forgetFormerDemo,
-	sizeOf,
-	startSimulator,
-	untilWeekSent
-} from './demo';
+import { demoWanted, forgetFormerDemo, startSimulator } from './demo';
+import { sizeOf, tellOfDemo } from './demo-progress';
 import { addressOf, childEnvironment } from './environment';
 import { keepLogsSmall, logFileOf, type LoggedPart } from './log-files';
 import { startMailCatcher } from './mail';
@@ -38,7 +32,7 @@ const say = (part: string, text: string) => {
 /** Brings up database, broker, mail, app and demo, in this order, and takes them down in reverse. */
 export class Launcher {
 	#parts: Part[] = [];
-	#run: runFile.RunFile | null = null;
+	#record: runFile.RunRecord | null = null;
 	#stopping = false;
 	#starting: Promise<void> = Promise.resolve();
 	readonly #building = new AbortController();
@@ -69,7 +63,7 @@ export class Launcher {
 			await part.stop();
 			if (part.quiet === undefined) say(part.name, 'stopped');
 		}
-		if (this.#run !== null) await runFile.remove(this.config.dataDir);
+		await this.#record?.remove();
 	}
 
 	async #start(): Promise<void> {
@@ -107,7 +101,7 @@ export class Launcher {
 		const mine = await runFile.emptyRunFile(addressOf(this.config));
 		const claim = await runFile.claim(dataDir, mine);
 		if (!claim.ok) throw new StartProblem(claim.reason);
-		this.#run = mine;
+		this.#record = claim.record;
 		if (claim.leftovers.length > 0)
 			say('launcher', `ended what a killed start had left: ${claim.leftovers.join(', ')}`);
 		const { host, mqtt, mqttUrl } = this.config;
@@ -144,17 +138,14 @@ export class Launcher {
 		}
 		let url = '';
 		const start = embeddedDatabase(dataDir, async (pid) => {
-			await this.#remember('database', pid);
+			await this.#record?.remember('database', pid);
 		});
 		await this.#supervise('database', 'database', async () => {
 			const server = await start();
 			url = server.url;
 			return { ...server, name: 'database' };
 		});
-		if (this.#run !== null) {
-			this.#run.databaseUrl = url;
-			await runFile.rewrite(dataDir, this.#run);
-		}
+		await this.#record?.rememberDatabase(url);
 		say('database', `up on 127.0.0.1:${new URL(url).port}, data in ${dataDir}/db`);
 		return url;
 	}
@@ -237,21 +228,17 @@ export class Launcher {
 		if (isNew) await forgetFormerDemo(config);
 		const fromByte = await sizeOf(logFile);
 		await this.#supervise('simulator', 'simulator', async () => await startSimulator(options));
-		if (isNew) this.#tellOfDemo(store, logFile, fromByte);
-		else say('demo', 'its vehicles come and go on');
-	}
-
-	/** A person may sign in meanwhile and watch the week come in. */
-	#tellOfDemo(store: Store, logFile: string, fromByte: number): void {
-		say('demo', 'making a site with a week of history (about a minute)');
-		const isStopping = () => this.#stopping;
-		const telling = (async () => {
-			const slug = await adoptDemo(store.db, isStopping);
-			if (slug === null) return;
-			say('demo', `site ${slug} is there; its week is coming in`);
-			const sent = await untilWeekSent(logFile, fromByte, isStopping);
-			if (sent !== null) say('demo', `the week is there: ${sent}`);
-		})();
+		if (!isNew) {
+			say('demo', 'its vehicles come and go on');
+			return;
+		}
+		const telling = tellOfDemo({
+			...{ db: store.db, logFile, fromByte },
+			isStopping: () => this.#stopping,
+			say: (text) => {
+				say('demo', text);
+			}
+		});
 		this.#addQuiet('demo', async () => {
 			await telling;
 		});
@@ -273,7 +260,7 @@ export class Launcher {
 			start,
 			logFile,
 			onStarted: async (child) => {
-				await this.#remember(name, child.pid);
+				await this.#record?.remember(name, child.pid);
 			},
 			say: (text) => {
 				say(name, text);
@@ -285,14 +272,6 @@ export class Launcher {
 			}
 		});
 		this.#parts.push(part);
-	}
-
-	/** Writes down what runs, so that the next launcher can end it should this one be killed. */
-	async #remember(name: string, pid: number): Promise<void> {
-		if (this.#run === null) return;
-		const others = this.#run.children.filter((child) => child.name !== name);
-		this.#run.children = [...others, await runFile.running(name, pid)];
-		await runFile.rewrite(this.config.dataDir, this.#run);
 	}
 
 	#goOn(): void {

@@ -54,7 +54,7 @@ test('a leftover with the same id and start time is ended', async () => {
 	const { pid, ended } = sleeper();
 	await leftBehind(dir, [await runFile.running('app', pid)]);
 	const claim = await runFile.claim(dir, await runFile.emptyRunFile('http://x'));
-	expect(claim).toEqual({ ok: true, leftovers: ['app'] });
+	expect(claim).toMatchObject({ ok: true, leftovers: ['app'] });
 	await ended;
 });
 
@@ -64,7 +64,7 @@ test('a stranger who got the id of a leftover is left alone', async () => {
 	const ticks = await startTicks(pid);
 	await leftBehind(dir, [{ name: 'app', pid, ticks: String(Number(ticks) - 1) }]);
 	const claim = await runFile.claim(dir, await runFile.emptyRunFile('http://x'));
-	expect(claim).toEqual({ ok: true, leftovers: [] });
+	expect(claim).toMatchObject({ ok: true, leftovers: [] });
 	expect(await startTicks(pid)).toBe(ticks);
 	process.kill(pid, 'SIGKILL');
 	await ended;
@@ -87,4 +87,20 @@ test('a file cut short blocks nothing', async () => {
 	await writeFile(join(dir, 'run.json'), '{"boot":"x","laun');
 	const claim = await runFile.claim(dir, await runFile.emptyRunFile('http://x'));
 	expect(claim.ok).toBe(true);
+});
+
+test('parts that are started again at the same time are all written down', async () => {
+	const dir = await folder();
+	const claim = await runFile.claim(dir, await runFile.emptyRunFile('http://x'));
+	if (!claim.ok) throw new Error(claim.reason);
+	const names = ['app', 'broker', 'database'];
+	await Promise.all(
+		names.map(async (name) => {
+			await claim.record.remember(name, process.pid);
+		})
+	);
+	const found = await runFile.readRunFile(dir);
+	expect(found?.children.map(({ name }) => name).sort()).toEqual(names);
+	await claim.record.remove();
+	expect(await runFile.readRunFile(dir)).toBeNull();
 });

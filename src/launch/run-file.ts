@@ -40,7 +40,8 @@ export const running = async (name: string, pid: number): Promise<Running> => ({
 
 const isAlive = async ({ pid, ticks }: Running) => (await startTicks(pid)) === ticks;
 
-export type Claim = { ok: true; leftovers: string[] } | { ok: false; reason: string };
+export type Claim =
+	{ ok: true; record: RunRecord; leftovers: string[] } | { ok: false; reason: string };
 
 /**
  * Takes the data folder for this launcher. What a killed start left behind is ended first: a process
@@ -49,7 +50,8 @@ export type Claim = { ok: true; leftovers: string[] } | { ok: false; reason: str
 export async function claim(dataDir: string, mine: RunFile): Promise<Claim> {
 	const leftovers: string[] = [];
 	for (;;) {
-		if (await create(dataDir, mine)) return { ok: true, leftovers };
+		if (await create(dataDir, mine))
+			return { ok: true, record: new RunRecord(dataDir, mine), leftovers };
 		const found = await readRunFile(dataDir);
 		if (found !== null && found.boot === mine.boot) {
 			if (await isAlive(found.launcher))
@@ -76,14 +78,45 @@ async function create(dataDir: string, content: RunFile): Promise<boolean> {
 	}
 }
 
+/** What this launcher runs, kept on disk so that the next one can end it should this one be killed. */
+export class RunRecord {
+	#writing: Promise<void> = Promise.resolve();
+
+	constructor(
+		private readonly dataDir: string,
+		private readonly content: RunFile
+	) {}
+
+	async remember(name: string, pid: number): Promise<void> {
+		const child = await running(name, pid);
+		const others = this.content.children.filter((other) => other.name !== name);
+		this.content.children = [...others, child];
+		await this.#write();
+	}
+
+	async rememberDatabase(url: string): Promise<void> {
+		this.content.databaseUrl = url;
+		await this.#write();
+	}
+
+	async remove(): Promise<void> {
+		await this.#writing;
+		await rm(pathOf(this.dataDir), { force: true });
+	}
+
+	/** One after the other: two parts may be started again at once. A full disk ends no part. */
+	async #write(): Promise<void> {
+		this.#writing = this.#writing.then(async () => {
+			await rewrite(this.dataDir, this.content).catch(() => undefined);
+		});
+		await this.#writing;
+	}
+}
+
 export async function rewrite(dataDir: string, content: RunFile): Promise<void> {
 	const aside = `${pathOf(dataDir)}.new`;
 	await writeFile(aside, JSON.stringify(content), { mode: 0o600 });
 	await rename(aside, pathOf(dataDir));
-}
-
-export async function remove(dataDir: string): Promise<void> {
-	await rm(pathOf(dataDir), { force: true });
 }
 
 export const emptyRunFile = async (address: string): Promise<RunFile> => ({
