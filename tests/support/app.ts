@@ -17,7 +17,7 @@ export interface TestApp {
 	/** Everything that the app has printed. */
 	output(): string;
 	/** A path of the app, raw. */
-	ask(path: string, wanted?: Wanted): Promise<Answer>;
+	readonly ask: (path: string, wanted?: Wanted) => Promise<Answer>;
 	/** The same with `Authorization: Bearer`. */
 	withKey(key: string): (path: string, wanted?: Wanted) => Promise<Answer>;
 	/** Signs in over the form of /sign-in; what comes back asks with cookie and Origin of a browser. */
@@ -121,7 +121,7 @@ function handleOf(child: ChildProcess, origin: string): TestApp {
 async function signIn(ask: TestApp['ask'], origin: string, email: string, password: string) {
 	const answer = await ask('/sign-in', {
 		method: 'POST',
-		headers: { origin, 'content-type': 'application/x-www-form-urlencoded' },
+		headers: { origin, accept: 'text/html', 'content-type': 'application/x-www-form-urlencoded' },
 		body: new URLSearchParams({ email, password }).toString()
 	});
 	const cookie = Object.entries(answer.cookies)

@@ -17,10 +17,10 @@ export async function readBody(
 	const limit = o.geojson ? GEOJSON_BODY_BYTES : BODY_BYTES;
 	const tooLarge = problem(413, `A body here has at most ${limit} bytes.`);
 	if (Number(request.headers.get('content-length') ?? 0) > limit) return refuse(tooLarge);
-	if (request.body === null && o.optional) return { ok: true, value: {}, bytes: Buffer.alloc(0) };
+	const empty = isEmpty(request);
+	if (empty && o.optional) return { ok: true, value: {}, bytes: Buffer.alloc(0) };
 	const types = ['application/json', ...(o.geojson ? ['application/geo+json'] : [])];
 	const type = request.headers.get('content-type')?.split(';')[0]?.trim().toLowerCase() ?? '';
-	const empty = request.body === null;
 	if (!empty && !types.includes(type)) {
 		return refuse(
 			problem(415, `Send ${types.join(' or ')}.`, { headers: { accept: types.join(', ') } })
@@ -46,6 +46,12 @@ export async function readBody(
 	} catch {
 		return refuse(problem(400, 'The body is not JSON in UTF-8.'));
 	}
+}
+
+/** Kit drops a body that names no type: its length still tells that there was one. */
+function isEmpty({ body, headers }: Request): boolean {
+	if (body !== null) return false;
+	return Number(headers.get('content-length') ?? 0) === 0 && !headers.has('transfer-encoding');
 }
 
 /** null when it is longer than `limit`, or longer than the server as a whole reads. */
