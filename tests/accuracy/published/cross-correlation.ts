@@ -4,17 +4,21 @@ import type { PublishedChange, PublishedDetector, PublishedMethod, PublishedRow 
 /**
  * Normalized cross-correlation (J. Sensors 2015, doi 10.1155/2015/361242): the recent signal against a
  * reference, its centre found by k-means; where the coefficient passes a threshold a pulse says that a
- * vehicle came or went. The abstract alone could be read, so window and thresholds are our own: 16
+ * vehicle came or went. The abstract alone could be read, so window and thresholds are our own: 40
  * samples of half a second, two clusters of the distances from the quiet field while it is busy.
  */
 const STEP_MS = 500;
-const WINDOW = 16;
-const COEFFICIENT = 0.85;
+const WINDOW = 40;
+const COEFFICIENT = 0.6;
 const LEAST_RISE_MG = 20;
-const CLUSTER_EVENTS = 30;
+const CLUSTER_EVENTS = 60;
+/** Small vehicles end far below the mean of all: nearer to 'free' than half way still counts as taken. */
+const NEARER = 0.25;
 
-/** The shape of an arrival in the window: quiet, a ramp of two seconds, level. */
-const ARRIVAL = Array.from({ length: WINDOW }, (_, i) => Math.min(1, Math.max(0, (i - 6) / 4)));
+/** The shape of an arrival with its middle at each lag of the window: quiet, a ramp of three seconds, level. */
+const ARRIVALS = Array.from({ length: WINDOW - 16 }, (_, lag) =>
+	Array.from({ length: WINDOW }, (__, i) => Math.min(1, Math.max(0, (i - 5 - lag) / 6)))
+);
 
 export function normalizedCorrelation(a: readonly number[], b: readonly number[]): number {
 	const mean = (v: readonly number[]) => v.reduce((sum, x) => sum + x, 0) / v.length;
@@ -61,14 +65,18 @@ class CrossCorrelation implements PublishedDetector {
 		if (this.#window.length < WINDOW) return null;
 		const rise = this.#window[WINDOW - 1]! - this.#window[0]!;
 		if (Math.abs(rise) < LEAST_RISE_MG) return null;
-		const shape = rise > 0 ? ARRIVAL : ARRIVAL.map((x) => -x);
-		if (normalizedCorrelation(this.#window, shape) < COEFFICIENT) return null;
+		const sign = Math.sign(rise);
+		const best = Math.max(
+			...ARRIVALS.map((shape) => sign * normalizedCorrelation(this.#window, shape))
+		);
+		if (best < COEFFICIENT) return null;
+		// k-means parts the levels of free and taken; a pulse must end nearer to the one it leads to.
 		const [free, taken] = twoMeans(this.#levels);
-		const nearTaken = d > (free + taken) / 2;
-		if (nearTaken === this.#taken) return null;
-		this.#taken = nearTaken;
-		this.#levels = [...this.#levels.slice(-CLUSTER_EVENTS), d];
-		return { type: nearTaken ? 'arrival' : 'departure', atMs: row.atMs };
+		const nearTaken = d > free + (taken - free) * NEARER;
+		if (rise > 0 === this.#taken || nearTaken === this.#taken) return null;
+		this.#taken = rise > 0;
+		this.#levels = [...this.#levels.slice(-CLUSTER_EVENTS), this.#window[0]!, d];
+		return { type: rise > 0 ? 'arrival' : 'departure', atMs: row.atMs };
 	}
 
 	/** Holds the last value between readings: the method wants an even rate. */

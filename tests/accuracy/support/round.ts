@@ -1,10 +1,11 @@
-import { generate } from '../../../simulator/generate';
+import { generate, type Generated } from '../../../simulator/generate';
 import type { Scenario } from '../../../simulator/scenarios/types';
 import type { Facts } from '../../../simulator/truth';
 import { gradePublished } from '../published/run';
 import { judgeLooks, type JudgedLooks } from './confidence';
 import { detect, type DetectOptions } from './detect';
 import { grade, type Score } from './grade';
+import { serverTimes } from './server-times';
 
 /** One scenario with one seed: invented, detected, graded. */
 export interface Round {
@@ -17,7 +18,9 @@ export interface Round {
 	facts: Facts;
 	/** Bay codes, so that misses can be named. */
 	bays: string[];
+	/** Rows that detection took, and rows that came through once each and may move a state. */
 	rows: number;
+	rowsHeard: number;
 	generateMs: number;
 	detectMs: number;
 	voided: number;
@@ -45,6 +48,7 @@ export function runRound(scenario: Scenario, seed: number, options: RoundOptions
 		facts: generated.truth.facts,
 		bays: generated.plan.bays.map(({ code }) => code),
 		rows,
+		rowsHeard: rowsHeard(generated),
 		generateMs,
 		detectMs,
 		voided,
@@ -52,4 +56,12 @@ export function runRound(scenario: Scenario, seed: number, options: RoundOptions
 		slowBytes,
 		pulsesRefused
 	};
+}
+
+function rowsHeard(generated: Generated): number {
+	return generated.logs.reduce((sum, log, nodeIndex) => {
+		const times = serverTimes(generated, nodeIndex);
+		const counts = log.rowCount.values;
+		return sum + times.reduce((rows, ms, m) => rows + (Number.isNaN(ms) ? 0 : counts[m]!), 0);
+	}, 0);
 }
