@@ -1,4 +1,5 @@
 import type { Pipeline } from '$lib/server/ingest/pipeline';
+import type { Subscriber } from '$lib/server/ingest/subscriber-types';
 import { createSecret } from '$lib/server/secret';
 import type { Store } from '$lib/server/store/connect';
 import { Bench } from './broker';
@@ -26,6 +27,7 @@ export class IngestRun {
 	store!: Store;
 	site!: TestSite;
 	pipeline!: Pipeline;
+	subscriber!: Subscriber;
 	port!: number;
 	/** Turned to false, the disk counts as full. */
 	mayStore = true;
@@ -37,12 +39,17 @@ export class IngestRun {
 		this.site = await makeSite(this.store, createSecret(SECRET), options);
 		this.port = (await this.bench.broker()).port;
 		const keys = [...this.site.nodes.map(({ key }) => key), ...extra];
-		const subscriber = await this.bench.subscriber(this.port, keys);
+		await this.beginPipeline(keys);
+		return this;
+	}
+
+	/** The first pipeline, or the next after the one before was closed. */
+	async beginPipeline(keys = this.site.nodes.map(({ key }) => key)): Promise<void> {
+		this.subscriber = await this.bench.subscriber(this.port, keys);
 		this.pipeline = this.bench.ending(
-			await runPipeline(this.store, subscriber, createSecret(SECRET), () => this.mayStore),
+			await runPipeline(this.store, this.subscriber, createSecret(SECRET), () => this.mayStore),
 			async (p) => await p.close()
 		);
-		return this;
 	}
 
 	async end(): Promise<void> {
