@@ -164,13 +164,22 @@ export function isLate(group: Group, item: GroupItem): boolean {
 	const { atMs } = item;
 	if (item.kind === 'row' && atMs < n.fast.lastAtMs) return true;
 	if (atMs <= n.fast.decidedAtMs) return true;
-	const deciding = activity(n) > 0 || n.near.some((m) => m.slow.pending !== null);
-	if (!deciding) return false;
+	if (activity(n) === 0 && !n.near.some((m) => m.slow.pending !== null)) return false;
 	return (
-		n.near.some(
+		reachOf(n).some(
 			(m) => m.fast.lastAtMs > atMs && (m.fast.visibleAtMs > atMs || touchable(m, atMs))
 		) || n.mates.some((m) => m.fast.visibleAtMs > atMs)
 	);
+}
+
+/** Whom a decision on this node's row can touch: its neighbours, and theirs where one's step is pending. */
+function reachOf(n: Node): Node[] {
+	const reach = [n];
+	for (const m of reach) {
+		if (m !== n && m.slow.pending === null) continue;
+		for (const next of m.near) if (!reach.includes(next)) reach.push(next);
+	}
+	return reach.slice(1);
 }
 
 const TWO_READINGS = 2;
