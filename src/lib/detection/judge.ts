@@ -3,6 +3,7 @@ import { clearDoubt, doubtIt, enter, remember } from './entries';
 import { disturbanceWords, evidence, neighbourWords, spanWords, stepWords } from './evidence';
 import { atReference, fromReferenceMg, unexplainedByTempMg } from './reference';
 import { summed, touch, triple, type Group, type Node, type Step, type Triple } from './state';
+import { undoneByStep } from './settlement';
 import { addStay } from './stays';
 import { offMg, onMg, releaseMg } from './thresholds';
 import { apart, set3, size3, sumSize } from './vec';
@@ -77,7 +78,8 @@ export function judge(
 	if (n.slow.unknownWhy === 'silent' || n.slow.unknownWhy === 'clipped') {
 		believeAgain(g, n, step, step.toMs, atMs);
 	} else if (n.slow.state === 'vacant') {
-		if (isArrival(n, step)) arrive(g, n, step, overlapping, atMs);
+		if (undoneByStep(g, n, step, atMs)) depart(g, n, step, overlapping, atMs);
+		else if (isArrival(n, step)) arrive(g, n, step, overlapping, atMs);
 		else stayVacant(n, step);
 	} else if (n.slow.state === 'occupied') {
 		if (isDeparture(n, step, echoOf(n, overlapping))) depart(g, n, step, overlapping, atMs);

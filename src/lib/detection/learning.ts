@@ -1,4 +1,4 @@
-import { ask, enter } from './entries';
+import { ask, enter, lookBy } from './entries';
 import { disturbanceWords, evidence } from './evidence';
 import { capOf } from './confidence';
 import { touch, type Group, type Node, type Triple } from './state';
@@ -112,6 +112,8 @@ export function accept(g: Group, n: Node, by: string, atMs: number): string | nu
 	set3(fast.baseline, provisional ? slow.reference.fieldMg : fast.level);
 	fast.baselineTempC = fast.tempC;
 	slow.arrival = null;
+	// While learning, housekeeping had nothing to look for (nextCheckMs): it begins now.
+	lookBy(n, atMs);
 	enter(
 		g,
 		n,

@@ -1,0 +1,93 @@
+import { describe, expect, test } from 'vitest';
+import { bays, beats, drives, MIN, plus, QUIET, READY, S, Street } from './rows.fixture';
+
+/** A vehicle waiting in the aisle, felt at two bays of the row that do not hear each other: under 2 on. */
+const LOW = plus(QUIET, [0, 0, 50]);
+const LIKE = plus(QUIET, [40, 0, 20]);
+
+function row(): Street {
+	const [a, b] = bays(2);
+	return new Street([a!, { ...b!, eastM: 10 }]).commission();
+}
+
+function queueStands(street: Street, untilMin: number): void {
+	street.play(
+		drives(1, READY, QUIET, LOW, LOW),
+		drives(2, READY + 8 * S, QUIET, LIKE, LIKE),
+		...[1, 2].map((id) =>
+			beats(id, READY + 30 * S, READY + untilMin * MIN, id === 1 ? LOW : LIKE, 10 * S)
+		)
+	);
+}
+
+describe('queue in the aisle', () => {
+	test('like low levels within 20 s at one row keep the state, with confidence of 0.6 at most', () => {
+		const street = row();
+		queueStands(street, 4);
+		for (const id of [1, 2]) {
+			expect(street.moves(id)).toEqual([]);
+			expect(street.view(id).state).toBe('vacant');
+			expect(street.view(id).confidence).toBeLessThanOrEqual(0.6);
+		}
+	});
+
+	test('a queue that drives on has left no arrival', () => {
+		const street = row();
+		queueStands(street, 4);
+		const t = READY + 4 * MIN;
+		street.play(
+			drives(1, t, LOW, QUIET, QUIET),
+			drives(2, t + 4 * S, LIKE, QUIET, QUIET),
+			...[1, 2].map((id) => beats(id, t + MIN, t + 20 * MIN, QUIET))
+		);
+		for (const id of [1, 2]) expect(street.moves(id)).toEqual([]);
+	});
+
+	test('what outlasts 10 min is parked, since its own time', () => {
+		const street = row();
+		queueStands(street, 12);
+		for (const id of [1, 2]) expect(street.moves(id)).toEqual(['arrival']);
+		const said = street.entries(1).at(-1)!;
+		expect(said.atMs).toBeLessThan(READY + 3 * S);
+		expect(said.decidedAtMs).toBeGreaterThanOrEqual(READY + 10 * MIN);
+		expect(said.evidence.because.join()).toContain('stayed when the queue had moved on');
+	});
+
+	test('a level of 4 on is no queue, whatever its row does', () => {
+		const street = row();
+		const high = plus(QUIET, [60, 90, -100]);
+		street.play(
+			drives(1, READY, QUIET, high),
+			drives(2, READY + 8 * S, QUIET, LIKE, LIKE),
+			...[1, 2].map((id) =>
+				beats(id, READY + 30 * S, READY + 3 * MIN, id === 1 ? high : LIKE, 10 * S)
+			)
+		);
+		expect(street.moves(1)).toEqual(['arrival']);
+	});
+
+	test('a low level alone in its row arrives once no like step can come any more', () => {
+		const street = row();
+		street.play(
+			drives(1, READY, QUIET, LOW, LOW),
+			...[1, 2].map((id) =>
+				beats(id, READY + 10 * S, READY + 3 * MIN, id === 1 ? LOW : QUIET, 10 * S)
+			)
+		);
+		expect(street.moves(1)).toEqual(['arrival']);
+		expect(street.entries(1).at(-1)!.decidedAtMs).toBeLessThanOrEqual(READY + 90 * S);
+	});
+
+	test('steps that differ by more than a factor of 2.5 are no queue', () => {
+		const street = row();
+		const large = plus(QUIET, [100, 100, 0]);
+		street.play(
+			drives(1, READY, QUIET, LOW, LOW),
+			drives(2, READY + 8 * S, QUIET, large),
+			...[1, 2].map((id) =>
+				beats(id, READY + 30 * S, READY + 3 * MIN, id === 1 ? LOW : large, 10 * S)
+			)
+		);
+		expect(street.moves(1)).toEqual(['arrival']);
+	});
+});
