@@ -67,7 +67,10 @@ export async function readyStore(
 	await ensurePartitions(url, Date.now());
 	const store = connect(url, { connections: 2 });
 	const check = await checkSecret(store.db, createSecret(secret.current, secret.previous));
-	if (check.ok) return store;
+	if (check.ok) {
+		if (check.renewed > 0) say(`sealed ${check.renewed} values anew under the new secret`);
+		return store;
+	}
 	await store.close();
 	throw new StartProblem(check.reason);
 }

@@ -3,18 +3,31 @@ import { join } from 'node:path';
 import type { Config } from '../lib/server/config';
 import { makeKey } from '../lib/server/auth/make-key';
 import type { Database } from '../lib/server/store/connect';
+import * as installation from '../lib/server/store/queries/installation';
 import * as firstStart from '../lib/server/store/queries/first-start';
 
 import { startNode, type Child } from './processes';
 
 const KEY_NAME = 'demo simulator';
+/** Set while the demo's site is being made; gone when it is marked as the demo's. */
+const BEGUN = 'demo_begun';
 
-/** Whether this start runs the demo: 'make' on an empty installation, 'go on' with its site there. */
-export async function demoWanted(db: Database, config: Config): Promise<'make' | 'go on' | 'no'> {
+/**
+ * Whether this start runs the demo: 'make' on an empty installation, 'go on' with its site there.
+ * A demo that was begun and whose site nobody marked yet (killed in between) is made on, too.
+ */
+export async function demoWanted(
+	db: Database,
+	config: Config
+): Promise<'make' | 'make on' | 'go on' | 'no'> {
 	if (!config.demo || config.databaseUrl !== null || config.mqttUrl !== null) return 'no';
 	const sites = await firstStart.countSites(db);
-	if (sites.all === 0) return 'make';
-	return sites.demo > 0 ? 'go on' : 'no';
+	if (sites.demo > 0) return 'go on';
+	if (sites.ever === 0) {
+		await installation.overwrite(db, BEGUN, Buffer.from('1'));
+		return 'make';
+	}
+	return (await installation.read(db, BEGUN)) === null ? 'no' : 'make on';
 }
 
 /** A key for the simulator alone; the one of the former start ends. */
@@ -36,6 +49,11 @@ export interface SimulatorOptions {
 	apiUrl: string;
 	mqtt: { host: string; port: number };
 	logFile: string;
+}
+
+/** From now on a site without the mark is nobody's demo. */
+export async function demoMade(db: Database): Promise<void> {
+	await installation.remove(db, BEGUN);
 }
 
 export const demoDir = (config: Config) => join(config.dataDir, 'demo');

@@ -214,21 +214,21 @@ export class Launcher {
 		const made = admin === null ? [] : [admin];
 		if (demo === 'make') made.push(...(await demoPeople(store.db)));
 		await keepPasswords(this.config, made);
-		if (demo !== 'no') await this.#simulator(store, demo === 'make');
+		if (demo !== 'no') await this.#simulator(store, demo);
 		this.#greet(made);
 	}
 
-	async #simulator(store: Store, isNew: boolean): Promise<void> {
+	async #simulator(store: Store, demo: 'make' | 'make on' | 'go on'): Promise<void> {
 		const { config } = this;
 		const logFile = logFileOf(config.dataDir, 'simulator');
 		const scheme = config.tls === null ? 'http' : 'https';
 		const apiUrl = `${scheme}://${reachable(config.host)}:${config.port}`;
 		const mqtt = { host: reachable(config.mqtt.host), port: config.mqtt.port };
 		const options = { config, db: store.db, apiUrl, mqtt, logFile };
-		if (isNew) await forgetFormerDemo(config);
+		if (demo === 'make') await forgetFormerDemo(config);
 		const fromByte = await sizeOf(logFile);
 		await this.#supervise('simulator', 'simulator', async () => await startSimulator(options));
-		if (!isNew) {
+		if (demo === 'go on') {
 			say('demo', 'its vehicles come and go on');
 			return;
 		}

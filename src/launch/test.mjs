@@ -27,7 +27,9 @@ const PATIENCE = process.env.LODEKEEP_LONG === '1' ? 60 : 4;
 const TEST_PACKAGES = {
 	...DATABASE_PACKAGES,
 	chromium: 'chromium',
-	mosquitto_pub: 'mosquitto-clients'
+	mosquitto_pub: 'mosquitto-clients',
+	openssl: 'openssl',
+	ss: 'iproute2'
 };
 const OUT = join(ROOT, 'tests', '.out');
 

@@ -78,11 +78,25 @@ test('a connection pool outlives a database that is killed and started again', a
 	expect(await store.db.select().from(t.site)).toHaveLength(2);
 });
 
-test('a wrong secret is refused, the former one is taken as the previous', async () => {
-	const [first, second, other] = ['a', 'b', 'c'].map((letter) => letter.repeat(32));
-	expect(await checkSecret(store.db, createSecret(first!))).toEqual({ ok: true });
-	expect(await checkSecret(store.db, createSecret(first!))).toEqual({ ok: true });
-	expect(await checkSecret(store.db, createSecret(second!, first))).toEqual({ ok: true });
-	const refused = await checkSecret(store.db, createSecret(other!));
+const secretOf = (letter: string, previous?: string) =>
+	createSecret(letter.repeat(32), previous?.repeat(32));
+
+test('the secret of the first start is taken again, another is refused', async () => {
+	const unchanged = { ok: true, renewed: 0 };
+	expect(await checkSecret(store.db, secretOf('a'))).toEqual(unchanged);
+	expect(await checkSecret(store.db, secretOf('a'))).toEqual(unchanged);
+	const refused = await checkSecret(store.db, secretOf('b'));
 	expect(refused.ok ? '' : refused.reason).toContain('LODEKEEP_SECRET is not the one');
+});
+
+test('with the former secret as the previous one all keys are sealed anew, and it can go', async () => {
+	const key = Buffer.alloc(32, 9);
+	const keySealed = secretOf('a').seal('node key', 1, key);
+	await store.db.update(t.node).set({ keySealed }).where(eq(t.node.id, 1));
+	expect(await checkSecret(store.db, secretOf('b', 'a'))).toEqual({ ok: true, renewed: 1 });
+	expect(await checkSecret(store.db, secretOf('b'))).toEqual({ ok: true, renewed: 0 });
+	expect((await checkSecret(store.db, secretOf('a'))).ok).toBe(false);
+	const [node] = await store.db.select().from(t.node);
+	const opened = secretOf('b').open('node key', 1, node!.keySealed!);
+	expect(opened).toEqual({ ok: true, bytes: key, previous: false });
 });

@@ -32,10 +32,11 @@ export async function addPerson(db: Database, who: NewPerson, nowMs: number): Pr
 	return header.insertId;
 }
 
-/** Sites that are there: all, and those of the demo. */
-export async function countSites(db: Database): Promise<{ all: number; demo: number }> {
-	const rows = await db.select({ demo: site.demo }).from(site).where(isNull(site.removedAtMs));
-	return { all: rows.length, demo: rows.filter(({ demo }) => demo).length };
+/** Sites that ever were (a removed one counts: nobody wants the demo back), and living ones of the demo. */
+export async function countSites(db: Database): Promise<{ ever: number; demo: number }> {
+	const rows = await db.select({ demo: site.demo, removedAtMs: site.removedAtMs }).from(site);
+	const living = rows.filter(({ removedAtMs }) => removedAtMs === null);
+	return { ever: rows.length, demo: living.filter(({ demo }) => demo).length };
 }
 
 /** Marks a site as the demo's and lets the demo's people in. False while it is not there. */

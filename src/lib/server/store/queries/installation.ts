@@ -20,3 +20,7 @@ export async function readOrWrite(db: Database, name: string, value: Buffer): Pr
 export async function overwrite(db: Database, name: string, value: Buffer): Promise<void> {
 	await db.insert(installation).values({ name, value }).onDuplicateKeyUpdate({ set: { value } });
 }
+
+export async function remove(db: Database, name: string): Promise<void> {
+	await db.delete(installation).where(eq(installation.name, name));
+}
