@@ -23,8 +23,8 @@ test('‘your system says taken, it is empty’: from the call to the answer in 
 	const page = await office.signIn('operator');
 	const callMs = Date.now();
 	await page.keyboard.press('/');
-	await page.getByRole('combobox').fill('A-09');
-	await page.getByRole('option').first().waitFor();
+	await page.getByRole('combobox', { name: 'Bay code or serial' }).fill('A-09');
+	await page.getByRole('listbox', { name: 'Found' }).getByRole('option').first().waitFor();
 	await page.keyboard.press('Enter');
 	await page.waitForURL('**/bays/A-09');
 	await settle(page, 'I see it is free');
@@ -94,6 +94,7 @@ test('somebody sent for is seen by the other, taken by one, and only once', asyn
 	const note = await openBay(operator, 'A-05');
 	await note.getByRole('button', { name: 'Send someone' }).click();
 	const dialog = operator.getByRole('dialog');
+	await dialog.getByLabel('What is to be done there').fill('look whether the node is still there');
 	await dialog.getByRole('button', { name: 'Send someone' }).click();
 	await dialog.waitFor({ state: 'detached' });
 	await fitter.goto('/sites/tallow-yard/sent-for');
