@@ -9,6 +9,7 @@ import { median, quantile } from '../../src/lib/numeric/quantile';
 import { namedCause } from '../../src/lib/drift/decompose';
 import { applyPair, startDrift, type NodeDrift } from '../../src/lib/drift/node-drift';
 import type { Diagnosis } from '../../src/lib/drift/pairs';
+import { pairDue, type PairRule } from '../../src/lib/drift/pair-rule';
 import { driftSettings } from '../../src/lib/drift/params';
 import { closeSiteHour } from '../../src/lib/drift/site-hour';
 import type { HourParts, HourRecord } from '../../src/lib/drift/types';
@@ -42,10 +43,6 @@ const NAME: Record<Injected, string> = {
 	steel: 'steel_or_works'
 };
 
-interface Pairs {
-	calibrate: boolean;
-	diagnose: boolean;
-}
 interface Site {
 	sky: Weather;
 	sims: SimNode[];
@@ -103,7 +100,7 @@ interface HourSeen {
 function runHour(
 	site: Site,
 	h: number,
-	rule: Pairs,
+	rule: PairRule,
 	ar: { rho: number; sigmaMg: number },
 	seen: (hour: HourSeen) => void,
 	occupancy = 0.5
@@ -125,11 +122,12 @@ function runHour(
 		site.drifts[i] = drift;
 		if (parts === null) continue;
 		const trueMg = injectedMg(site.sims[i]!, h);
-		const drifting = drift.watch.driftingSinceMs !== null;
-		const sinceH = h - site.pairAtH[i]!;
-		const due =
-			(rule.diagnose && drifting && sinceH >= 6 && drift.line !== 'cause_not_known') ||
-			(rule.calibrate && !drifting && sinceH >= 7 * HOURS_A_DAY);
+		const chance = {
+			nowMs: T0 + h * HOUR_MS,
+			lastPairAtMs: T0 + site.pairAtH[i]! * HOUR_MS,
+			quiet: true
+		};
+		const due = pairDue(rule, drift, chance, SETTINGS) !== null;
 		const diagnosis = due ? pairAt(site, i, h) : null;
 		seen({ i, h, parts, wasDrifting, diagnosis, trueMg });
 	}
@@ -172,7 +170,7 @@ function benchCauses(sites: number): void {
 			inject(sim, CAUSES[i % CAUSES.length]!, Math.round((20 + 2 * i + sim.random()) * HOURS_A_DAY))
 		);
 		for (let h = 1; h < days * HOURS_A_DAY; h++) {
-			runHour(site, h, { calibrate: true, diagnose: true }, AR, (seen) => {
+			runHour(site, h, 'diagnose', AR, (seen) => {
 				const { injection } = site.sims[seen.i]!;
 				if (injection === null || done.has(seen.i)) return;
 				if (h < injection.startH) {
@@ -254,7 +252,7 @@ function benchSteps(sites: number): void {
 				if (h >= at[i]! && site.drifts[i]!.watch.driftingSinceMs !== null && !flagged.has(i))
 					flagged.set(i, h - at[i]! + 1);
 			};
-			runHour(site, h, { calibrate: true, diagnose: false }, AR, see, occupancy);
+			runHour(site, h, 'calibrate', AR, see, occupancy);
 		}
 		waits.push(...flagged.values());
 		missed += site.sims.length - flagged.size;
@@ -271,7 +269,7 @@ function benchSteps(sites: number): void {
 }
 
 /** Nothing done for a year, residuals autocorrelated: how often 'drifting' begins. */
-function benchFalse(sites: number, ar: { rho: number; sigmaMg: number }, rule: Pairs): void {
+function benchFalse(sites: number, ar: { rho: number; sigmaMg: number }, rule: PairRule): void {
 	const days = 365;
 	let begun = 0;
 	const by: Record<string, number> = {};
@@ -290,7 +288,7 @@ function benchFalse(sites: number, ar: { rho: number; sigmaMg: number }, rule: P
 		JSON.stringify({
 			bench: 'drift-false-per-node-year',
 			...ar,
-			pairs: rule.calibrate ? 'calibrate' : 'never',
+			pairs: rule,
 			nodeYears: sites * 10,
 			begun,
 			perNodeYear: +(begun / (sites * 10)).toFixed(3),
@@ -307,7 +305,7 @@ function benchCost(): void {
 	for (let day = 0; day < 700; day++) {
 		const startMs = performance.now();
 		for (let h = day * HOURS_A_DAY + 1; h <= (day + 1) * HOURS_A_DAY; h++)
-			runHour(site, h, { calibrate: true, diagnose: true }, AR, () => undefined);
+			runHour(site, h, 'diagnose', AR, () => undefined);
 		msPerDay.push(performance.now() - startMs);
 	}
 	const perHour = (from: number, to: number) =>
@@ -329,7 +327,6 @@ if (WANTED.has('causes')) benchCauses(25);
 if (WANTED.has('steps')) benchSteps(12);
 if (WANTED.has('cost')) benchCost();
 if (WANTED.has('false')) {
-	benchFalse(4, { rho: 0.9, sigmaMg: 2 }, { calibrate: true, diagnose: false });
-	benchFalse(4, { rho: 0.9, sigmaMg: 2 }, { calibrate: false, diagnose: false });
-	benchFalse(2, { rho: 0, sigmaMg: 2 }, { calibrate: false, diagnose: false });
+	for (const sigmaMg of [1, 2])
+		for (const rule of ['calibrate', 'never'] as const) benchFalse(2, { rho: 0.9, sigmaMg }, rule);
 }

@@ -21,6 +21,14 @@ export const DRIFT_PARAMS = {
 	driftingHours: param(2, 1, 24, 'h', 'one odd hour is no drift'),
 	refreshMg: param(16, 6, 60, 'mG', 'half of the usual on threshold: act before states go wrong'),
 	refreshHours: param(6, 1, 72, 'h', 'works or a storm may pass within hours'),
+	calibrateDays: param(
+		7,
+		1,
+		60,
+		'd',
+		'offsets and steel are told apart weekly at the price of a pulse'
+	),
+	diagnoseHours: param(6, 1, 72, 'h', 'a pair that told nothing tells no more within hours'),
 	tripleDenominatorC: param(
 		2,
 		1,
@@ -34,9 +42,9 @@ export const DRIFT_PARAMS = {
 	lineNodes: param(5, 3, 50, '1', 'fewer nodes cannot outvote one that moved'),
 	lineSpreadMg: param(2, 0.5, 10, 'mG', 'nodes that disagree more see no common cause'),
 	lineSpreadShare: param(
-		0.15,
-		0,
 		0.5,
+		0,
+		2,
 		'1',
 		'local steel turns frames by some degrees: a large storm scatters more'
 	),

@@ -1,7 +1,7 @@
 import { CUSUM_START, cusumSignals, cusumStep, type CusumState } from '$lib/numeric/control-chart';
 import { robustSigma } from '$lib/numeric/mad';
 import { median } from '$lib/numeric/quantile';
-import { add, subtract, ZERO, type Vec3 } from '$lib/magnetics/vector';
+import { add, ZERO, type Vec3 } from '$lib/magnetics/vector';
 import { sureMagnitude } from './decompose';
 import type { DriftSettings } from './params';
 import type { HourParts } from './types';
@@ -112,18 +112,9 @@ function cusumOver({ cusum, centre }: WatchState, settings: DriftSettings): bool
 	);
 }
 
-/** Scatter of daily medians about their own segment's median: pairs between them do not count as scatter. */
-function sigmaWithin(days: readonly DayRecord[]): Vec3 {
-	const segments = new Map<number, Vec3[]>();
-	for (const { segment, unexplainedMg } of days)
-		segments.set(segment, [...(segments.get(segment) ?? []), unexplainedMg]);
-	const off: Vec3[] = [];
-	for (const values of segments.values()) {
-		const middle = medians(values);
-		if (values.length > 1) off.push(...values.map((v) => subtract(v, middle)));
-	}
-	if (off.length === 0) return ZERO;
-	const axis = (i: 0 | 1 | 2) => robustSigma(off.map((v) => v[i]));
+/** Scatter of daily medians, by movement: it goes on over pairs, so their re-zeroing is no scatter. */
+function scatter(days: readonly DayRecord[]): Vec3 {
+	const axis = (i: 0 | 1 | 2) => robustSigma(days.map(({ movementMg }) => movementMg[i]));
 	return [axis(0), axis(1), axis(2)];
 }
 
@@ -134,7 +125,7 @@ function centreOf(days: readonly DayRecord[], wanted: number): Centre | null {
 	const alone = first.every(({ segment }) => segment === first[0]?.segment);
 	return {
 		zeroMg: alone ? medians(first.map(({ unexplainedMg }) => unexplainedMg)) : ZERO,
-		sigmaMg: sigmaWithin(first)
+		sigmaMg: scatter(first)
 	};
 }
 
