@@ -24,6 +24,7 @@ beforeAll(async () => {
 	await ensurePartitions(server.url, nowMs);
 	store = connect(server.url);
 	await seed();
+	await seedPersonal();
 	report = await keepHouse(server.url, nowMs);
 });
 
@@ -46,6 +47,9 @@ async function seed(): Promise<void> {
 		});
 		await db.insert(t.zone).values({ id, siteId: id, code: 'a', name: 'a' });
 		await db.insert(t.bay).values({ id, siteId: id, zoneId: id, code: 'a', createdAtMs: 1 });
+		await db.insert(t.bay).values({
+			...{ id: id + 10, siteId: id, zoneId: id, code: 'home', personal: true, createdAtMs: 1 }
+		});
 		await db.insert(t.node).values({
 			...{ id, serial: `NODE-${id}`, siteId: id, profileCode: 'p', createdAtMs: 1 },
 			mqttHash: Buffer.alloc(32)
@@ -66,6 +70,18 @@ async function seedRows(id: number): Promise<void> {
 		const said = { type: 'arrival', state: 'occupied', uncertaintyS: 1 } as const;
 		await store.db.insert(t.event).values({ ...both, ...said, atMs });
 		await store.db.insert(t.history).values({ bayId: id, atMs, decidedAtMs: atMs, ...said });
+	}
+}
+
+/** Events and history of the personal bay of site 2, in the change log after those of the other bay. */
+async function seedPersonal(): Promise<void> {
+	for (const [index, hours] of [500, 48, 30, 20, 2].entries()) {
+		const atMs = nowMs - hours * 3_600_000;
+		const both = { siteId: 2, id: 6 + index, bayId: 12, recordedAtMs: atMs };
+		const said = { type: 'arrival', state: 'occupied', uncertaintyS: 1 } as const;
+		await store.db.insert(t.change).values({ ...both, kind: 'event' });
+		await store.db.insert(t.event).values({ ...both, ...said, atMs });
+		await store.db.insert(t.history).values({ bayId: 12, atMs, decidedAtMs: atMs, ...said });
 	}
 }
 
@@ -100,6 +116,15 @@ test('the change log loses its oldest end, and the site says from which id it is
 test('the last history entry before the limit stays, so that the state then is known', async () => {
 	expect(await agesLeft('history', 'bay_id = 1')).toEqual([1, 39, 41, 99]);
 	expect(await agesLeft('history', 'bay_id = 2')).toEqual([1, 39, 41, 99, 103]);
+});
+
+test('events of a personal bay go after a day, their ids in the log stay', async () => {
+	expect(await agesLeft('event', 'bay_id = 12')).toEqual([0, 1]);
+	expect(await agesLeft('history', 'bay_id = 12')).toHaveLength(5);
+	const [rows] = await store.pool.query<RowDataPacket[]>(
+		'SELECT COUNT(*) AS n FROM `change` WHERE bay_id = 12'
+	);
+	expect(rows[0]?.['n']).toBe(5);
 });
 
 test('a second round finds nothing to do', async () => {

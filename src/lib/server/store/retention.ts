@@ -1,6 +1,7 @@
 import { createConnection, type Connection, type RowDataPacket } from 'mysql2/promise';
 import { CONNECTION_OPTIONS, SESSION_SQL } from './connect';
 import { DAY_MS, dropPartitions, ensurePartitions } from './partitions';
+import { PERSONAL_KEPT_MS } from './queries/events';
 
 /** Rows a delete takes: small enough to be over before a batch of ingest waits for it. */
 const SLICE_ROWS = 5_000;
@@ -8,6 +9,9 @@ const PAUSE_MS = 20;
 
 /** Kept for people to look into, not part of the record; days. */
 const KEPT_DAYS = { rejected: 90, sentMail: 30, spentTicket: 30, idempotency: 1 };
+
+/** History of a personal bay is needed as long as late rows may be replayed (14 days). */
+const REPLAY_DAYS = 15;
 
 /** How far the clocks of days are trusted: a partition goes a day after the last site let go of it. */
 const MARGIN_MS = DAY_MS;
@@ -63,7 +67,7 @@ async function purgeSite(connection: Connection, site: SiteRow, nowMs: number): 
 	const readingsMs = nowMs - site.readingDays * DAY_MS;
 	const eventsMs = nowMs - site.eventDays * DAY_MS;
 	let deleted = await purgeLog(connection, site.id, eventsMs);
-	for (const nodeId of await idsOf(connection, 'node', site.id)) {
+	for (const nodeId of await idsOf(connection, 'node WHERE site_id = ?', site.id)) {
 		deleted += await purge(connection, 'reading WHERE node_id = ? AND at_ms < ?', [
 			nodeId,
 			readingsMs
@@ -77,19 +81,37 @@ async function purgeSite(connection: Connection, site: SiteRow, nowMs: number): 
 			eventsMs
 		]);
 	}
-	for (const bayId of await idsOf(connection, 'bay', site.id))
+	for (const bayId of await idsOf(connection, 'bay WHERE site_id = ?', site.id))
 		deleted += await purgeHistory(connection, bayId, eventsMs);
+	for (const bayId of await idsOf(connection, 'bay WHERE site_id = ? AND personal', site.id))
+		deleted += await purgePersonal(connection, bayId, nowMs);
 	return deleted;
 }
 
-async function idsOf(
+/**
+ * Events of a bay tied to one household go after a day; its newest stays, the bay's state stands on
+ * it. (Readers are shown no older ones either way.)
+ */
+async function purgePersonal(
 	connection: Connection,
-	table: 'node' | 'bay',
-	siteId: number
-): Promise<number[]> {
-	const [rows] = await connection.query<IdRow[]>(`SELECT id FROM ${table} WHERE site_id = ?`, [
-		siteId
-	]);
+	bayId: number,
+	nowMs: number
+): Promise<number> {
+	const [rows] = await connection.query<IdRow[]>(
+		'SELECT MAX(id) AS id FROM event WHERE bay_id = ?',
+		[bayId]
+	);
+	const beforeMs = nowMs - PERSONAL_KEPT_MS;
+	const events = await purge(
+		connection,
+		'event WHERE bay_id = ? AND at_ms < ? AND recorded_at_ms < ? AND id <> ?',
+		[bayId, beforeMs, beforeMs, rows[0]?.id ?? 0]
+	);
+	return events + (await purgeHistory(connection, bayId, nowMs - REPLAY_DAYS * DAY_MS));
+}
+
+async function idsOf(connection: Connection, from: string, siteId: number): Promise<number[]> {
+	const [rows] = await connection.query<IdRow[]>(`SELECT id FROM ${from}`, [siteId]);
 	return rows.map(({ id }) => id);
 }
 
