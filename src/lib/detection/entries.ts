@@ -15,6 +15,9 @@ export interface Change {
 /** Two decimals are enough for people and keep stored state short. */
 const roundConfidence = (value: number): number => Math.round(value * 1000) / 1000;
 
+/** A strange field is remembered over so many entries: stored state has a limit, and outages add to them. */
+const MOST_TOLD = 12;
+
 /** Takes a change into the node's state and tells it. */
 export function enter(g: Group, n: Node, change: Change, decidedAtMs: number): void {
 	const { slow } = n;
@@ -25,11 +28,8 @@ export function enter(g: Group, n: Node, change: Change, decidedAtMs: number): v
 	if (slow.state !== change.state) slow.sinceMs = change.atMs;
 	slow.entries++;
 	if (slow.strange !== null) {
-		const { entries } = slow.strange;
-		slow.strange = {
-			...slow.strange,
-			entries: [...entries, { type: change.type, atMs: change.atMs }]
-		};
+		const entries = [...slow.strange.entries, { type: change.type, atMs: change.atMs }];
+		slow.strange = entries.length > MOST_TOLD ? null : { ...slow.strange, entries };
 	}
 	slow.state = change.state;
 	slow.confidence = confidence ?? 0;

@@ -26,13 +26,19 @@ export function stepWords(step: Step, verb: 'rose' | 'fell' | 'moved'): string {
 	return `${verb} ${size} in ${spanWords(within)}`;
 }
 
+/** More is not read, and stored state has a limit. */
+const MOST_NAMED = 2;
+
+const largest = <T extends { step: Step }>(overlapping: readonly T[]): T[] =>
+	[...overlapping].sort((a, b) => size3(b.step.j) - size3(a.step.j)).slice(0, MOST_NAMED);
+
 /** 'neighbour B07 quiet', or what it did. */
 export function neighbourWords(
 	n: Node,
 	overlapping: readonly { node: Node; step: Step }[]
 ): string[] {
 	if (n.near.length === 0) return [];
-	const moved = overlapping.map(
+	const moved = largest(overlapping).map(
 		({ node, step }) => `neighbour ${named(node.id)} moved ${mg(size3(step.j))} at the same time`
 	);
 	const quiet = n.near.filter((m) => overlapping.every((o) => o.node !== m));

@@ -13,6 +13,8 @@ const KEYS: readonly string[] =
 	checkAfterMs step deadlineMs learnedAtMs fieldMg sigmaMg tempC offsetMg readings`.split(/\s+/);
 const KEY_INDEX = new Map(KEYS.map((key, index) => [key, index]));
 const OTHER_KEY = 255;
+/** Strings that can be named again by one byte. */
+const MOST_SAID = 255;
 
 const TAG = {
 	null: 0,
@@ -24,12 +26,15 @@ const TAG = {
 	string: 6,
 	array: 7,
 	object: 8,
-	time: 9
+	time: 9,
+	again: 10
 } as const;
 
 class Writer {
 	private bytes = new Uint8Array(1024);
 	private length = 0;
+	/** Strings so far: evidence and kinds repeat themselves. */
+	private readonly said = new Map<string, number>();
 
 	private room(n: number): DataView {
 		if (this.length + n > this.bytes.length) {
@@ -76,14 +81,24 @@ class Writer {
 		if (v === null || v === undefined) this.byte(TAG.null);
 		else if (typeof v === 'boolean') this.byte(v ? TAG.true : TAG.false);
 		else if (typeof v === 'number') this.number(v);
-		else if (typeof v === 'string') {
-			this.byte(TAG.string);
-			this.text(v);
-		} else if (Array.isArray(v)) {
+		else if (typeof v === 'string') this.string(v);
+		else if (Array.isArray(v)) {
 			this.byte(TAG.array);
 			this.room(2).setUint16(0, v.length, true);
 			for (const item of v) this.value(item);
 		} else this.object(v);
+	}
+
+	private string(v: string): void {
+		const before = this.said.get(v);
+		if (before !== undefined) {
+			this.byte(TAG.again);
+			this.byte(before);
+			return;
+		}
+		if (this.said.size < MOST_SAID) this.said.set(v, this.said.size);
+		this.byte(TAG.string);
+		this.text(v);
 	}
 
 	private object(v: object): void {
@@ -106,6 +121,7 @@ class Writer {
 class Reader {
 	private at = 0;
 	private readonly view: DataView;
+	private readonly said: string[] = [];
 
 	constructor(private readonly bytes: Uint8Array) {
 		this.view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
@@ -146,8 +162,13 @@ class Reader {
 				return this.view.getFloat64(this.skip(8), true);
 			case TAG.time:
 				return this.time();
-			case TAG.string:
-				return this.text();
+			case TAG.string: {
+				const text = this.text();
+				if (!this.said.includes(text)) this.said.push(text);
+				return text;
+			}
+			case TAG.again:
+				return this.said[this.view.getUint8(this.skip(1))] ?? '';
 			case TAG.array: {
 				const length = this.view.getUint16(this.skip(2), true);
 				return Array.from({ length }, () => this.value());

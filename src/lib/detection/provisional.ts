@@ -9,7 +9,7 @@ import { set3, size3, sumSize } from './vec';
 const VEHICLE_ON = 2;
 /** A vehicle's leaving repeats its coming within this share. */
 const SAME_SHARE = 0.15;
-const MOST_MOVES = 12;
+const MOST_MOVES = 8;
 
 const doubtful = (n: Node): boolean =>
 	n.slow.reference?.provisional === true && n.slow.returns === 0;
