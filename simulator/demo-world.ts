@@ -86,7 +86,7 @@ export function extendTo(demo: DemoWorld, toMs: number): Stay[] {
 /** Vehicles that only drive past, by day. */
 function addDayOfTraffic(demo: DemoWorld, fromMs: number): void {
 	const { world, seed } = demo;
-	const mix = { perHour: 0, lowMg: 1.5, highMg: 14, speedMPerS: [3, 8] as const };
+	const mix = { perHour: 0, lowMg: 1.5, highMg: 9, speedMPerS: [3, 8] as const };
 	for (const lane of world.plan.lanes) {
 		const rng = random(seed, 'traffic', lane.row, fromMs);
 		const nodes = laneNodesNedM(world, lane);
