@@ -1,3 +1,4 @@
+import type { IClientOptions } from 'mqtt';
 import type { Pipeline } from '$lib/server/ingest/pipeline';
 import type { Subscriber } from '$lib/server/ingest/subscriber-types';
 import { createSecret } from '$lib/server/secret';
@@ -82,16 +83,23 @@ export class IngestRun {
 		return rows.map(({ outcome }) => outcome ?? '');
 	}
 
-	async client(node: Pick<TestNode, 'serial' | 'key'>): Promise<MqttNode> {
+	async client(
+		node: Pick<TestNode, 'serial' | 'key'>,
+		options: IClientOptions = {}
+	): Promise<MqttNode> {
 		// The promise is kept: two connections of one serial would push each other out for ever.
 		let client = this.#clients.get(node.serial);
-		if (client === undefined) this.#clients.set(node.serial, (client = this.#connect(node)));
+		if (client === undefined)
+			this.#clients.set(node.serial, (client = this.#connect(node, options)));
 		return await client;
 	}
 
-	async #connect(node: Pick<TestNode, 'serial' | 'key'>): Promise<MqttNode> {
+	async #connect(
+		node: Pick<TestNode, 'serial' | 'key'>,
+		options: IClientOptions
+	): Promise<MqttNode> {
 		return this.bench.ending(
-			await MqttNode.connect(this.port, node.key),
+			await MqttNode.connect(this.port, node.key, options),
 			async (c) => await c.end()
 		);
 	}

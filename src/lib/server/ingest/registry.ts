@@ -86,6 +86,18 @@ export class Registry {
 		await this.#loadShown(sql, all.filter(wanted));
 	}
 
+	/** The habit that a node said it keeps, once that is stored. */
+	adoptHabit(id: number, habit: { periodS?: number; deltaMg?: number }): void {
+		const entry = this.#byId.get(id);
+		if (entry === undefined) return;
+		const { config } = entry;
+		entry.config = {
+			...config,
+			periodS: habit.periodS ?? config.periodS,
+			deltaMg: habit.deltaMg ?? config.deltaMg
+		};
+	}
+
 	byId(id: number): NodeEntry | undefined {
 		return this.#byId.get(id);
 	}
@@ -180,7 +192,8 @@ export class Registry {
 				sensitivityTempcoPerC: profile.sensitivityTempcoPerC,
 				filmSafeMg: profile.filmSafeMg
 			},
-			periodS: row.periodS,
+			// The usual period, not the one in force: a replay must find what live ingest found.
+			periodS: row.usualPeriodS,
 			graceS: row.graceS,
 			params: {
 				...this.#overrides.get(`site:${row.siteId}`),

@@ -15,7 +15,10 @@ const DELTA_SIGMAS = 8;
 export const deltaFor = (sigmaMg: number | null): number =>
 	Math.max(LEAST_DELTA_MG, Math.ceil(DELTA_SIGMAS * (sigmaMg ?? 0)));
 
-/** Outcomes that are neither entered nor voided history. A replay asks nothing of nodes. */
+/**
+ * Outcomes that are neither entered nor voided history. A replay asks nothing of nodes that live ingest
+ * has asked before; only the usual habit is put back again, since that does no harm twice.
+ */
 export function takeAside(
 	registry: Registry,
 	work: Work,
@@ -36,7 +39,8 @@ export function takeAside(
 			work.actsDone.set(outcome.actId, outcome.ok ? 'done' : (outcome.why ?? 'refused'));
 			break;
 		case 'ask':
-			if (live && work.nowMs - outcome.atMs <= ASK_AGE_MS) ask(registry, work, outcome);
+			if (work.nowMs - outcome.atMs > ASK_AGE_MS) break;
+			if (live || outcome.verb === 'report_habit') ask(registry, work, outcome);
 	}
 }
 

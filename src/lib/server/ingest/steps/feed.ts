@@ -8,6 +8,8 @@ import { firstDiffering } from '../order';
 export interface SiteNews {
 	events: { event: changes.NewEvent; told: (eventId: number) => void }[];
 	shown: { entry: NodeEntry; now: ingest.ShownRow; change: 'bay' | 'condition' }[];
+	/** What bays show already, for those of which nothing changes. */
+	states?: ReadonlyMap<number, ingest.ShownRow['state']>;
 	/** Changes without rows of their own (closures). */
 	other: changes.NewChange[];
 }
@@ -73,5 +75,6 @@ async function writeSite(
 function stateOfVoids(site: SiteNews, events: SiteNews['events']): void {
 	const now = new Map(site.shown.map(({ now: row }) => [row.bayId, row.state]));
 	for (const { event } of events)
-		if (event.type === 'voided') event.state = now.get(event.bayId) ?? event.state;
+		if (event.type === 'voided')
+			event.state = now.get(event.bayId) ?? site.states?.get(event.bayId) ?? event.state;
 }

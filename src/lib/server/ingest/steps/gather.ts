@@ -120,11 +120,17 @@ function takePulse(checked: CheckedMessage, pulse: PulseRow, work: Work): Queued
 	return [queuedOf(checked, pulseItem(pulse, checked.entry.config.profile), 0)];
 }
 
+/** Whatever it says: the node is not silent. Whether its state is known again, its rows tell. */
+function noteHeard(entry: NodeEntry, arrivedAtMs: number, work: Work): void {
+	entry.live.heardAtMs = Math.max(entry.live.heardAtMs ?? 0, arrivedAtMs);
+	entry.live.silence.silent = false;
+	work.touched.add(entry);
+}
+
 /** Arrival, battery, signal, clock, counters: what the message tells beside its field. */
 function noteNode({ message, entry, frame, time }: CheckedMessage, work: Work): void {
 	const { live } = entry;
-	work.touched.add(entry);
-	live.heardAtMs = Math.max(live.heardAtMs ?? 0, message.arrivedAtMs);
+	noteHeard(entry, message.arrivedAtMs, work);
 	if ('batteryMv' in frame && frame.batteryMv !== null) live.batteryMv = frame.batteryMv;
 	if (frame.rssiDbm !== null) live.rssiDbm = frame.rssiDbm;
 	if (time.clockOff !== null) setMark(entry, MARK.clockOff, time.clockOff);
@@ -179,7 +185,6 @@ function noteFacts(entry: NodeEntry, frame: UpFrame, work: Work): void {
 
 /** A duplicate was heard all the same. */
 export function noteDuplicate({ message, entry }: FrameMessage, work: Work): void {
-	entry.live.heardAtMs = Math.max(entry.live.heardAtMs ?? 0, message.arrivedAtMs);
-	work.touched.add(entry);
+	noteHeard(entry, message.arrivedAtMs, work);
 	dayOf(work.counts, entry.id, message.arrivedAtMs).duplicates += 1;
 }

@@ -141,10 +141,15 @@ const fastRow = ({ id, live }: NodeEntry, state: Uint8Array): nodeState.FastRow 
 
 /** Events, then what the bays show, by site. */
 function newsOf(work: Work, hosts: Hosts): Map<number, SiteNews> {
+	const states = new Map(
+		[...work.touched].flatMap(({ live }) =>
+			live.shown === null ? [] : [[live.shown.bayId, live.shown.state] as const]
+		)
+	);
 	const news = new Map<number, SiteNews>();
 	const of = (siteId: number): SiteNews => {
 		let site = news.get(siteId);
-		if (site === undefined) news.set(siteId, (site = { events: [], shown: [], other: [] }));
+		if (site === undefined) news.set(siteId, (site = { events: [], shown: [], other: [], states }));
 		return site;
 	};
 	for (const { siteId, event, told } of work.loose)
