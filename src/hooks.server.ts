@@ -135,10 +135,15 @@ async function originsOfKeys(app: Instance): Promise<ReadonlySet<string>> {
 }
 
 function refuse(api: boolean, status: number, detail: string): Response {
-	if (api) return problemResponse(problem(status, detail));
+	const headers: Record<string, string> = status === 503 ? { 'retry-after': '5' } : {};
+	if (api) return problemResponse(problem(status, detail, { headers }));
 	return new Response(detail, {
 		status,
-		headers: { 'content-type': 'text/plain; charset=utf-8', 'cache-control': 'no-store' }
+		headers: {
+			...headers,
+			'content-type': 'text/plain; charset=utf-8',
+			'cache-control': 'no-store'
+		}
 	});
 }
 

@@ -3,7 +3,9 @@ import { createSecret } from '$lib/server/secret';
 import { enqueueMail } from '$lib/server/outbox/enqueue';
 import * as people from '$lib/server/store/queries/people';
 import * as tickets from '$lib/server/store/queries/tickets';
+import { tellOfOwnerless } from '$lib/server/auth/ownerless';
 import { newTicket } from '$lib/server/auth/ticket';
+import { createLog } from '$lib/server/log';
 import { TEST_SECRET, type TestApp } from '../support/app';
 import { openRoom, type Room } from '../support/api-room';
 import { openMailBox, type MailBox } from '../support/mail';
@@ -378,6 +380,23 @@ describe('mail with one-time links', () => {
 		await new Promise((go) => setTimeout(go, 2_500));
 		expect(box.mails.some((m) => m.subject === 'Demo')).toBe(false);
 	});
+});
+
+test('when the maker of a key leaves, the key works on and each admin is told once', async () => {
+	const { db } = room.store;
+	const ask = room.app.withKey(
+		await room.key({ name: 'display', makerId: room.seeded.people.maintenance })
+	);
+	await people.switchOff(db, room.seeded.people.maintenance, Date.now());
+	const secret = createSecret(TEST_SECRET);
+	const log = createLog({ part: 'test', level: 'silent' });
+	const parts = { db, secret, log, wake: () => undefined };
+	for (let i = 0; i < 2; i++) await tellOfOwnerless(parts, Date.now());
+	const { admin } = room.seeded.emails;
+	expect((await box.next(admin, 'without an owner')).text).toContain("'display'");
+	await new Promise((go) => setTimeout(go, 300));
+	expect(box.mails.filter((m) => m.subject?.includes('display'))).toHaveLength(1);
+	expect((await ask('/api/v1/self')).status).toBe(200);
 });
 
 describe('headers', () => {

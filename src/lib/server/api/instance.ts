@@ -1,6 +1,7 @@
 import type { NodeView } from '$lib/detection/types';
 import { Devices, Sessions } from '$lib/server/auth/session';
 import { LiveDirectory } from '$lib/server/auth/directory';
+import { watchOwnerless } from '$lib/server/auth/ownerless';
 import { Throttle } from '$lib/server/auth/throttle';
 import { requireConfig, type Config } from '$lib/server/config';
 import { createLog, type Log } from '$lib/server/log';
@@ -79,6 +80,7 @@ function create(config: Config): Instance {
 		.filter((text) => text !== null)
 		.map((text) => createSecret(text).derive('session').toString('hex'));
 	const sender = startSender({ db: store.db, secret, log, config });
+	const ownerless = watchOwnerless({ db: store.db, secret, log, wake: sender.wake });
 	const upkeep = startUpkeep(databaseUrl, log);
 	const supervisor = startSupervisor({ config, store, secret, log });
 	return {
@@ -100,7 +102,7 @@ function create(config: Config): Instance {
 		ingest: () => supervisor.status(),
 		secureCookies,
 		close: async () => {
-			const parts = { supervisor, sender, upkeep, store };
+			const parts = { supervisor, ownerless, sender, upkeep, store };
 			for (const [part, running] of Object.entries(parts)) {
 				log.debug({ closing: part }, 'ends');
 				await running.close();

@@ -13,7 +13,7 @@ const AT_ONCE = 10;
 
 export interface Sender {
 	/** Something was enqueued: look now. */
-	wake(): void;
+	readonly wake: () => void;
 	/** Lets the mail on its way finish. */
 	close(): Promise<void>;
 }

@@ -156,7 +156,7 @@ export async function setPassword(db: Db, id: number, passwordHash: string): Pro
 /** People who administer: told when a key's maker leaves. */
 export async function admins(db: Db) {
 	return await db
-		.select({ id: person.id, email: person.email, name: person.name })
+		.select({ id: person.id, email: person.email, name: person.name, demo: person.demo })
 		.from(person)
 		.where(and(eq(person.role, 'admin'), isNull(person.switchedOffAtMs)));
 }
