@@ -1,3 +1,5 @@
+import { median } from 'simple-statistics';
+import { robustSigma } from '$lib/numeric/mad';
 import { ask, enter, lookBy } from './entries';
 import { disturbanceWords, evidence } from './evidence';
 import { capOf } from './confidence';
@@ -9,28 +11,17 @@ import { apart, axisApart, set3 } from './vec';
 const WINDOW = 64;
 /** Readings of a burst would fill the window within seconds. */
 const APART_MS = 1900;
-const MAD_TO_SIGMA = 1.4826;
 /** The last readings must lie this near the median, else something has just driven up. */
 const LAST_AGREE = 3;
 const MS_PER_S = 1000;
 
-function medianOf(values: number[]): number {
-	const sorted = values.slice().sort((a, b) => a - b);
-	const mid = sorted.length >> 1;
-	const high = sorted[mid] ?? NaN;
-	return sorted.length % 2 === 1 ? high : ((sorted[mid - 1] ?? NaN) + high) / 2;
-}
-
 const axis = (window: readonly number[], i: number): number[] =>
 	window.filter((_, k) => k % 3 === i);
-
-const mad = (values: number[], centre: number): number =>
-	medianOf(values.map((v) => Math.abs(v - centre)));
 
 /** σ from successive differences: slow drift within the window does not count as noise. */
 function noiseOf(values: number[]): number {
 	const differences = values.slice(1).map((v, i) => Math.abs(v - (values[i] ?? v)));
-	return medianOf(differences);
+	return median(differences);
 }
 
 /** Takes a reading into the learning window; learns when it is long, still and quiet enough. */
@@ -48,14 +39,14 @@ export function learn(g: Group, n: Node, atMs: number): void {
 	const spanMs = atMs - (slow.windowAtMs[0] ?? atMs);
 	if (count < params.learnReadings || spanMs < params.learnS * MS_PER_S) return;
 	const axes = [0, 1, 2].map((i) => axis(slow.window, i));
-	const median = axes.map(medianOf) as Triple;
-	const sigmas = axes.map((values, i) => MAD_TO_SIGMA * mad(values, median[i] ?? NaN));
+	const centre = axes.map(median) as Triple;
+	const sigmas = axes.map(robustSigma);
 	const sigma = Math.max(...sigmas);
-	if (sigma > params.learnSigmaMg || !endsAt(slow.window, median, params.learnSigmaMg)) return;
+	if (sigma > params.learnSigmaMg || !endsAt(slow.window, centre, params.learnSigmaMg)) return;
 	fast.noise[0] = noiseOf(axes[0] ?? []);
 	fast.noise[1] = noiseOf(axes[1] ?? []);
 	fast.noise[2] = noiseOf(axes[2] ?? []);
-	finish(g, n, median, sigma, count, atMs);
+	finish(g, n, centre, sigma, count, atMs);
 }
 
 function endsAt(window: readonly number[], median: Triple, sigmaMg: number): boolean {

@@ -14,7 +14,10 @@ export interface Arrived {
 }
 
 /** Time, then node; within a node as it came. */
-const earlier = (a: GroupItem, b: GroupItem): number => a.atMs - b.atMs || a.nodeId - b.nodeId;
+const earlier = (
+	a: Pick<GroupItem, 'atMs' | 'nodeId'>,
+	b: Pick<GroupItem, 'atMs' | 'nodeId'>
+): number => (a.atMs === b.atMs ? a.nodeId - b.nodeId : a.atMs - b.atMs);
 export const sorted = (items: readonly GroupItem[]): GroupItem[] => [...items].sort(earlier);
 
 interface Snapshot {
@@ -112,7 +115,7 @@ export function streetLife(
 	const readings: Reading[] = members.flatMap((m, i) =>
 		beats(m.nodeId, T0 + 2000 + 37 * i, T0 + 180_000, [...quiet[i]!], 2000)
 	);
-	const taken = members.map(() => false);
+	const taken: boolean[] = members.map(() => false);
 	let atMs = startMs;
 	const phases = members.map((_, i) => 7000 + 13_000 * i + 100 * pick(50));
 	const beatTo = (untilMs: number, fromMs: number) => {
@@ -124,12 +127,13 @@ export function streetLife(
 	let beatFrom = T0 + 180_000;
 	while (atMs < startMs + minutes * 60_000) {
 		beatTo(atMs, beatFrom);
-		const movers = pick(4) === 0 ? [pick(3), pick(3)] : [pick(3)];
+		const movers = pick(4) < 1 ? [pick(3), pick(3)] : [pick(3)];
 		for (const [k, i] of [...new Set(movers)].entries()) {
-			const size = times([90 + 10 * pick(20), -40 + 15 * pick(9), 60], taken[i]! ? -1 : 1);
+			const size = times([90 + 10 * pick(20), -40 + 15 * pick(9), 60], taken[i] === true ? -1 : 1);
 			const from = levels[i]!;
-			const to = taken[i]! ? plus([...quiet[i]!], [next(), next(), next()]) : plus(from, size);
-			taken[i] = !taken[i];
+			const to =
+				taken[i] === true ? plus([...quiet[i]!], [next(), next(), next()]) : plus(from, size);
+			taken[i] = taken[i] !== true;
 			levels[i] = to;
 			const onset = atMs + k * 700 + 10 * pick(90);
 			readings.push(...drives(i + 1, onset, from, to).filter(() => pick(9) !== 0));
@@ -145,7 +149,7 @@ export function streetLife(
 		atMs += 45_000 + 1000 * pick(200);
 	}
 	beatTo(atMs, beatFrom);
-	const byTime = readings.sort((a, b) => a.atMs - b.atMs || a.nodeId - b.nodeId);
+	const byTime = readings.sort(earlier);
 	const lastOf = new Map<number, number>();
 	const rows = byTime.flatMap((r, seq): GroupItem[] => {
 		if (r.atMs <= (lastOf.get(r.nodeId) ?? 0)) return [];

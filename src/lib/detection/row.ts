@@ -33,13 +33,14 @@ export function takeRow(g: Group, n: Node, row: RowItem): void {
 		fast.lastAtMs = atMs;
 		return;
 	}
-	const [o0, o1, o2] = slow.offset ?? ZERO;
 	const p = row.polarity;
 	fast.polarity = p;
-	const { last, signs } = { last: fast.last, signs: slow.signs };
-	const x = Math.fround(p * signs[0] * (row.rawMg[0] - o0));
-	const y = Math.fround(p * signs[1] * (row.rawMg[1] - o1));
-	const z = Math.fround(p * signs[2] * (row.rawMg[2] - o2));
+	const offset = slow.offset ?? ZERO;
+	const { last } = fast;
+	const { signs } = slow;
+	const x = Math.fround(p * signs[0] * (row.rawMg[0] - offset[0]));
+	const y = Math.fround(p * signs[1] * (row.rawMg[1] - offset[1]));
+	const z = Math.fround(p * signs[2] * (row.rawMg[2] - offset[2]));
 	const dx = x - last[0];
 	const dy = y - last[1];
 	const dz = z - last[2];
