@@ -2,7 +2,7 @@ import type uPlot from 'uplot';
 import type { Curve, PlotEvent, Threshold } from './plot-types';
 
 interface Wanted {
-	style: CSSStyleDeclaration;
+	inks: PlotInks;
 	size: { width: number; height: number };
 	curves: readonly Curve[];
 	thresholds: readonly Threshold[];
@@ -16,6 +16,21 @@ interface Wanted {
 	oncursor: (index: number | null) => void;
 }
 
+export interface PlotInks {
+	ink: string;
+	faint: string;
+	hair: string;
+	hatch: string;
+}
+/** Ink on white. */
+export const PRINT_INKS: PlotInks = { ink: '#000', faint: '#333', hair: '#aaa', hatch: '#777' };
+
+/** The inks of the theme in force. */
+export function inksOf(style: CSSStyleDeclaration): PlotInks {
+	const ink = (name: string) => style.getPropertyValue(`--${name}`).trim();
+	return { ink: ink('ink'), faint: ink('ink-2'), hair: ink('hair'), hatch: ink('hatch') };
+}
+
 const LETTER = "11px 'JetBrains Mono', monospace";
 /** Dash-dot, as drafting draws limits. */
 const DASH_DOT = [10, 3, 2, 3];
@@ -26,9 +41,7 @@ export function plotOptions(wanted: Wanted): {
 	options: uPlot.Options;
 	dataOf: (timesS: readonly number[]) => uPlot.AlignedData;
 } {
-	const { style, size, curves, range } = wanted;
-	const ink = (name: string) => style.getPropertyValue(`--${name}`).trim();
-	const inks = { ink: ink('ink'), faint: ink('ink-2'), hair: ink('hair'), hatch: ink('hatch') };
+	const { inks, size, curves, range } = wanted;
 	const bands: uPlot.Band[] = [];
 	const series: uPlot.Series[] = [{}];
 	const columns: (readonly (number | null)[])[] = [];
@@ -46,7 +59,10 @@ export function plotOptions(wanted: Wanted): {
 		series.push({ stroke: 'transparent', points: { show: false } });
 		series.push({ stroke: 'transparent', points: { show: false } });
 		columns.push(curve.band.max, curve.band.min);
-		bands.push({ series: [series.length - 2, series.length - 1], fill: `${inks.hatch}55` });
+		bands.push({
+			series: [series.length - 2, series.length - 1],
+			fill: `color-mix(in srgb, ${inks.hatch} 33%, transparent)`
+		});
 	}
 	const options: uPlot.Options = {
 		...size,
