@@ -8,10 +8,16 @@ const ROWS_A_STATE = 160;
 const STEP_MS = 250;
 
 /** Signed messages of one row each, as whole PUBLISH packets, made before the clock runs. */
-export function signedPackets(node: TestNode, firstSeq: number, startMs: number, count: number) {
+export function signedPackets(
+	node: TestNode,
+	firstSeq: number,
+	startMs: number,
+	count: number,
+	rowsAState = ROWS_A_STATE
+) {
 	const topic = `lodekeep/1/${node.serial}/up/reading`;
 	return Array.from({ length: count }, (_, i) => {
-		const counts = noisy(Math.floor(i / ROWS_A_STATE) % 2 === 0 ? QUIET : TAKEN, i);
+		const counts = noisy(Math.floor(i / rowsAState) % 2 === 0 ? QUIET : TAKEN, i);
 		const frame = reading({ seq: firstSeq + i, t: startMs + i * STEP_MS, rows: [[0, counts]] });
 		return mqttPacket.generate({
 			cmd: 'publish',

@@ -60,7 +60,10 @@ export function placeInTime(message: TimedMessage, skew: SkewWindow): MessageTim
 	return {
 		baseMs,
 		flags: (off ? FLAG.shifted : 0) | (old ? FLAG.unmoving : 0),
-		// Only a node that tells when it sent can be cleared of the mark while it repeats a backlog.
-		clockOff: off
+		clockOff: least === null ? goodIfRecent(message, baseMs) : off
 	};
 }
+
+/** Without key 23 only a row about as old as its arrival clears a clock: a backlog says nothing of it. */
+const goodIfRecent = (message: TimedMessage, baseMs: number): false | null =>
+	baseMs + message.lastDtMs > message.arrivedAtMs - CLOCK.skewMs ? false : null;

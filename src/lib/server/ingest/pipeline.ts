@@ -208,8 +208,7 @@ class RunningPipeline implements Pipeline {
 	async #attempt(batch: Batch, touched: Touched) {
 		const work = await runBatch(this.room, batch, touched, Date.now());
 		this.room.seen.trim(touched.nodeIds);
-		for (const facts of work.facts.values())
-			this.room.registry.adoptHabit(facts.nodeId, facts);
+		for (const facts of work.facts.values()) this.room.registry.adoptHabit(facts.nodeId, facts);
 		await afterActs(this.room, batch.acts);
 		return work;
 	}
