@@ -27,7 +27,12 @@ function column(vectors: readonly Vec3[], of: (values: number[]) => number): Vec
 	return [axis(0), axis(1), axis(2)];
 }
 
-function agreement(vectors: readonly Vec3[]): { changeMg: Vec3; spreadMg: number } {
+interface Agreement {
+	changeMg: Vec3;
+	spreadMg: number;
+}
+
+function agreement(vectors: readonly Vec3[]): Agreement {
 	return {
 		changeMg: column(vectors, median),
 		spreadMg: Math.max(...column(vectors, robustSigma))
@@ -44,19 +49,17 @@ export function siteLine(votes: readonly LineVote[], settings: DriftSettings): S
 	const nodes = votes.length;
 	if (nodes < settings.lineNodes)
 		return { verdict: 'few_nodes', changeMg: ZERO, spreadMg: null, nodes };
-	const tries = [
-		() => votes.map(({ residualMg }) => residualMg),
-		() => votes.map(({ residualMg, ownMg }) => subtract(residualMg, ownMg))
-	];
-	let spreadMg = Infinity;
-	for (const vectors of tries) {
-		const found = agreement(vectors());
-		spreadMg = Math.min(spreadMg, found.spreadMg);
-		const sizeMg = magnitude(found.changeMg);
-		const common =
-			found.spreadMg <= Math.max(settings.lineSpreadMg, settings.lineSpreadShare * sizeMg);
-		if (common && sizeMg <= settings.lineLimitMg) return { verdict: 'known', ...found, nodes };
-		if (common) break;
-	}
-	return { verdict: 'cause_not_known', changeMg: ZERO, spreadMg, nodes };
+	const plain = agreement(votes.map(({ residualMg }) => residualMg));
+	const found = plain.spreadMg <= settings.lineSpreadMg ? plain : closer(plain, votes);
+	const sizeMg = magnitude(found.changeMg);
+	const allowedMg = Math.max(settings.lineSpreadMg, settings.lineSpreadShare * sizeMg);
+	if (found.spreadMg <= allowedMg && sizeMg <= settings.lineLimitMg)
+		return { verdict: 'known', ...found, nodes };
+	return { verdict: 'cause_not_known', changeMg: ZERO, spreadMg: found.spreadMg, nodes };
+}
+
+/** The same less what each node has had for a week, if they agree better so. */
+function closer(plain: Agreement, votes: readonly LineVote[]): Agreement {
+	const own = agreement(votes.map(({ residualMg, ownMg }) => subtract(residualMg, ownMg)));
+	return own.spreadMg < plain.spreadMg ? own : plain;
 }

@@ -42,6 +42,8 @@ const DAY_MS = 86_400_000;
 const MEDIAN_FACTOR = Math.sqrt(Math.PI / 2);
 /** Hours of one day share their weather: about this many count as one. */
 const HOURS_PER_LOOK = 4;
+/** Triples reach back into the day before, so days that follow each other share half of what they say. */
+const DAYS_PER_LOOK = 2;
 const MIN_DAYS_FOR_SPREAD = 4;
 /** No slope is known better than this: the axes are not exactly linear. */
 const LEAST_ERROR_PER_C = 0.004;
@@ -129,7 +131,9 @@ export function slopeOf(state: SlopeState, settings: DriftSettings): Slope | nul
 	if (all.triples < settings.minTriples) return null;
 	const byDay = days.length >= MIN_DAYS_FOR_SPREAD;
 	const parts = byDay || state.hours.length < 2 ? days : state.hours;
-	const looks = byDay ? effective(days) : Math.max(1, parts.length / HOURS_PER_LOOK);
+	const looks = byDay
+		? effective(days) / DAYS_PER_LOOK
+		: Math.max(1, parts.length / HOURS_PER_LOOK);
 	const error = (i: 0 | 1 | 2) =>
 		spreadError(
 			parts.map(({ perC }) => perC[i]),
