@@ -1,9 +1,10 @@
-import { afterAll, beforeAll, describe, expect, test } from 'vitest';
+import { afterAll, beforeAll, describe, expect, test, vi } from 'vitest';
 import { createSecret } from '$lib/server/secret';
 import { enqueueMail } from '$lib/server/outbox/enqueue';
 import * as people from '$lib/server/store/queries/people';
 import * as tickets from '$lib/server/store/queries/tickets';
 import { tellOfOwnerless } from '$lib/server/auth/ownerless';
+import { Sessions } from '$lib/server/auth/session';
 import { newTicket } from '$lib/server/auth/ticket';
 import { createLog } from '$lib/server/log';
 import { TEST_SECRET, type TestApp } from '../support/app';
@@ -96,6 +97,27 @@ describe('signing in', () => {
 		expect(first.headers['set-cookie']).toBeUndefined();
 		expect(again.headers['set-cookie']).toBeUndefined();
 	});
+});
+
+test('a session in use is renewed on a page load once a day, and never by polling', async () => {
+	const session = createSecret(TEST_SECRET).derive('session').toString('hex');
+	const sessions = new Sessions({ secrets: [session], secure: false });
+	const [row] = await people
+		.reachRows(room.store.db)
+		.then((rows) => rows.people.filter((p) => p.id === room.seeded.people.admin));
+	vi.useFakeTimers({ toFake: ['Date'], now: Date.now() - 2 * 86_400_000 });
+	const old = await sessions.issue(row!.id, row!.sessionVersion);
+	vi.useRealTimers();
+	const cookie = `lodekeep-session=${old}`;
+	const polled = await room.app.ask('/api/v1/self', { headers: { cookie } });
+	expect(polled.status).toBe(200);
+	expect(polled.headers['set-cookie']).toBeUndefined();
+	const page = await room.app.ask('/sites', { headers: { cookie, accept: 'text/html' } });
+	const fresh = page.cookies['lodekeep-session'];
+	expect(fresh).toBeDefined();
+	expect(fresh).not.toBe(old);
+	const again = { cookie: `lodekeep-session=${fresh}`, accept: 'text/html' };
+	expect((await room.app.ask('/sites', { headers: again })).cookies).toEqual({});
 });
 
 const signedIn = async (who: keyof Room['seeded']['emails']) =>
@@ -395,7 +417,7 @@ test('when the maker of a key leaves, the key works on and each admin is told on
 	const { admin } = room.seeded.emails;
 	expect((await box.next(admin, 'without an owner')).text).toContain("'display'");
 	await new Promise((go) => setTimeout(go, 300));
-	expect(box.mails.filter((m) => m.subject?.includes('display'))).toHaveLength(1);
+	expect(box.mails.filter((m) => m.subject?.includes('display') === true)).toHaveLength(1);
 	expect((await ask('/api/v1/self')).status).toBe(200);
 });
 

@@ -75,7 +75,10 @@ function create(config: Config): Instance {
 	const store = connect(databaseUrl);
 	const secretText = required(config.secret, 'LODEKEEP_SECRET');
 	const secret = createSecret(secretText, config.secretPrevious);
-	const secureCookies = config.origin?.startsWith('https:') ?? config.tls !== null;
+	// Without ORIGIN a header that tells the scheme means a proxy that ends TLS.
+	const secureCookies =
+		config.origin?.startsWith('https:') ??
+		(config.tls !== null || config.proxy.protocolHeader !== null);
 	const sessionSecrets = [secretText, config.secretPrevious]
 		.filter((text) => text !== null)
 		.map((text) => createSecret(text).derive('session').toString('hex'));

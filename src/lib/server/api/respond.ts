@@ -51,9 +51,15 @@ async function commonFields(place: Place): Promise<Record<string, string>> {
 	};
 }
 
-/** What the ETag of a site's list is made of besides media type and coding. */
-function siteParts(site: SiteRow, reach: Reach, changeId: number): (string | number)[] {
-	return [site.id, changeId, site.firstChange, reachStamp(reach)];
+const HOUR_MS = 3_600_000;
+
+/**
+ * What the ETag of a site's list is made of besides media type and coding. What is told of personal
+ * bays also goes with time (24 h): to those who may see it nothing is unchanged for over an hour.
+ */
+function siteParts(place: Place, site: SiteRow, reach: Reach, changeId: number) {
+	const hour = reach.personalAllowed ? Math.floor(place.nowMs / HOUR_MS) : 0;
+	return [site.id, changeId, site.firstChange, reachStamp(reach), hour];
 }
 
 /** The key of a coded answer: one URL, one tag. */
@@ -67,7 +73,7 @@ const cacheKey = (place: Place, etag: string): string =>
 export async function unchanged(place: Place, media: Media): Promise<Response | null> {
 	const { rule, site, reach, app } = place;
 	if (rule.stamp !== 'change' || site === null || reach === null || !isRead(place)) return null;
-	const parts = siteParts(site, reach, site.lastChange);
+	const parts = siteParts(place, site, reach, site.lastChange);
 	const header = place.event.request.headers.get('if-none-match');
 	const coding = codingOf(place);
 	for (const tried of new Set<Coding>([coding, 'identity'])) {
@@ -139,7 +145,7 @@ async function read(place: Place, answer: Answer, plain: Buffer): Promise<Respon
 	}
 	const stamped = answer.changeId !== null && site !== null && reach !== null;
 	const parts = stamped
-		? siteParts(site, reach, answer.changeId ?? 0)
+		? siteParts(place, site, reach, answer.changeId ?? 0)
 		: [createHash('sha256').update(plain).digest('hex')];
 	const etag = etagOf(parts, answer.media, coding);
 	if (!noneMatch(place.event.request.headers.get('if-none-match'), etag)) {

@@ -6,7 +6,7 @@ import { z } from 'zod';
 import type { Instance } from '$lib/server/api/instance';
 import { byEmail, emailKey } from '$lib/server/store/queries/people';
 import { PATHS } from './paths';
-import { checkPassword } from './password';
+import { checkPassword, passwordsBusy } from './password';
 import { cookieOptions, deviceCookieName, SESSION_MAX_AGE_S } from './session';
 
 const credentials = z.object({ email: z.string().max(254), password: z.string().max(1000) });
@@ -15,7 +15,13 @@ const credentials = z.object({ email: z.string().max(254), password: z.string().
 export interface Outcome {
 	personId: number | null;
 	retryAfterS: number | null;
+	/** What broke while it was tried; no word on the password. */
+	broken: unknown;
 }
+
+export const noOutcome = (): Outcome => ({ personId: null, retryAfterS: null, broken: null });
+
+const BUSY_RETRY_S = 5;
 
 class Throttled extends CredentialsSignin {
 	override code = 'throttled';
@@ -41,6 +47,10 @@ async function authorize(
 ): Promise<{ id: string; version: number } | null> {
 	const parsed = credentials.safeParse(given);
 	if (!parsed.success) return null;
+	if (passwordsBusy()) {
+		outcome.retryAfterS = BUSY_RETRY_S;
+		throw new Throttled();
+	}
 	const email = emailKey(parsed.data.email);
 	const person = await byEmail(app.store.db, email);
 	const cookie = event.cookies.get(deviceCookieName(app.secureCookies));
@@ -65,7 +75,7 @@ const withVersion = z.object({ id: z.string(), version: z.int() });
 export function authConfig(
 	app: Instance,
 	event: Event,
-	outcome: Outcome = { personId: null, retryAfterS: null }
+	outcome: Outcome = noOutcome()
 ): AuthConfig {
 	return {
 		basePath: '/auth',
@@ -85,7 +95,15 @@ export function authConfig(
 		providers: [
 			Credentials({
 				credentials: { email: {}, password: {} },
-				authorize: async (given) => await authorize(app, event, given, outcome)
+				authorize: async (given) => {
+					try {
+						return await authorize(app, event, given, outcome);
+					} catch (error) {
+						// Auth.js wraps whatever is thrown here: the page needs to know what it was.
+						if (!(error instanceof CredentialsSignin)) outcome.broken = error;
+						throw error;
+					}
+				}
 			})
 		],
 		callbacks: {

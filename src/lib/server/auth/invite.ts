@@ -4,6 +4,7 @@ import { enqueueMail } from '$lib/server/outbox/enqueue';
 import * as audit from '$lib/server/store/queries/audit';
 import * as people from '$lib/server/store/queries/people';
 import * as tickets from '$lib/server/store/queries/tickets';
+import { linkOrigin } from './link-origin';
 import { hashPassword, passwordProblem } from './password';
 import { PATHS } from './paths';
 import { startSession } from './sign-in';
@@ -76,9 +77,6 @@ export async function inviteAgain(
 	return done;
 }
 
-const originOf = (app: Instance): string =>
-	app.config.origin ?? `http://127.0.0.1:${app.config.port}`;
-
 async function mailInvitation(
 	app: Instance,
 	tx: people.Db,
@@ -89,7 +87,7 @@ async function mailInvitation(
 	const { text: secret, hash } = newTicket();
 	const expiresAtMs = nowMs + INVITATION_DAYS * DAY_MS;
 	await tickets.create(tx, { hash, personId: to.id, purpose: 'invitation', expiresAtMs }, nowMs);
-	const link = `${originOf(app)}${PATHS.invitation}?ticket=${secret}`;
+	const link = `${linkOrigin(app)}${PATHS.invitation}?ticket=${secret}`;
 	const text = [
 		`${to.name},`,
 		'',

@@ -14,8 +14,12 @@ let decoy: Promise<string> | null = null;
 
 /** At most this many at once: each takes 19 MiB and a thread of the pool that the store also needs. */
 const MAX_AT_ONCE = 2;
+/** About 3 s of work in front of the last one: whoever comes then is asked to come again. */
+const MAX_WAITING = 60;
 let running = 0;
 const waiting: (() => void)[] = [];
+
+export const passwordsBusy = (): boolean => waiting.length >= MAX_WAITING;
 
 async function inTurn<T>(work: () => Promise<T>): Promise<T> {
 	if (running >= MAX_AT_ONCE) await new Promise<void>((go) => waiting.push(go));

@@ -4,6 +4,7 @@ import { enqueueMail } from '$lib/server/outbox/enqueue';
 import * as people from '$lib/server/store/queries/people';
 import * as tickets from '$lib/server/store/queries/tickets';
 import { clientAddress } from './authjs';
+import { linkOrigin } from './link-origin';
 import { PATHS } from './paths';
 import { newTicket } from './ticket';
 import type { Policy } from '$lib/server/api/rate-limit';
@@ -27,17 +28,21 @@ export async function askReset(
 	if (!app.limiter.take(clientAddress(event), PER_ADDRESS, nowMs).allowed) return;
 	if (!app.limiter.take(email, PER_PERSON, nowMs).allowed) return;
 	// Not awaited: the time of the answer does not tell either.
-	void mailReset(app, email, nowMs).catch(() => {
+	void mailReset(app, email, linkOrigin(app), nowMs).catch(() => {
 		app.log.warn('a reset could not be mailed: the database is away');
 	});
 }
 
-async function mailReset(app: Instance, email: string, nowMs: number): Promise<void> {
+async function mailReset(
+	app: Instance,
+	email: string,
+	origin: string,
+	nowMs: number
+): Promise<void> {
 	const person = await people.byEmail(app.store.db, email);
 	if (person === null || person.switchedOffAtMs !== null) return;
 	const { text: secret, hash } = newTicket();
 	const expiresAtMs = nowMs + RESET_MS;
-	const origin = app.config.origin ?? `http://127.0.0.1:${app.config.port}`;
 	const text = [
 		`${person.name},`,
 		'',

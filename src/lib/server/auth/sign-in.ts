@@ -1,9 +1,10 @@
 import { Auth, raw } from '@auth/core';
 import { AuthError } from '@auth/core/errors';
-import type { RequestEvent } from '@sveltejs/kit';
+import { error as refuse, type RequestEvent } from '@sveltejs/kit';
+import { isDatabaseAway } from '$lib/server/api/database-away';
 import { instance, type Instance } from '$lib/server/api/instance';
 import * as people from '$lib/server/store/queries/people';
-import { authConfig, type Outcome } from './authjs';
+import { authConfig, noOutcome } from './authjs';
 import { safeReturn } from './paths';
 import { cookieOptions, DEVICE_MAX_AGE_S, deviceCookieName, SESSION_MAX_AGE_S } from './session';
 
@@ -20,7 +21,7 @@ export async function signIn(
 	form: { email: string; password: string; to: string | null }
 ): Promise<SignedIn> {
 	const app = instance();
-	const outcome: Outcome = { personId: null, retryAfterS: null };
+	const outcome = noOutcome();
 	const request = new Request(new URL('/auth/callback/credentials', event.url.origin), {
 		method: 'POST',
 		headers: { 'content-type': 'application/x-www-form-urlencoded' },
@@ -37,7 +38,8 @@ export async function signIn(
 			});
 		}
 	} catch (error) {
-		if (!(error instanceof AuthError)) throw error;
+		if (isDatabaseAway(outcome.broken)) refuse(503, 'The database is away. Try again.');
+		if (outcome.broken !== null || !(error instanceof AuthError)) throw error;
 	}
 	if (outcome.retryAfterS !== null) {
 		return { ok: false, reason: 'throttled', retryAfterS: outcome.retryAfterS };
