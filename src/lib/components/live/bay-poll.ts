@@ -17,6 +17,8 @@ export interface Polled {
 	asOfMs: number | null;
 }
 
+export const EMPTY: BayBook = { bays: new Map(), changes: 0 };
+
 const PAGE = 1000;
 const removed = (item: Listed): item is { code: string; removed: true } => 'removed' in item;
 

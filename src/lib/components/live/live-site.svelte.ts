@@ -1,16 +1,13 @@
 import { clock } from '$lib/ui/clock.svelte';
 import { createQuery, useQueryClient } from '@tanstack/svelte-query';
 import { ask } from './ask';
-import { pollBays, wholeList, type BayBook } from './bay-poll';
+import { EMPTY, pollBays, wholeList, type BayBook } from './bay-poll';
+import { changesNoted, NOTHING_CHANGED, stillRevised, type ChangedAt } from './revisions';
 import { liveText, NO_ANSWER_MS, type SiteLive } from './live-words';
 import { session } from './session.svelte';
 
 const BAYS_EVERY_MS = 2_000;
 const LIVE_EVERY_MS = 4_000;
-/** How long a change keeps its revision cloud. */
-const REVISED_MS = 60_000;
-
-const EMPTY: BayBook = { bays: new Map(), changes: 0 };
 
 /**
  * The bays and freshness of one site, polled while somebody looks. Call in a component's script; `first`
@@ -23,7 +20,7 @@ export function liveSite(
 	const client = useQueryClient();
 	let asOfMs = $state(first()?.asOfMs ?? null);
 	let answeredAtMs = $state<number | null>(null);
-	let changedAt = $state.raw(new Map<string, number>());
+	let changedAt = $state.raw<ChangedAt>(NOTHING_CHANGED);
 
 	const key = () => ['bays', site().slug];
 	const heeded = async <T>(work: () => Promise<T>): Promise<T> => {
@@ -45,7 +42,8 @@ export function liveSite(
 				before === undefined ? await wholeList(site().slug) : await pollBays(site().slug, before)
 			);
 			if (polled.asOfMs !== null) asOfMs = polled.asOfMs;
-			if (before !== undefined && polled.book !== before) note(before, polled.book);
+			if (before !== undefined && polled.book !== before)
+				changedAt = changesNoted(changedAt, before, polled.book, Date.now());
 			return polled.book;
 		},
 		initialData: () => first()?.book,
@@ -62,17 +60,6 @@ export function liveSite(
 		retry: false,
 		networkMode: 'always' as const
 	}));
-
-	function note(before: BayBook, after: BayBook): void {
-		const nowMs = Date.now();
-		const next = new Map([...changedAt].filter(([, atMs]) => nowMs - atMs < REVISED_MS));
-		for (const [code, bay] of after.bays) {
-			const old = before.bays.get(code);
-			if (old !== undefined && (old.state !== bay.state || old.doubt?.reason !== bay.doubt?.reason))
-				next.set(code, nowMs);
-		}
-		changedAt = next;
-	}
 
 	return {
 		get book(): BayBook {
@@ -101,9 +88,7 @@ export function liveSite(
 		},
 		/** Codes that changed within the last minute. */
 		get revised(): string[] {
-			return [...changedAt]
-				.filter(([, atMs]) => clock.nowMs - atMs < REVISED_MS)
-				.map(([code]) => code);
+			return stillRevised(changedAt, clock.nowMs);
 		},
 		/** Looks now instead of at the next interval (after an act). */
 		async look(): Promise<void> {

@@ -1,18 +1,7 @@
 import { ask } from '$lib/components/live/ask';
 import { session } from '$lib/components/live/session.svelte';
 import { createQuery } from '@tanstack/svelte-query';
-
-/** A bay that somebody was asked to see to. */
-export interface OpenRequest {
-	id: number;
-	bay: string;
-	reason: string;
-	askedAt: string;
-	takenAt: string | null;
-	taker: { name: string; initials: string } | null;
-	/** The person who looks at this page has it. */
-	mine: boolean;
-}
+import { holdersByBay, requestsByBay, type OpenRequest } from './open-request';
 
 const EVERY_MS = 10_000;
 
@@ -33,14 +22,8 @@ export function openRequests(site: () => string) {
 		retry: false,
 		networkMode: 'always' as const
 	}));
-	const byBay = $derived(new Map((query.data ?? []).map((request) => [request.bay, request])));
-	const holders = $derived(
-		new Map(
-			(query.data ?? []).flatMap((request) =>
-				request.taker === null ? [] : [[request.bay, request.taker] as const]
-			)
-		)
-	);
+	const byBay = $derived(requestsByBay(query.data ?? []));
+	const holders = $derived(holdersByBay(query.data ?? []));
 	return {
 		get all(): readonly OpenRequest[] {
 			return query.data ?? [];
