@@ -178,6 +178,18 @@ export interface Trouble {
 const HOUR_MS = 3_600_000;
 const DAY_MS = 24 * HOUR_MS;
 
+const DOUBTFUL = 'C06';
+
+/** The doubtful bay stays empty around the first start: a vehicle's coming or going would settle the doubt. */
+export const isSpared = (
+	code: string,
+	visit: { inFromMs: number; outToMs: number },
+	bornMs: number
+): boolean =>
+	code === DOUBTFUL &&
+	visit.outToMs > bornMs - 6 * HOUR_MS &&
+	visit.inFromMs < bornMs + 30 * HOUR_MS;
+
 /** One drifting, one inverted, one silent, one low cell, one doubtful; times count from the demo's first start. */
 export function troubleOf(code: string, bornMs: number): Trouble {
 	const trouble: Trouble = { events: [], silentFromMs: Infinity, cellEndsFromMs: Infinity };
@@ -193,7 +205,7 @@ export function troubleOf(code: string, bornMs: number): Trouble {
 		trouble.events.push({ kind: 'flip', atMs: bornMs - 7.3 * HOUR_MS, axes: [0, 1, 2] });
 	} else if (code === 'L02') trouble.silentFromMs = bornMs - 19.6 * HOUR_MS;
 	else if (code === 'Q09') trouble.cellEndsFromMs = bornMs - 13 * DAY_MS;
-	else if (code === 'C06') {
+	else if (code === DOUBTFUL) {
 		trouble.events.push({
 			kind: 'magnet',
 			atMs: bornMs - 4.4 * HOUR_MS,

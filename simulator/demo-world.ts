@@ -1,7 +1,7 @@
 import { signedRange } from '$lib/magnetics/counts';
 import { builtInProfile } from '$lib/magnetics/sensor-profile';
 import type { Vec3 } from '$lib/magnetics/vector';
-import { demoPlan, LIVES, LOCAL_OFFSET_MS, troubleOf } from './demo-site';
+import { demoPlan, isSpared, LIVES, LOCAL_OFFSET_MS, troubleOf } from './demo-site';
 import type { NodeEvent } from './film';
 import { addStorm, recordedSeries } from './geomagnetic';
 import type { NodeConfig } from './node-state';
@@ -74,7 +74,12 @@ export function makeDemoWorld(seed: number, bornMs: number, nowMs: number): Demo
 export function extendTo(demo: DemoWorld, toMs: number): Stay[] {
 	const stays: Stay[] = [];
 	for (const bay of demo.bays) {
-		while (bay.freeFromMs < toMs) stays.push(addVisit(demo.world, nextVisit(bay)).stay);
+		while (bay.freeFromMs < toMs) {
+			const visit = nextVisit(bay);
+			if (!isSpared(bay.bay.code, visit, demo.bornMs)) {
+				stays.push(addVisit(demo.world, visit).stay);
+			}
+		}
 	}
 	while (demo.trafficToMs < toMs) {
 		addDayOfTraffic(demo, demo.trafficToMs);

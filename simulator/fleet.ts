@@ -4,7 +4,7 @@ import { troubleOf } from './demo-site';
 import { keepNode, recallNode, SEQ_BLOCK, type Keepsake, type KeptNode } from './keepsake';
 import { advanceNode, setHabit } from './node';
 import { connectNode, type Broker, type NodeClient } from './node-client';
-import { batteryMv, flush } from './node-frames';
+import { batteryMv, bootUp, flush } from './node-frames';
 import { newNode, type Batching, type NodeState, type Sent } from './node-state';
 
 /** A node that lives and its session with the broker. */
@@ -61,6 +61,7 @@ export function advanceMember(member: Member, toMs: number, batching: 'history' 
 	const out = (message: Sent) => sent.push(message);
 	node.config.batching = batching === 'history' ? HISTORY_BATCHING : LIVE_BATCHING;
 	const untilMs = Math.min(toMs, member.silentFromMs);
+	if (node.boot === 0) bootUp(node, node.atMs, 'power', out);
 	if (node.atMs < member.usualFromMs && untilMs >= member.usualFromMs) {
 		advanceNode(node, member.usualFromMs, out);
 		setHabit(node, USUAL, member.usualFromMs);

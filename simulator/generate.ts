@@ -3,6 +3,7 @@ import { kerb, lot } from './grounds';
 import { append, newLog, type MessageLog } from './message-log';
 import { advanceNode, setHabit } from './node';
 import { nodeConfig, noteEvents } from './node-config';
+import { bootUp } from './node-frames';
 import { newNode, type Sent } from './node-state';
 import { random } from './random';
 import type { Scenario } from './scenarios/types';
@@ -112,6 +113,7 @@ function liveNode(
 	const node = newNode(config, world.fields[index]!, truth.fromMs);
 	const log = newLog(config.clockOffsetMs);
 	const out = (sent: Sent) => append(log, sent);
+	bootUp(node, truth.fromMs, 'power', out);
 	advanceNode(node, truth.fromMs + LEARNING_MS, out);
 	const quietMg = Math.max(LEAST_DELTA_MG, Math.ceil(DELTA_SIGMAS * config.sensor.noiseMg));
 	const deltaMg = scenario.network.heartbeatsOnly ? NEVER_MG : quietMg;

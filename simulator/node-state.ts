@@ -97,7 +97,7 @@ export function newNode(config: NodeConfig, field: NodeField, atMs: number): Nod
 		film: freshFilm(atMs),
 		rng,
 		atMs,
-		boot: 1,
+		boot: 0,
 		seq: 0,
 		habit: config.habit,
 		heartbeatMs: Math.round(atMs + rng.between(500, config.habit.periodS * 1000)),
