@@ -1,6 +1,4 @@
 import { randomBytes } from 'node:crypto';
-import { Launcher } from './launcher';
-import { StartProblem } from './mariadb';
 import { readConfig } from '../lib/server/config';
 
 /** Everything after the packages are there: reads the settings, brings the parts up, waits for the end. */
@@ -10,6 +8,9 @@ if (!checked.ok) {
 	process.exit(1);
 }
 
+// Loaded now: a bad setting is told at once, without reading everything first.
+const { Launcher } = await import('./launcher');
+const { StartProblem } = await import('./mariadb');
 const launcher = new Launcher(checked.config, randomBytes(32).toString('hex'));
 let stops = 0;
 

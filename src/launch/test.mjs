@@ -47,7 +47,10 @@ function run(program, args, { quiet = false, limitS }) {
 		let said = '';
 		for (const stream of [child.stdout, child.stderr])
 			stream?.on('data', (chunk) => (said += chunk));
-		const timer = setTimeout(() => endGroup(child), limitS * 1000);
+		const timer = setTimeout(() => {
+			said += `\nended after ${limitS} s: it took too long`;
+			endGroup(child);
+		}, limitS * 1000);
 		const end = (code) => {
 			clearTimeout(timer);
 			children.delete(child);
@@ -108,7 +111,7 @@ async function suite(name) {
 	mkdirSync(OUT, { recursive: true });
 	const report = join(OUT, `${name}.json`);
 	rmSync(report, { force: true });
-	const { code } = await run(
+	const { code, said } = await run(
 		process.execPath,
 		[
 			join(ROOT, 'node_modules', 'vitest', 'vitest.mjs'),
@@ -117,6 +120,7 @@ async function suite(name) {
 		],
 		{ limitS: SHARES_S[name] * PATIENCE }
 	);
+	if (said !== '') console.log(said);
 	countReport(name, report, code);
 }
 
