@@ -46,7 +46,10 @@ export async function startBenchSite(nodes: number, pitchM: number): Promise<Ben
 	const fromMs = Date.now() - 120 * MIN;
 	for (const node of site.nodes)
 		await act(store, site.siteId, node, 'place', { preCommissioned: true }, fromMs);
-	const app = await run(process.env['BENCH_APP'] ?? 'tests/support/ingest-app.ts', { ...env, MQTT_PORT: String(port) });
+	const app = await run(process.env['BENCH_APP'] ?? 'tests/support/ingest-app.ts', {
+		...env,
+		MQTT_PORT: String(port)
+	});
 	await eventually(
 		async () => await select(store.pool, 'SELECT id FROM act WHERE taken_at_ms IS NULL LIMIT 1'),
 		(rows) => rows.length === 0,

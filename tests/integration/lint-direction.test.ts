@@ -45,8 +45,9 @@ test.each(CASES)('%s with "%s" is refused: %s', async (file, code, refused) => {
 });
 
 test('SQL that drops what it cannot store is refused', async () => {
-	const lossy = `export const q = 'INSERT IGNORE INTO reading VALUES (1)';`;
+	// Put together here, since this file is under the rule itself.
+	const lossy = `export const q = 'INSERT ${'IGNORE'} INTO reading VALUES (1)';`;
 	expect(await refusals('src/lib/server/store/a.ts', lossy, 'no-restricted-syntax')).toBe(1);
-	const replace = 'export const q = `REPLACE INTO reading VALUES (1)`;';
+	const replace = `export const q = \`REPLACE ${'INTO'} reading VALUES (1)\`;`;
 	expect(await refusals('src/lib/server/store/a.ts', replace, 'no-restricted-syntax')).toBe(1);
 });
