@@ -76,7 +76,7 @@ test('the database given is used: no other is started, and no demo is made in it
 
 test('pages are served over TLS with the certificate given', async () => {
 	const address = /is up: (https:\/\/\S+)/.exec(product.said())?.[1];
-	expect(await statusOf(`${address}/readyz`)).toBe(200);
+	expect(await statusOf(`${address}/sign-in`)).toBe(200);
 });
 
 test('nodes are heard over TLS', async () => {

@@ -18,8 +18,8 @@ export function noRoute(pathname: string): Response {
 
 function isReadable(pathname: string): boolean {
 	try {
-		decodeURIComponent(pathname);
-		return true;
+		// The result is used: a bundler drops a call whose result is not, and with it the refusal.
+		return decodeURIComponent(pathname) !== '';
 	} catch {
 		return false;
 	}

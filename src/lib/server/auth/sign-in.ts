@@ -47,6 +47,8 @@ export async function signIn(
 	const person =
 		outcome.personId === null ? null : await people.byId(app.store.db, outcome.personId);
 	if (person === null) return { ok: false, reason: 'wrong' };
+	// The new session may carry a version that the directory in memory has not read yet.
+	app.directory.invalidate();
 	rememberDevice(app, event, person.id);
 	return { ok: true, to: safeReturn(form.to), mustChangePassword: person.mustChangePassword };
 }
