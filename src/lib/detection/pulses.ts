@@ -1,4 +1,5 @@
 import { clearDoubt, doubtIt } from './entries';
+import { forgetFilm } from './magnet';
 import { resolve } from './neighbours';
 import { atReference } from './reference';
 import { touch, triple, type Group, type Node, type Triple } from './state';
@@ -63,9 +64,8 @@ export function takePulse(g: Group, n: Node, pulse: PulseItem): void {
 		takeOffset(n, pulse, midOf(pulse.setMg, pulse.resetMg));
 	}
 	if (fast.levelN > 0 && fast.open === 0) carryOver(n, pulse);
-	slow.signs = [1, 1, 1];
+	forgetFilm(n);
 	slow.refreshWhy = null;
-	slow.echoes = slow.echoes.filter((e) => e.by !== n.id);
 	if (slow.doubt?.reason === 'magnet') clearDoubt(n);
 	g.out.push({
 		kind: 'pulse_judged',
@@ -116,7 +116,7 @@ function carryOver(n: Node, pulse: PulseItem): void {
 		return;
 	}
 	const before = fieldOf(n, pulse.before.rawMg, polarityBefore(n, pulse), slow.offset);
-	slow.signs = [1, 1, 1];
+	forgetFilm(n);
 	const healed = fieldOf(n, after, pulse.polarityAfter, slow.offset);
 	const occupied = slow.state === 'occupied' || slow.lastKnown?.state === 'occupied';
 	if (occupied && slow.arrival !== null && slow.offset !== null)

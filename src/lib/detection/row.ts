@@ -1,7 +1,8 @@
 import { atSilence, heardAgain, takeClipped } from './silence';
-import { takeInversion, takeMagnet } from './film';
+import { takeInversion } from './film';
 import { keepHouse } from './housekeeping';
 import { learn } from './learning';
+import { noteStrongField, revealVehicle, takeMagnet } from './magnet';
 import { hold, resolve } from './neighbours';
 import { addPass } from './passes';
 import { settleAfterPulse } from './pulses';
@@ -299,14 +300,18 @@ function settle(g: Group, n: Node, atMs: number): void {
 	g.active--;
 	const step = makeStep(n, old, atMs);
 	const moved = Math.max(Math.abs(step.j[0]), Math.abs(step.j[1]), Math.abs(step.j[2]));
-	if (moved <= stillMg(n)) pass(g, n, step, atMs);
-	else if (takeMagnet(n, step) || takeInversion(n, step)) {
+	if (moved <= stillMg(n)) {
+		pass(g, n, step, atMs);
+		return;
+	}
+	revealVehicle(g, n, step, atMs);
+	if (takeMagnet(n, step) || takeInversion(n, step)) {
 		if (n.slow.unknownWhy !== null) heardAgain(g, n, atMs);
 	} else hold(g, n, step, atMs);
 }
 
 function pass(g: Group, n: Node, step: Step, atMs: number): void {
-	if (step.clipped) takeMagnet(n, step);
+	if (step.clipped) noteStrongField(n, step);
 	passed(g, n, atMs);
 }
 

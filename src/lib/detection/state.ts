@@ -173,6 +173,15 @@ export interface Strange {
 	entries: { type: HistoryType; atMs: number }[];
 }
 
+/** A magnet's step, and what was known before it. */
+export interface Magnet {
+	atMs: number;
+	uncertaintyS: number;
+	signs: Triple;
+	baseline: Triple;
+	j: Triple;
+}
+
 /** Slope of the field over temperature, per axis, with standard error. */
 export interface Slope {
 	k: Triple;
@@ -195,7 +204,9 @@ export interface Slow {
 	doubt: { reason: string; sinceMs: number } | null;
 	evidence: Evidence;
 	offset: Triple | null;
+	/** What each axis is multiplied by: 1, -1 where the film has flipped, 1/gain after a magnet. */
 	signs: Triple;
+	magnet: Magnet | null;
 	learning: boolean;
 	preCommissioned: boolean;
 	candidate: LearnedReference | null;
@@ -264,6 +275,7 @@ export function newSlow(): Slow {
 		evidence: { because: [], against: [] },
 		offset: null,
 		signs: [1, 1, 1],
+		magnet: null,
 		learning: false,
 		preCommissioned: false,
 		candidate: null,
