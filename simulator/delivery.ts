@@ -11,6 +11,8 @@ export interface Network {
 	/** Stretches in which a node is not heard: it keeps its messages and sends them afterwards. */
 	outagesPerWeek: number;
 	outageMs: readonly [number, number];
+	/** What a node has of an outage afterwards: its messages, or none (its store is small). */
+	outageLeaves: 'backlog' | 'nothing';
 	/** Share of messages that come a day late. */
 	dayLateShare: number;
 	/** Bursts never come through: only rows of the regular beat are heard. */
@@ -24,6 +26,7 @@ export const GOOD_NETWORK: Network = {
 	reorderMs: 0,
 	outagesPerWeek: 0,
 	outageMs: [0, 0],
+	outageLeaves: 'backlog',
 	dayLateShare: 0,
 	heartbeatsOnly: false
 };
@@ -96,6 +99,10 @@ export function deliver(
 		const outage = outages[next];
 		let atMs = sentAtMs + rng.between(40, 600);
 		if (outage !== undefined && outage.fromMs <= sentAtMs) {
+			if (network.outageLeaves === 'nothing') {
+				facts.lost++;
+				continue;
+			}
 			atMs = outage.toMs + backlog++ * BACKLOG_STEP_MS;
 			facts.backlog++;
 		} else if (!sure) atMs += detourMs(network, rng, facts);

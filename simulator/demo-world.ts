@@ -158,6 +158,7 @@ export function demoNodeConfig(demo: DemoWorld, index: number): NodeConfig {
 		clockOffsetMs: 0,
 		battery: { fullMv: Math.round(rng.between(3560, 3650)), endsFromMs: trouble.cellEndsFromMs },
 		firmware: '1.4.0',
+		keys: 'full',
 		seed
 	};
 }

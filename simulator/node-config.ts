@@ -61,6 +61,8 @@ export function nodeConfig(
 		clockOffsetMs: absent ? null : clockOffsetMs,
 		battery: { fullMv: 3620, endsFromMs: Infinity },
 		firmware: '1.4.0',
+		// A clock that is off can be mended only where the node says when it sent (protocol key 23).
+		keys: !off && rng.chance(scenario.leastKeysShare) ? 'least' : 'full',
 		seed
 	};
 }

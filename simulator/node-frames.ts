@@ -15,12 +15,22 @@ const RADIO_MS_PER_FRAME = 55;
 const onNodeClock = (node: NodeState, atMs: number): number =>
 	node.config.clockOffsetMs === null ? 0 : Math.round(atMs + node.config.clockOffsetMs);
 
+/** Key 23: a node without a clock, or one that sends the least keys, does not say when it sent. */
+const sentMsOf = (node: NodeState, sentAtMs: number): number | null =>
+	node.config.clockOffsetMs === null || node.config.keys === 'least'
+		? null
+		: onNodeClock(node, sentAtMs);
+
+/** An optional key: null from a node that sends the least. */
+const optional = <T>(node: NodeState, value: T): T | null =>
+	node.config.keys === 'least' ? null : value;
+
 function common(node: NodeState, firstAtMs: number, sentAtMs: number): FrameCommon {
 	return {
 		boot: node.boot,
 		seq: node.seq++,
 		t: onNodeClock(node, firstAtMs),
-		sentMs: node.config.clockOffsetMs === null ? null : onNodeClock(node, sentAtMs),
+		sentMs: sentMsOf(node, sentAtMs),
 		unsigned: false
 	};
 }
@@ -60,7 +70,8 @@ export function flush(node: NodeState, sentAtMs: number, out: Out): void {
 	if (last === undefined) return;
 	const { tempDc } = last;
 	// Short messages carry one temperature; the rows' own would only cost bytes.
-	if (last.dtMs <= TEMPS_SPAN_MS) for (const row of rows) row.tempDc = null;
+	if (last.dtMs <= TEMPS_SPAN_MS || node.config.keys === 'least')
+		for (const row of rows) row.tempDc = null;
 	const firstAtMs = node.pendingFromMs;
 	// Written out: spreading the common keys costs ten times as much, and this is the hot path.
 	const frame: ReadingFrame = {
@@ -68,15 +79,15 @@ export function flush(node: NodeState, sentAtMs: number, out: Out): void {
 		boot: node.boot,
 		seq: node.seq++,
 		t: onNodeClock(node, firstAtMs),
-		sentMs: node.config.clockOffsetMs === null ? null : onNodeClock(node, sentAtMs),
+		sentMs: sentMsOf(node, sentAtMs),
 		unsigned: false,
 		rows,
 		polarity: node.film.polarity,
 		tempDc,
 		batteryMv: batteryMv(node, sentAtMs, node.tempDc / 10),
-		rssiDbm: rssiDbm(node),
-		pulse: pulseOf(node, sentAtMs),
-		tx: node.seq % 100 === 0 ? { frames: node.frames, radioMs: node.radioMs } : null
+		rssiDbm: optional(node, rssiDbm(node)),
+		pulse: optional(node, pulseOf(node, sentAtMs)),
+		tx: node.seq % 100 === 0 ? optional(node, { frames: node.frames, radioMs: node.radioMs }) : null
 	};
 	node.pending = [];
 	send(node, frame, firstAtMs, sentAtMs, out);
@@ -91,7 +102,7 @@ export function firePulse(
 	atMs: number,
 	commandId: Uint8Array | null,
 	out: Out
-): { before: { polarity: 1 | -1; counts: Counts3 }; after: Counts3 } {
+): Pick<AckFrame, 'before' | 'after'> {
 	flush(node, atMs, out);
 	const held = node.film.polarity;
 	const before = measure(node, atMs);
@@ -110,18 +121,21 @@ export function firePulse(
 			kind: 'pair',
 			set,
 			reset,
-			before: { polarity: held, counts: before },
-			after,
+			before: optional(node, { polarity: held, counts: before }),
+			after: optional(node, after),
 			tempDc: node.tempDc,
 			batteryMv: batteryMv(node, atMs, node.tempDc / 10),
 			commandId,
-			pulse: pulseOf(node, atMs),
-			rssiDbm: rssiDbm(node)
+			pulse: optional(node, pulseOf(node, atMs)),
+			rssiDbm: optional(node, rssiDbm(node))
 		};
 		send(node, frame, atMs, atMs, out);
 	}
 	node.published = measure(node, atMs);
-	return { before: { polarity: held, counts: before }, after };
+	return {
+		before: optional(node, { polarity: held, counts: before }),
+		after: optional(node, after)
+	};
 }
 
 /** The answer to a command (protocol, `up/ack`). */
@@ -137,9 +151,9 @@ export function sendAck(
 		kind: 'ack',
 		commandId,
 		...answer,
-		pulse: pulseOf(node, atMs),
-		habit: { periodS: node.habit.periodS, deltaMg: node.habit.deltaMg },
-		rssiDbm: rssiDbm(node)
+		pulse: optional(node, pulseOf(node, atMs)),
+		habit: optional(node, { periodS: node.habit.periodS, deltaMg: node.habit.deltaMg }),
+		rssiDbm: optional(node, rssiDbm(node))
 	};
 	send(node, frame, atMs, atMs, out);
 }
@@ -166,12 +180,12 @@ export function bootUp(node: NodeState, atMs: number, cause: string, out: Out): 
 		tempDc: node.tempDc,
 		batteryMv: batteryMv(node, atMs, node.tempDc / 10),
 		// A watchdog keeps memory, so the node still knows its polarity; after lost power it does not.
-		before: { polarity: cause === 'watchdog' ? held : 0, counts: before },
-		after,
-		pulse: pulseOf(node, atMs),
-		habit: { periodS: node.habit.periodS, deltaMg: node.habit.deltaMg },
-		tx: { frames: 0, radioMs: 0 },
-		rssiDbm: rssiDbm(node)
+		before: optional(node, { polarity: cause === 'watchdog' ? held : 0, counts: before }),
+		after: optional(node, after),
+		pulse: optional(node, pulseOf(node, atMs)),
+		habit: optional(node, { periodS: node.habit.periodS, deltaMg: node.habit.deltaMg }),
+		tx: optional(node, { frames: 0, radioMs: 0 }),
+		rssiDbm: optional(node, rssiDbm(node))
 	};
 	send(node, frame, atMs, atMs, out);
 	node.published = measure(node, atMs);

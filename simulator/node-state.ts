@@ -39,6 +39,8 @@ export interface NodeConfig {
 	clockOffsetMs: number | null;
 	battery: Battery;
 	firmware: string;
+	/** `least`: sends none of the optional keys 8 and 20 to 26, so that they are not known (protocol). */
+	keys: 'full' | 'least';
 	seed: number;
 }
 

@@ -59,6 +59,7 @@ function makeNode(config: Partial<NodeConfig> = {}): NodeState {
 			clockOffsetMs: 0,
 			battery: { fullMv: 3600, endsFromMs: Infinity },
 			firmware: '1.4.0',
+			keys: 'full',
 			seed: 1,
 			...config
 		},
@@ -138,6 +139,18 @@ describe('pulses', () => {
 		// Flipped before: the bridge said -440 + 25.
 		expect((frame.before!.counts[2] / 16_384) * 1000).toBeCloseTo(-415, -1);
 		expect(frame.after).toEqual(frame.set);
+	});
+
+	test('a node that sends the least keys leaves before, after and pulse unsaid', () => {
+		const sent: Sent[] = [];
+		firePulse(makeNode({ keys: 'least' }), 'pair', T0 + 1000, null, (s) => sent.push(s));
+		expect(sent[0]!.frame).toMatchObject({
+			kind: 'pair',
+			before: null,
+			after: null,
+			sentMs: null,
+			pulse: null
+		});
 	});
 
 	test('a boot counts up, starts anew at 0 and sets the film', () => {

@@ -50,6 +50,7 @@ export const EASY: Scenario = {
 	pairEveryH: 168,
 	resetsPerWeek: 0,
 	rebootsPerWeek: 0,
+	leastKeysShare: 0,
 	clocks: { offShare: 0, absentShare: 0 },
 	network: GOOD_NETWORK,
 	periodS: 60,

@@ -119,7 +119,8 @@ export const LINES: readonly Scenario[] = [
 		condition: 'pairs, SET and RESET pulses at any time, film part lost before them',
 		film: { ...EASY.film, lossShare: 0.5, lossRemaining: 0.8 },
 		pairEveryH: 20,
-		resetsPerWeek: 2
+		resetsPerWeek: 2,
+		leastKeysShare: 0.3
 	},
 	{
 		...EASY,
@@ -152,6 +153,23 @@ export const LINES: readonly Scenario[] = [
 		name: 'heartbeats',
 		condition: 'heartbeats only (60 s) with the bursts lost',
 		network: { ...GOOD_NETWORK, heartbeatsOnly: true }
+	},
+	{
+		...EASY,
+		name: 'two-bays',
+		condition: 'vehicles over the line, up to 0.9 m off the middle of their bay',
+		life: { ...life, vehicles: { ...life.vehicles, askewM: 0.9, mostEchoMg: 250 } }
+	},
+	{
+		...EASY,
+		name: 'silence',
+		condition: 'not heard for hours, nothing left of it afterwards',
+		network: {
+			...GOOD_NETWORK,
+			outagesPerWeek: 6,
+			outageMs: [600_000, 14_400_000],
+			outageLeaves: 'nothing'
+		}
 	},
 	{
 		...EASY,
@@ -199,6 +217,7 @@ export const HARD: Scenario = {
 	pairEveryH: 168,
 	resetsPerWeek: 0.2,
 	rebootsPerWeek: 0.7,
+	leastKeysShare: 0.05,
 	clocks: { offShare: 0.06, absentShare: 0.06 },
 	network: {
 		...GOOD_NETWORK,

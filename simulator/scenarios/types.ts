@@ -50,6 +50,8 @@ export interface Scenario {
 	/** RESET pulses followed by a SET some hours later, a node and week. */
 	resetsPerWeek: number;
 	rebootsPerWeek: number;
+	/** Share of nodes that send none of the optional keys (no before and after of a pulse). */
+	leastKeysShare: number;
 	clocks: { offShare: number; absentShare: number };
 	network: Network;
 	periodS: number;

@@ -105,5 +105,7 @@ export const LINE_TARGETS: readonly Target[] = [
 	line('reboots', (facts) => ({ reboots: facts.reboots > 50, backlogs: facts.backlog > 1000 })),
 	line('clocks', (facts) => ({ off: facts.clocksOff > 5, absent: facts.clocksAbsent > 3 })),
 	line('heartbeats', nothing, 0.99, 0.97),
+	line('two-bays', (facts) => ({ 'over 60 mG next door': facts.mostEchoMg > 60 })),
+	line('silence', (facts) => ({ 'much not heard': facts.lost > 5000 }), 0.99, 0.94),
 	line('by-rule', (facts) => ({ 'under a vehicle': facts.learnedUnderVehicle > 2 }))
 ];

@@ -63,6 +63,16 @@ function shortSpans(own: readonly Stay[], leastMs: number): ApartWindow[] {
 	});
 }
 
+/** What came and went while nothing was heard cannot be known; the state afterwards still counts as time. */
+const silentWindows = (generated: Generated, nodeIndex: number): ApartWindow[] =>
+	generated.truth.incidents
+		.filter(({ nodeIndex: of, kind }) => of === nodeIndex && kind === 'outage')
+		.map(({ atMs, toMs }) => ({
+			fromMs: atMs - MINUTE_MS,
+			toMs: toMs + 2 * MINUTE_MS,
+			why: 'while not heard'
+		}));
+
 export function apartWindows(generated: Generated, bayIndex: number): ApartWindow[] {
 	const { truth, plan, scenario } = generated;
 	const nodeIndex = plan.nodes.findIndex((node) => node.bayIndex === bayIndex);
@@ -70,6 +80,9 @@ export function apartWindows(generated: Generated, bayIndex: number): ApartWindo
 	const windows = magnetWindows(generated, nodeIndex);
 	if (scenario.network.heartbeatsOnly) {
 		windows.push(...shortSpans(own, PERIODS * scenario.periodS * 1000));
+	}
+	if (scenario.network.outageLeaves === 'nothing') {
+		windows.push(...silentWindows(generated, nodeIndex));
 	}
 	const first = own[0];
 	if (first !== undefined && first.fromMs < truth.fromMs && first.toMs > truth.judgedFromMs) {
