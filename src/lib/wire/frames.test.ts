@@ -1,16 +1,11 @@
-import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { writeCbor, type Writable } from './cbor-write';
+import type { Writable } from './cbor-write';
 import { sealEnvelope } from './envelope';
-import { mqttPassword, openCommand, openUp, sealCommand, sealUnsigned, sealUp } from './frames';
-import { hex, toHex } from './test-support';
-import { downTopic, upTopic, type UpKind } from './topics';
-import type { CommandFrame, Counts3, ReadingFrame, UpFrame } from './types';
+import { mqttPassword, openUp, sealUp } from './frames';
+import { hex, ID, KEY, OPTS, sealed, toHex } from './test-support';
+import { upTopic, type UpKind } from './topics';
+import type { ReadingFrame } from './types';
 
-const KEY = Uint8Array.from({ length: 32 }, (_, i) => i);
-const RANGE = { min: -131_072, max: 131_071 };
-const OPTS = { unsignedAllowed: false, rangeCounts: RANGE };
-const UNSIGNED = { unsignedAllowed: true, rangeCounts: RANGE };
 const READING = upTopic('NODE-0001', 'reading');
 
 // Source: protocol.md, 'Test vector', computed by an encoder written apart from this project.
@@ -63,9 +58,6 @@ describe('the test vector of protocol.md', () => {
 	});
 });
 
-/** Seals any payload, to try what an honest encoder would not write. */
-const sealed = (topic: string, fields: [number | string, Writable][]): Uint8Array =>
-	sealEnvelope(topic, writeCbor(new Map(fields)), KEY, 5);
 const COMMON: [number, Writable][] = [
 	[1, 7],
 	[2, 42],
@@ -160,7 +152,6 @@ describe('the table of protocol.md, key by key: readings', () => {
 });
 
 const PAIR: [number, Writable][] = [...COMMON, [9, [1, 2, 3]], [10, [4, 5, 6]]];
-const ID = Uint8Array.of(1, 2, 3, 4, 5, 6, 7, 8);
 const HABIT = new Map([
 	['period_s', 60],
 	['delta_mg', 8]
@@ -236,249 +227,5 @@ describe('refusals of whole messages', () => {
 		expect(openUp(READING, new Uint8Array(0), [KEY], OPTS)).toMatchObject({
 			reason: 'not_decodable'
 		});
-	});
-});
-
-const json = (value: unknown): Uint8Array => new TextEncoder().encode(JSON.stringify(value));
-const JSON_READING = { boot: 1, seq: 2, t: 0, rows: [[0, 10, -20, 30]], temp: 215 };
-
-describe('the JSON twin', () => {
-	test('is refused unless the node may send unsigned', () => {
-		const opened = openUp(READING, json(JSON_READING), [KEY], OPTS);
-		expect(opened).toMatchObject({ reason: 'unsigned_not_allowed' });
-	});
-
-	test('is read with the same names and marked unsigned', () => {
-		expect(openUp(READING, json(JSON_READING), [], UNSIGNED)).toMatchObject({
-			ok: true,
-			frame: {
-				kind: 'reading',
-				unsigned: true,
-				rows: [{ dtMs: 0, counts: [10, -20, 30] }],
-				tempDc: 215
-			}
-		});
-	});
-
-	test.each<[string, unknown, string]>([
-		['a fraction', { ...JSON_READING, temp: 21.5 }, 'wrong_type'],
-		['a number as text', { ...JSON_READING, boot: '1' }, 'wrong_type'],
-		['null', { ...JSON_READING, battery: null }, 'wrong_type'],
-		['counts over the range', { ...JSON_READING, rows: [[0, 2e5, 0, 0]] }, 'out_of_range'],
-		['a name that is not known', { ...JSON_READING, colour: 'red', __proto__: 1 }, 'ok'],
-		['an id that is no hex', { ...JSON_READING, command: 'xyz' }, 'wrong_type']
-	])('%s', (_title, message, expected) => {
-		const opened = openUp(READING, json(message), [], UNSIGNED);
-		expect(opened.ok ? 'ok' : opened.reason).toBe(expected);
-	});
-
-	test('half a message is not decodable', () => {
-		const cut = json(JSON_READING).subarray(0, 20);
-		expect(openUp(READING, cut, [], UNSIGNED)).toMatchObject({ reason: 'not_decodable' });
-	});
-
-	test('over 4,096 bytes is too large', () => {
-		const message = json({ ...JSON_READING, note: 'x'.repeat(4096) });
-		expect(openUp(READING, message, [], UNSIGNED)).toMatchObject({ reason: 'too_large' });
-	});
-});
-
-const uint32 = fc.integer({ min: 0, max: 2 ** 32 - 1 });
-const count = fc.integer({ min: RANGE.min, max: RANGE.max });
-const counts: fc.Arbitrary<Counts3> = fc.tuple(count, count, count);
-const maybe = <T>(arbitrary: fc.Arbitrary<T>) => fc.option(arbitrary, { nil: null });
-const int16 = fc.integer({ min: -0x8000, max: 0x7fff });
-const common = {
-	boot: uint32,
-	seq: uint32,
-	t: fc.maxSafeNat(),
-	sentMs: maybe(fc.maxSafeNat()),
-	unsigned: fc.constant(false)
-};
-const before = maybe(fc.record({ polarity: fc.constantFrom<1 | -1 | 0>(1, -1, 0), counts }));
-const pulse = maybe(fc.record({ ageS: uint32, count: uint32 }));
-const tx = maybe(fc.record({ frames: uint32, radioMs: uint32 }));
-const habit = maybe(fc.record({ periodS: fc.nat(), deltaMg: fc.nat() }));
-const electrics = {
-	tempDc: maybe(int16),
-	batteryMv: maybe(fc.integer({ min: 0, max: 0xffff })),
-	rssiDbm: maybe(int16)
-};
-const id = fc.uint8Array({ minLength: 8, maxLength: 8 });
-const text = (max: number) => maybe(fc.string({ unit: 'grapheme-ascii', maxLength: max }));
-const rowsOf = fc
-	.tuple(fc.boolean(), fc.array(fc.tuple(counts, int16), { minLength: 1, maxLength: 120 }))
-	.map(([temps, items]) =>
-		items.map(([c, temp], i) => ({ dtMs: i * 250, counts: c, tempDc: temps ? temp : null }))
-	);
-const anyFrame: fc.Arbitrary<UpFrame> = fc.oneof(
-	fc.record({
-		kind: fc.constant('reading' as const),
-		...common,
-		rows: rowsOf,
-		polarity: fc.constantFrom<1 | -1>(1, -1),
-		...electrics,
-		pulse,
-		tx
-	}),
-	fc.record({
-		kind: fc.constant('pair' as const),
-		...common,
-		set: counts,
-		reset: counts,
-		before,
-		after: maybe(counts),
-		...electrics,
-		commandId: maybe(id),
-		pulse
-	}),
-	fc.record({
-		kind: fc.constant('hello' as const),
-		...common,
-		firmware: text(64),
-		profile: text(32),
-		cause: text(64),
-		...electrics,
-		before,
-		after: maybe(counts),
-		pulse,
-		habit,
-		tx
-	}),
-	fc.record({
-		kind: fc.constant('ack' as const),
-		...common,
-		commandId: id,
-		outcome: fc.constantFrom<0 | 1 | 2>(0, 1, 2),
-		reason: text(200),
-		before,
-		after: maybe(counts),
-		pulse,
-		habit,
-		rssiDbm: electrics.rssiDbm
-	})
-);
-
-describe('properties', () => {
-	test('what is sealed opens to the same frame', () => {
-		fc.assert(
-			fc.property(anyFrame, fc.constantFrom<4 | 5>(4, 5), (frame, alg) => {
-				const topic = upTopic('NODE-0001', frame.kind);
-				const bytes = sealUp(topic, frame, KEY, alg);
-				fc.pre(bytes.length <= 4096);
-				expect(openUp(topic, bytes, [KEY], OPTS)).toEqual({ ok: true, frame });
-			}),
-			{ numRuns: 500 }
-		);
-	});
-
-	test('the JSON twin opens to the same frame', () => {
-		fc.assert(
-			fc.property(anyFrame, (frame) => {
-				const topic = upTopic('NODE-0001', frame.kind);
-				const bytes = sealUnsigned(frame);
-				fc.pre(bytes.length <= 4096);
-				const opened = openUp(topic, bytes, [], UNSIGNED);
-				expect(opened).toEqual({ ok: true, frame: { ...frame, unsigned: true } });
-			}),
-			{ numRuns: 300 }
-		);
-	});
-
-	test('random bytes never throw and never open', () => {
-		fc.assert(
-			fc.property(fc.uint8Array({ maxLength: 300 }), fc.boolean(), (bytes, braced) => {
-				if (braced && bytes.length > 0) bytes[0] = 0x7b;
-				expect(openUp(READING, bytes, [KEY], UNSIGNED).ok).toBe(false);
-			}),
-			{ numRuns: 3000 }
-		);
-	});
-
-	test('a changed byte never throws and never opens to something else', () => {
-		const flip = fc.tuple(fc.nat(), fc.integer({ min: 1, max: 255 }));
-		fc.assert(
-			fc.property(anyFrame, flip, (frame, [at, mask]) => {
-				const topic = upTopic('NODE-0001', frame.kind);
-				const bytes = sealUp(topic, frame, KEY, 5);
-				const index = at % bytes.length;
-				bytes[index] = (bytes[index] as number) ^ mask;
-				expect(openUp(topic, bytes, [KEY], OPTS).ok).toBe(false);
-			}),
-			{ numRuns: 500 }
-		);
-	});
-
-	test('whatever a key holder signs, the opener answers and does not throw', () => {
-		const value = fc.letrec<{ v: Writable }>((tie) => ({
-			v: fc.oneof(
-				{ maxDepth: 3 },
-				fc.maxSafeInteger(),
-				fc.string(),
-				fc.uint8Array({ maxLength: 9 }),
-				fc.array(tie('v'), { maxLength: 5 })
-			)
-		})).v;
-		const fields = fc.dictionary(fc.integer({ min: 1, max: 27 }).map(String), value);
-		fc.assert(
-			fc.property(
-				fields,
-				fc.constantFrom<UpKind>('reading', 'pair', 'hello', 'ack'),
-				(map, kind) => {
-					const topic = upTopic('NODE-0001', kind);
-					const entries = Object.entries(map).map(([k, v]): [number, Writable] => [Number(k), v]);
-					expect(openUp(topic, sealed(topic, entries), [KEY], OPTS)).toHaveProperty('ok');
-				}
-			),
-			{ numRuns: 2000 }
-		);
-	});
-});
-
-const DOWN = downTopic('NODE-0001');
-const COMMAND: CommandFrame = {
-	id: ID,
-	verb: 'pair',
-	boot: 7,
-	t: 1_700_000_000_000,
-	expiresMs: 1_700_000_600_000,
-	report: null
-};
-
-describe('commands', () => {
-	test.each<CommandFrame>([
-		COMMAND,
-		{ ...COMMAND, verb: 'set' },
-		{ ...COMMAND, verb: 'reset' },
-		{ ...COMMAND, verb: 'report', report: { periodS: 2, deltaMg: 8 } }
-	])('$verb is sealed and opened', (command) => {
-		const opened = openCommand(DOWN, sealCommand(DOWN, command, KEY), KEY);
-		expect(opened).toEqual({ ok: true, frame: command });
-	});
-
-	test('a command for another node does not open', () => {
-		const bytes = sealCommand(DOWN, COMMAND, KEY);
-		expect(openCommand(downTopic('NODE-0002'), bytes, KEY)).toMatchObject({ reason: 'bad_tag' });
-	});
-
-	test('an up topic takes no command', () => {
-		expect(openCommand(READING, sealCommand(DOWN, COMMAND, KEY), KEY)).toMatchObject({
-			reason: 'bad_topic'
-		});
-	});
-
-	const base: [number, Writable][] = [
-		[1, 7],
-		[3, 5],
-		[11, ID],
-		[19, 9]
-	];
-	test.each<[string, [number, Writable][]]>([
-		['a verb that is not known', [...base, [17, 'dance']]],
-		['a report without args', [...base, [17, 'report']]],
-		['no id', [base[0]!, base[1]!, base[3]!, [17, 'set']]],
-		['no expiry', [base[0]!, base[1]!, base[2]!, [17, 'set']]]
-	])('%s is refused', (_title, fields) => {
-		expect(openCommand(DOWN, sealed(DOWN, fields), KEY)).toMatchObject({ reason: 'wrong_type' });
 	});
 });
