@@ -1,7 +1,8 @@
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { replayMarked } from '$lib/server/ingest/far-replay';
+import { eventually } from '../support/ingest';
 import { IngestRun } from '../support/ingest-run';
-import { disturbed, inTime, STAYS, type Delivery } from '../support/ingest-story';
+import { disturbed, inChunks, inTime, STAYS, type Delivery } from '../support/ingest-story';
 
 const MIN = 60_000;
 const run = new IngestRun();
@@ -29,8 +30,8 @@ async function histories(firstNode: number): Promise<string[][]> {
 let undisturbed: string[][];
 
 beforeAll(async () => {
-	// Six groups of three bays 2.5 m apart, 100 m from each other.
-	await run.begin({ nodes: 18, pitchM: 2.5 });
+	// Seven groups of three bays 2.5 m apart, 100 m from each other.
+	await run.begin({ nodes: 21, pitchM: 2.5 });
 	for (const [k, node] of run.site.nodes.entries())
 		await run.rows('UPDATE node SET east_m = ? WHERE id = ?', [
 			Math.floor(k / 3) * 100 + (k % 3) * 2.5,
@@ -92,6 +93,23 @@ describe('the same effective history, however it came', () => {
 		await drained();
 		expect(await histories(15)).toEqual(undisturbed);
 		await feedMatches(15);
+	});
+
+	test('backlogs of neighbours in long messages are merged: nothing is told that is taken back', async () => {
+		await deliver(18, inChunks(START_MS));
+		await run.pipeline.exclusive(async () => undefined);
+		const bays = [18, 19, 20].map((k) => run.node(k).bayId);
+		await eventually(
+			async () => await run.rows('SELECT node_id FROM node_fast WHERE waiting_from_ms IS NOT NULL'),
+			(waiting) => waiting.length === 0
+		);
+		await drained();
+		expect(await histories(18)).toEqual(undisturbed);
+		expect(
+			await run.rows("SELECT bay_id, at_ms FROM event WHERE type = 'voided' AND bay_id IN (?)", [
+				bays
+			])
+		).toEqual([]);
 	});
 
 	test('everything at once, backwards', async () => {

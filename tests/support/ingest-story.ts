@@ -70,3 +70,23 @@ export function disturbed(delivery: Delivery, mostMs: number, seed: number): Del
 		.sort((a, b) => a.key - b.key)
 		.flatMap(({ one }) => (random() < 0.1 ? [one, one] : [one]));
 }
+
+/** The same rows in messages of up to 120 rows, as a node sends a backlog; nodes take turns. */
+export function inChunks(startMs: number): Delivery {
+	const chunks: Delivery = [];
+	for (const i of [0, 1, 2]) {
+		// A burst may run past the next heartbeat: within a message times must rise.
+		const rows = story(i, startMs)
+			.flatMap((frame) =>
+				frame.rows.map((row) => ({ atMs: frame.t + row.dtMs, counts: row.counts }))
+			)
+			.sort((a, b) => a.atMs - b.atMs);
+		for (let at = 0; at < rows.length; at += 120) {
+			const part = rows.slice(at, at + 120);
+			const t = part[0]!.atMs;
+			const list = part.map(({ atMs, counts }) => [atMs - t, counts] as const);
+			chunks.push({ i, frame: reading({ seq: at / 120, t, rows: list }) });
+		}
+	}
+	return chunks.sort((a, b) => a.frame.t - b.frame.t);
+}

@@ -58,7 +58,7 @@ async function finish(
 			work.groups.add(replay.group);
 			replay.group.noteProgress();
 			for (const slow of replay.group.allSlow()) work.slow.push(slow);
-			await nodeState.writeSnapshots(sql, replay.group.snapshot(room.stamps.next(), false));
+			work.snapshots.push(...replay.group.snapshot(room.stamps.next(), false));
 			await nodeState.clearMarks(sql, ids, beganMs);
 			await storeResults(sql, work, hostsOf(room));
 		});

@@ -67,11 +67,12 @@ export class Groups {
 		if (wanted.size === 0) return;
 		const stored = await nodeState.states(sql, [...wanted.values()].flat());
 		const byId = new Map(stored.map((state) => [state.nodeId, state]));
+		const snapshots = await nodeState.newestSnapshots(sql, [...wanted.keys()]);
 		for (const ids of wanted.values()) {
 			// A member may still sit in a group of before a neighbour came: what waits there is stored.
 			this.forget(ids);
 			const group = this.#build(ids, byId);
-			group.lastSnapshotAtMs = (await nodeState.snapshotTimes(sql, ids))[0]?.atMs ?? 0;
+			group.lastSnapshotAtMs = snapshots.get(ids[0] as number) ?? 0;
 			group.add(await waitingItems(sql, group.entries, byId, nowMs));
 			this.#keep(group);
 		}

@@ -57,9 +57,13 @@ function fitting(nodeId: number, state: Uint8Array, most: number): Uint8Array {
 /** A neighbour whose last two rows lie this near is bursting: its next row is about to come. */
 const BURST_MS = 2_000;
 
+/** Rows older than this at arrival are a backlog, which neighbours often bring at the same time. */
+const BACKLOG_MS = 60_000;
+
 interface Heard {
 	newestMs: number;
 	beforeMs: number;
+	arrivedAtMs: number;
 }
 
 /** Nodes chained within 4 m, with detection's state and what waits to go into it. */
@@ -113,15 +117,21 @@ export class HostedGroup {
 
 	add(items: readonly Queued[]): void {
 		for (const queued of items) {
-			const { nodeId, atMs } = queued.item;
-			const heard = this.#heard.get(nodeId);
-			if (heard === undefined) this.#heard.set(nodeId, { newestMs: atMs, beforeMs: 0 });
-			else if (atMs > heard.newestMs) {
-				heard.beforeMs = heard.newestMs;
-				heard.newestMs = atMs;
-			}
 			this.#queue.push(queued);
+			if (queued.order !== null) this.#note(queued);
 		}
+	}
+
+	#note({ item: { nodeId, atMs }, arrivedAtMs }: Queued): void {
+		const heard = this.#heard.get(nodeId);
+		if (heard === undefined) {
+			this.#heard.set(nodeId, { newestMs: atMs, beforeMs: 0, arrivedAtMs });
+			return;
+		}
+		heard.arrivedAtMs = Math.max(heard.arrivedAtMs, arrivedAtMs);
+		if (atMs <= heard.newestMs) return;
+		heard.beforeMs = heard.newestMs;
+		heard.newestMs = atMs;
 	}
 
 	/** Puts in what may go in at `nowMs`; what must wait stays. */
@@ -131,6 +141,7 @@ export class HostedGroup {
 		const taken = new Set<number>();
 		const rest: Queued[] = [];
 		const blocked = new Set<number>();
+		const behind = new Set<number>();
 		this.#pumped = this.#queue;
 		this.#queue = [];
 		if (this.#pumped.length > 1) this.#pumped.sort(byTime);
@@ -138,8 +149,11 @@ export class HostedGroup {
 			if (this.#mustWait(queued, blocked, nowMs)) {
 				blocked.add(queued.item.nodeId);
 				rest.push(queued);
-			} else if (this.isLate(queued)) late.push(queued);
-			else {
+			} else if (behind.has(queued.item.nodeId) || this.isLate(queued)) {
+				// What follows of its node must not go in before it: it would leave a gap that never was.
+				behind.add(queued.item.nodeId);
+				late.push(queued);
+			} else {
 				this.take(queued, outcomes);
 				taken.add(queued.item.nodeId);
 			}
@@ -159,8 +173,20 @@ export class HostedGroup {
 		}
 		if (queued.item.kind === 'act') return false;
 		const near = this.neighboursOf(nodeId);
+		if (near.some((id) => this.#catchesUp(id, queued))) return true;
 		return detection.mustWait(this.state, queued.item, (id) =>
 			near.includes(id) ? this.#heardTo(id) : Infinity
+		);
+	}
+
+	/** A neighbour that is bringing its own backlog of the same time: merged, neither finds the other late. */
+	#catchesUp(nodeId: number, { item, arrivedAtMs }: Queued): boolean {
+		if (arrivedAtMs - item.atMs < BACKLOG_MS) return false;
+		const heard = this.#heard.get(nodeId);
+		return (
+			heard !== undefined &&
+			heard.newestMs < item.atMs &&
+			Math.abs(arrivedAtMs - heard.arrivedAtMs) < REORDER_MS
 		);
 	}
 

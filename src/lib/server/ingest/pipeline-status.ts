@@ -37,7 +37,8 @@ export class PipelineCounters {
 	#hold: Hold | null = null;
 	#holdDetail: string | null = null;
 	#holdSinceMs: number | null = null;
-	#pending = new Map<HeldMessage, number>();
+	/** Batches taken and not yet acknowledged: one is opened while one is stored. */
+	readonly #pending: { oldestMs: number; messages: number }[] = [];
 	#lastStoredAtMs: number | null = null;
 	#messages = 0;
 	#readings = 0;
@@ -50,12 +51,13 @@ export class PipelineCounters {
 	setAside = 0;
 
 	took(messages: readonly HeldMessage[]): void {
-		for (const message of messages) this.#pending.set(message, message.arrivedAtMs);
+		const oldestMs = messages[0]?.arrivedAtMs;
+		if (oldestMs !== undefined) this.#pending.push({ oldestMs, messages: messages.length });
 	}
 
 	stored(messages: readonly HeldMessage[], work: Work, nowMs: number): void {
-		for (const message of messages) this.#pending.delete(message);
 		const first = messages[0];
+		if (first !== undefined) this.#pending.shift();
 		if (first !== undefined) this.#delayS = Math.max(0, nowMs - first.arrivedAtMs) / 1000;
 		this.#lastStoredAtMs = nowMs;
 		this.#messages += messages.length;
@@ -79,7 +81,6 @@ export class PipelineCounters {
 	}
 
 	status(groups: Groups): PipelineStatus {
-		const oldest = this.#pending.values().next().value ?? null;
 		let loaded = 0;
 		let waitingRows = 0;
 		for (const group of groups.all()) {
@@ -90,8 +91,8 @@ export class PipelineCounters {
 			hold: this.#hold,
 			holdDetail: this.#holdDetail,
 			holdSinceMs: this.#holdSinceMs,
-			pending: this.#pending.size,
-			oldestPendingMs: oldest,
+			pending: this.#pending.reduce((sum, { messages }) => sum + messages, 0),
+			oldestPendingMs: this.#pending[0]?.oldestMs ?? null,
 			lastStoredAtMs: this.#lastStoredAtMs,
 			messages: this.#messages,
 			readings: this.#readings,

@@ -1,6 +1,7 @@
 import type { LearnedReference } from '$lib/detection/types';
 import type { NewCommand } from '$lib/server/store/queries/commands';
 import type { NodeFacts } from '$lib/server/store/queries/ingest';
+import type { Keep, SnapshotRow } from '$lib/server/store/queries/node-state';
 import type { PulseRow } from '$lib/server/store/queries/pulses';
 import type { ReadingRow } from '$lib/server/store/queries/readings';
 import type { Block } from '$lib/server/store/queries/received';
@@ -57,6 +58,8 @@ export class Work {
 	readonly marks = new Map<string, { nodeId: number; hourMs: number }>();
 
 	readonly closures: { siteId: number; bayId: number | null; nodeId: number | null }[] = [];
+	readonly snapshots: SnapshotRow[] = [];
+	readonly keeps: Keep[] = [];
 	readonly slow: { nodeId: number; state: Uint8Array }[] = [];
 	/** Nodes whose fast state or what they show may have changed. */
 	readonly touched = new Set<NodeEntry>();

@@ -3,7 +3,6 @@ import type { Sql } from '$lib/server/store/queries/bulk';
 import * as nodeState from '$lib/server/store/queries/node-state';
 import type { Groups } from '../groups';
 import type { HostedGroup, Pumped } from '../hosted-group';
-import { firstDiffering } from '../order';
 import type { Registry } from '../registry';
 import {
 	beginNear,
@@ -60,7 +59,7 @@ export async function settleAll(
 		touch(room, work, now, result);
 		settleSilence(work, now, replay === null ? result.taken : new Set(now.ids));
 		now.noteProgress();
-		await keepSnapshot(sql, room, now, replay);
+		keepSnapshot(room, work, now, replay);
 	}
 }
 
@@ -114,10 +113,7 @@ export async function adopt(sql: Sql, room: DetectRoom, work: Work, replay: Repl
 	await nodeState.dropSnapshotsTakenAfter(sql, replay.group.ids, replay.fromStampMs);
 	const denseFromMs = replay.group.newestAtMs - DENSE_MS;
 	const kept = replay.snapshots.filter(({ atMs, daily }) => daily || atMs >= denseFromMs);
-	await nodeState.writeSnapshots(
-		sql,
-		kept.sort((a, b) => firstDiffering(a.nodeId - b.nodeId, a.atMs - b.atMs))
-	);
+	work.snapshots.push(...kept);
 	room.groups.replace(replay.group);
 	work.replayed.add(replay.group);
 	for (const entry of replay.group.entries) work.touched.add(entry);
@@ -161,23 +157,22 @@ function settleSilence(work: Work, group: HostedGroup, taken: ReadonlySet<number
 	}
 }
 
-async function keepSnapshot(
-	sql: Sql,
+function keepSnapshot(
 	room: DetectRoom,
+	work: Work,
 	group: HostedGroup,
 	replay: Replay | null
-): Promise<void> {
+): void {
 	const due = replay !== null || mustSnapshot(group, group.newestAtMs) || isNewDay(group);
 	if (!due || group.newestAtMs === 0) return;
 	const daily = isNewDay(group);
 	// A new stamp: what a replay of this batch recorded lies above the batch's own.
-	await nodeState.writeSnapshots(sql, group.snapshot(room.stamps.next(), daily));
-	await nodeState.thinSnapshots(
-		sql,
-		group.ids,
-		group.newestAtMs - DENSE_MS,
-		group.newestAtMs - DAILY_MS
-	);
+	work.snapshots.push(...group.snapshot(room.stamps.next(), daily));
+	work.keeps.push({
+		nodeIds: group.ids,
+		denseFromMs: group.newestAtMs - DENSE_MS,
+		dailyFromMs: group.newestAtMs - DAILY_MS
+	});
 }
 
 const isNewDay = (group: HostedGroup): boolean =>

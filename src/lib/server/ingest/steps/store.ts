@@ -117,6 +117,8 @@ async function storeStates(sql: Sql, work: Work, hosts: Hosts): Promise<void> {
 		sql,
 		work.slow.sort((a, b) => a.nodeId - b.nodeId)
 	);
+	await nodeState.writeSnapshots(sql, work.snapshots.sort(byNodeAnd((s) => s.atMs)));
+	await nodeState.thinSnapshots(sql, work.keeps);
 	const clocks = touched.filter(({ live }) => live.skew.changed);
 	await nodeState.writeClocks(
 		sql,

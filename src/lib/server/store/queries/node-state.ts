@@ -172,6 +172,20 @@ export async function snapshotTimes(
 	);
 }
 
+/** The time of the newest snapshot of each node that has one. */
+export async function newestSnapshots(
+	sql: Sql,
+	nodeIds: readonly number[]
+): Promise<Map<number, number>> {
+	if (nodeIds.length === 0) return new Map();
+	const rows = await select<{ nodeId: number; atMs: number }>(
+		sql,
+		'SELECT node_id AS nodeId, MAX(at_ms) AS atMs FROM node_snapshot WHERE node_id IN (?) GROUP BY node_id',
+		[nodeIds]
+	);
+	return new Map(rows.map(({ nodeId, atMs }) => [nodeId, atMs]));
+}
+
 interface RawSnapshot {
 	nodeId: number;
 	atMs: number;
@@ -224,19 +238,21 @@ export async function dropSnapshotsTakenAfter(
 	]);
 }
 
-/** Keeps the dense ones since `denseFromMs` and the daily ones since `dailyFromMs`. */
-export async function thinSnapshots(
-	sql: Sql,
-	nodeIds: readonly number[],
-	denseFromMs: number,
-	dailyFromMs: number
-): Promise<void> {
-	if (nodeIds.length === 0) return;
-	await run(
-		sql,
-		'DELETE FROM node_snapshot WHERE node_id IN (?) AND at_ms < ? AND (daily = 0 OR at_ms < ?)',
-		[nodeIds, denseFromMs, dailyFromMs]
+/** How long the snapshots of some nodes are kept, event time. */
+export interface Keep {
+	nodeIds: readonly number[];
+	denseFromMs: number;
+	dailyFromMs: number;
+}
+
+/** Keeps the dense ones and the daily ones of each group since its own times. */
+export async function thinSnapshots(sql: Sql, keeps: readonly Keep[]): Promise<void> {
+	if (keeps.length === 0) return;
+	const terms = keeps.map(
+		({ nodeIds, denseFromMs, dailyFromMs }) =>
+			`(node_id IN (${nodeIds.join(',')}) AND at_ms < ${denseFromMs} AND (daily = 0 OR at_ms < ${dailyFromMs}))`
 	);
+	await run(sql, `DELETE FROM node_snapshot WHERE ${terms.join(' OR ')}`);
 }
 
 export async function clocks(
