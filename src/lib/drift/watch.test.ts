@@ -124,15 +124,21 @@ describe('drifting by CUSUM on daily medians', () => {
 	test('zero is where the first 14 days stood, not 0', () => {
 		const off = run(WATCH_START, hoursOf(0, 60 * 24, noisy([6, 0, 0])));
 		expect(off.driftingSinceMs).toBeNull();
-		expect(off.centre!.zeroMg[0]).toBeCloseTo(6, 0);
+		expect(off.centre!.zeroMg![0]).toBeCloseTo(6, 0);
 	});
 
 	test('a pair re-zeroes: sums, runs and drifting start anew', () => {
 		const drifting = run(calm, hoursOf(20 * 24, 7 * 24, noisy([0, -5, 0])));
 		const after = watchPair(drifting, 'nothing');
 		expect(after.driftingSinceMs).toBeNull();
-		expect(after.centre!.zeroMg).toEqual(ZERO);
+		expect(after.centre!.zeroMg).toBeNull();
 		expect(run(after, hoursOf(27 * 24, 10 * 24, noisy(ZERO))).driftingSinceMs).toBeNull();
+	});
+
+	test('after a pair zero is where the first three days stand', () => {
+		const after = run(watchPair(calm, 'nothing'), hoursOf(20 * 24, 20 * 24, noisy([2.5, 0, 0])));
+		expect(after.centre!.zeroMg![0]).toBeCloseTo(2.5, 0);
+		expect(after.driftingSinceMs).toBeNull();
 	});
 
 	test('a node’s own residual is the median of its last week since the pair', () => {

@@ -20,7 +20,8 @@ export interface DayRecord {
 }
 
 interface Centre {
-	zeroMg: Vec3;
+	/** Null for the first days after a pair, until they say where unexplained stands now. */
+	zeroMg: Vec3 | null;
 	sigmaMg: Vec3;
 }
 
@@ -65,6 +66,8 @@ export const WATCH_START: WatchState = {
 
 const DAY_MS = 86_400_000;
 const KEPT_DAYS = 60;
+/** Days after a pair that say where zero is. */
+const ZERO_DAYS = 3;
 /** Days of the median that stands for a node's own residual (site line). */
 const OWN_DAYS = 7;
 
@@ -118,23 +121,35 @@ function scatter(days: readonly DayRecord[]): Vec3 {
 	return [axis(0), axis(1), axis(2)];
 }
 
-/** Zero and scatter from the first 14 daily medians; once a pair has re-zeroed unexplained, zero is zero. */
+/** Scatter, and at first zero too, from the first 14 daily medians. */
 function centreOf(days: readonly DayRecord[], wanted: number): Centre | null {
 	if (days.length < wanted) return null;
 	const first = days.slice(0, wanted);
 	const alone = first.every(({ segment }) => segment === first[0]?.segment);
 	return {
-		zeroMg: alone ? medians(first.map(({ unexplainedMg }) => unexplainedMg)) : ZERO,
+		zeroMg: alone ? medians(first.map(({ unexplainedMg }) => unexplainedMg)) : null,
 		sigmaMg: scatter(first)
 	};
 }
 
+/**
+ * A pair is single readings beside hours of many: it leaves unexplained off by a milligauss or two. Summed for
+ * a week that would be a false alarm, so zero is where the first days after it stand.
+ */
+function rezeroed(centre: Centre, { days, segment }: WatchState): Centre {
+	if (centre.zeroMg !== null) return centre;
+	const since = days.filter((day) => day.segment === segment);
+	if (since.length < ZERO_DAYS) return centre;
+	return { ...centre, zeroMg: medians(since.map(({ unexplainedMg }) => unexplainedMg)) };
+}
+
 function stepCusum(state: WatchState, value: Vec3, settings: DriftSettings): WatchState['cusum'] {
+	const zeroMg = state.centre?.zeroMg ?? null;
 	const { centre } = state;
-	if (centre === null) return state.cusum;
+	if (centre === null || zeroMg === null) return state.cusum;
 	const axis = (i: 0 | 1 | 2) =>
 		cusumStep(state.cusum[i], value[i], {
-			target: centre.zeroMg[i],
+			target: zeroMg[i],
 			k: Math.max(settings.cusumK * centre.sigmaMg[i], settings.cusumKMg)
 		});
 	return [axis(0), axis(1), axis(2)];
@@ -153,8 +168,9 @@ function closeDay(state: WatchState, settings: DriftSettings): WatchState {
 	};
 	const cusum = stepCusum(state, day.unexplainedMg, settings);
 	const days = [...state.days, day].slice(-KEPT_DAYS);
+	const next = { ...state, today: null, days, cusum };
 	const centre = state.centre ?? centreOf(days, settings.centreDays);
-	return { ...state, today: null, days, cusum, centre };
+	return { ...next, centre: centre === null ? null : rezeroed(centre, next) };
 }
 
 /** Takes one decomposed hour, later than all before it. Hours that cannot be judged pass by. */
@@ -178,7 +194,7 @@ export function watchHour(
 }
 
 /**
- * A pair re-zeroes unexplained: runs and sums start anew, and zero is zero from then on. `healed`: the film
+ * A pair re-zeroes unexplained: runs and sums start anew, and zero is found anew. `healed`: the film
  * had lost something, so movement steps back too.
  */
 export function watchPair(state: WatchState, healed: 'film' | 'nothing'): WatchState {
@@ -192,7 +208,7 @@ export function watchPair(state: WatchState, healed: 'film' | 'nothing'): WatchS
 		driftingSinceMs: null,
 		driftingBy: null,
 		cusum: NO_CUSUM,
-		centre: state.centre === null ? null : { ...state.centre, zeroMg: ZERO },
+		centre: state.centre === null ? null : { ...state.centre, zeroMg: null },
 		today: null,
 		segment: state.segment + 1,
 		run: healed === 'film' ? state.run + 1 : state.run
