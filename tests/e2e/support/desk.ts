@@ -24,6 +24,15 @@ export class Office {
 
 	static async open(): Promise<Office> {
 		const bench = new Bench();
+		try {
+			return await Office.#furnish(bench);
+		} catch (error) {
+			await bench.end();
+			throw error;
+		}
+	}
+
+	static async #furnish(bench: Bench): Promise<Office> {
 		const database = bench.ending(await startDatabase(), async (d) => await d.close());
 		const store = bench.ending(connect(database.url), async (s) => await s.close());
 		const seeded = await seed(store.db);
