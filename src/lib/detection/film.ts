@@ -1,5 +1,5 @@
 import { touch, triple, type Node, type Step, type Triple } from './state';
-import { offMg, stillMg } from './thresholds';
+import { sigmaMg, stillMg } from './thresholds';
 import { apart, set3, size3, type Axes } from './vec';
 
 const AXIS_SETS: readonly Triple[] = [
@@ -35,6 +35,17 @@ export function takeInversion(n: Node, step: Step): boolean {
 
 /** A film turns over at once; a vehicle is seen on its way. */
 const AT_ONCE_MS = 1200;
+/** The mirrored field must be this much nearer than the field as it is. */
+const NEARER = 0.25;
+/** Seen to turn at once, and back to within noise, a smaller axis shows its sign too. */
+const SURE_AXIS_MG = 8;
+const SURE_SIGMA = 2.5;
+const SURE_LEAST_MG = 1.5;
+
+interface Mirror {
+	signs: Triple;
+	offMg: number;
+}
 
 function invertedAxes(n: Node, step: Step): Triple | null {
 	const { fast, slow, params } = n;
@@ -42,20 +53,31 @@ function invertedAxes(n: Node, step: Step): Triple | null {
 	if (step.burst && step.toMs - step.newMs > AT_ONCE_MS) return null;
 	const { baseline, level } = fast;
 	const old: Triple = [level[0] - step.j[0], level[1] - step.j[1], level[2] - step.j[2]];
-	const near = Math.max(2 * stillMg(n), params.invertedRatio * size3(old));
 	const known = step.gapS > 0 ? [old, triple(baseline)] : [old];
-	const far = 2 * Math.max(near, offMg(n));
-	if (apart(level, old) <= far || apart(level, baseline) <= far) return null;
-	let best: Triple | null = null;
-	let bestMg = near;
+	const asItIs = Math.min(apart(level, old), apart(level, baseline));
+	const near = Math.max(2 * stillMg(n), params.invertedRatio * size3(old));
+	const loose = bestMirror(level, old, known, params.invertedAxisMg);
+	if (loose !== null && loose.offMg <= Math.min(near, NEARER * asItIs)) return loose.signs;
+	if (!step.burst) return null;
+	const sure = bestMirror(level, old, [old], SURE_AXIS_MG);
+	const exact = Math.max(SURE_LEAST_MG, SURE_SIGMA * sigmaMg(n));
+	return sure !== null && sure.offMg <= Math.min(exact, NEARER * asItIs) ? sure.signs : null;
+}
+
+/** The set of axes, one of which carries enough, whose change of sign comes nearest to what is known. */
+function bestMirror(
+	level: Axes,
+	old: Triple,
+	known: readonly Triple[],
+	axisMg: number
+): Mirror | null {
+	let best: Mirror | null = null;
 	for (const signs of AXIS_SETS) {
-		const carries = ([0, 1, 2] as const).some(
-			(i) => signs[i] < 0 && Math.abs(old[i]) > params.invertedAxisMg
-		);
+		const carries = ([0, 1, 2] as const).some((i) => signs[i] < 0 && Math.abs(old[i]) > axisMg);
 		if (!carries) continue;
 		const back = mirrored(level, signs);
-		const off = Math.min(...known.map((k) => apart(back, k)));
-		if (off <= bestMg) [best, bestMg] = [signs, off];
+		const offMg = Math.min(...known.map((k) => apart(back, k)));
+		if (best === null || offMg < best.offMg) best = { signs, offMg };
 	}
 	return best;
 }

@@ -46,6 +46,9 @@ function comesHome(n: Node, step: Step): boolean {
 const MOST_OF_IT = 0.6;
 const HALF_OF_IT = 0.5;
 
+/** What is left beyond this share of the first step is a vehicle that came on top of it. */
+const MOST_GROWTH = 1.5;
+
 /** Would this step at an occupied bay be the vehicle's leaving (step ledger, release)? */
 export function isDeparture(n: Node, step: Step, echoMg = 0): boolean {
 	const { arrival } = n.slow;
@@ -54,7 +57,9 @@ export function isDeparture(n: Node, step: Step, echoMg = 0): boolean {
 	if (arrival === null) return apart(n.fast.level, n.fast.baseline) < releaseMg(n);
 	const stood = Math.min(size3(arrival.first), size3(arrival.step));
 	if (step.gapS === 0 && size < MOST_OF_IT * Math.min(stood, n.fast.stayMg)) return false;
-	if (undoes(n, step, arrival.first, echoMg) || undoes(n, step, arrival.step, echoMg)) return true;
+	if (undoes(n, step, arrival.step, echoMg)) return true;
+	const grown = sumSize(step.j, arrival.step) > MOST_GROWTH * size3(arrival.first);
+	if (!grown && undoes(n, step, arrival.first, echoMg)) return true;
 	return apart(n.fast.level, n.fast.baseline) < releaseMg(n) || atReference(n, n.fast.level);
 }
 
