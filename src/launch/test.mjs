@@ -169,6 +169,10 @@ for (const signal of ['SIGINT', 'SIGTERM'])
 	});
 
 const wanted = process.argv.slice(2);
+for (const name of wanted.filter((name) => !(name in SHARES_S))) {
+	failed += 1;
+	console.log(`There is no suite '${name}': ${Object.keys(SHARES_S).join(', ')}`);
+}
 const isWanted = (name) => wanted.length === 0 || wanted.includes(name);
 try {
 	await timed('set-up', async () => {

@@ -117,8 +117,8 @@ test('Ctrl-C stops app, mail, broker, database in this order and leaves nothing'
 });
 
 test('a second start is up in seconds, with the data still there', async () => {
-	// Alone on two cores it takes about 3 s; other suites may run beside it.
-	expect(await restart()).toBeLessThan(20_000);
+	// A few seconds alone; measured 18 s on two cores with seven other programs at work.
+	expect(await restart()).toBeLessThan(30_000);
 	expect(product.said()).not.toContain('first admin');
 	expect(product.said()).not.toContain('changes of layout');
 });
