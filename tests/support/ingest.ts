@@ -136,7 +136,7 @@ export async function runPipeline(
 		void lease.hold(store.pool, lease.PIPELINE_LEASE, holder).catch(() => undefined);
 	}, 3_000);
 	const pipeline = await startPipeline({
-		pool: store.pool,
+		store,
 		subscriber,
 		secret,
 		log: quietLog(),

@@ -64,7 +64,7 @@ export function startSupervisor(deps: SupervisorDeps): Supervisor {
 	async function begin(): Promise<void> {
 		subscriber ??= startSubscriber(subscriberConfig(deps.config));
 		service = await startService({
-			pool: store.pool,
+			store,
 			subscriber,
 			secret: deps.secret,
 			log,

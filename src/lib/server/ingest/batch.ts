@@ -1,4 +1,4 @@
-import type { Pool, PoolConnection } from 'mysql2/promise';
+import type { Pool } from 'mysql2/promise';
 import type { NodeView } from '$lib/detection/types';
 import type { Log } from '$lib/server/log';
 import * as acts from '$lib/server/store/queries/acts';
@@ -24,6 +24,7 @@ import { gather, noteDuplicate, type ItemsByNode } from './steps/gather';
 import type { OpenedMessage } from './steps/open';
 import { storeArrivals, storeResults, type Hosts } from './steps/store';
 import { dayOf } from './tally';
+import type { Transaction, Transactions } from './transaction';
 import { Work } from './work';
 
 /** Bytes of a rejected message that are kept. */
@@ -37,12 +38,8 @@ export interface Room extends DetectRoom {
 	seen: SeenBlocks;
 	stamps: Stamps;
 	log: Log;
-	/** Name under which this process holds the pipeline's lease. */
-	holder: string;
+	transactions: Transactions;
 }
-
-/** Another copy has taken the pipeline over: nothing more may be written here. */
-export class LeaseLost extends Error {}
 
 export interface Batch {
 	opened: readonly OpenedMessage[];
@@ -66,10 +63,11 @@ export async function runBatch(
 	const work = new Work(room.stamps.next(), nowMs);
 	const items = await prepare(room, batch, work, touched);
 	const busy = addItems(room, batch, items, touched);
-	return await inTransaction(room, async (sql) => {
+	return await room.transactions.run(async (sql) => {
 		for (const act of batch.acts)
-			await acts.settleOutcome(sql, act.id, work.stampMs, takenWord(room, act));
-		const arrivals = storeArrivals(sql, work);
+			await acts.settleOutcome(sql.later, act.id, work.stampMs, takenWord(room, act));
+		await storeArrivals(sql.later, work);
+		const arrivals = sql.flush();
 		arrivals.catch(() => undefined);
 		const pumped = pumpAll(room, busy, nowMs);
 		await arrivals;
@@ -79,27 +77,6 @@ export async function runBatch(
 		await storeResults(sql, work, hostsOf(room, bare));
 		return work;
 	});
-}
-
-/** Runs `write` in one transaction under the pipeline's lease. */
-export async function inTransaction<T>(
-	room: Room,
-	write: (sql: PoolConnection) => Promise<T>
-): Promise<T> {
-	const connection = await room.pool.getConnection();
-	let clean = false;
-	try {
-		await connection.query('START TRANSACTION');
-		if (!(await lease.fence(connection, lease.PIPELINE_LEASE, room.holder))) throw new LeaseLost();
-		const result = await write(connection);
-		await connection.query('COMMIT');
-		clean = true;
-		return result;
-	} finally {
-		// After an error nobody knows what the connection still holds: it goes, and the server rolls back.
-		if (clean) connection.release();
-		else connection.destroy();
-	}
 }
 
 async function prepare(
@@ -212,7 +189,7 @@ function waitStored(entry: NodeEntry, queued: readonly { item: { atMs: number } 
 
 /** Withdrawn nodes leave their bays; closures begin and end. */
 async function leaveBays(
-	sql: PoolConnection,
+	sql: Transaction,
 	room: Room,
 	taken: readonly acts.ActRow[],
 	work: Work

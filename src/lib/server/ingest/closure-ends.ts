@@ -1,5 +1,4 @@
 import { run, select } from '$lib/server/store/queries/bulk';
-import { inTransaction } from './batch';
 import type { Pipeline } from './pipeline';
 import { allotAndWrite, type SiteNews } from './steps/feed';
 
@@ -45,7 +44,7 @@ async function end({ room }: Pipeline, row: EndedRow, nowMs: number): Promise<vo
 		shown: [],
 		other: [{ kind: 'closure', bayId: row.bayId, nodeId: row.nodeId }]
 	};
-	await inTransaction(room, async (sql) => {
+	await room.transactions.run(async (sql) => {
 		await run(sql, 'UPDATE closure SET stage = 2 WHERE id = ?', [row.id]);
 		await allotAndWrite(sql, new Map([[row.siteId, news]]), nowMs);
 	});

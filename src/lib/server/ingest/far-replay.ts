@@ -1,5 +1,5 @@
 import * as nodeState from '$lib/server/store/queries/node-state';
-import { hostsOf, inTransaction } from './batch';
+import { hostsOf } from './batch';
 import { inService } from './node-entry';
 import type { Pipeline } from './pipeline';
 import { beginFar, continueTo, DENSE_MS, nextWindowEnd, type Replay } from './replay';
@@ -52,7 +52,7 @@ async function finish(
 	if (now.length !== ids.length || !now.every((id, i) => id === ids[i])) return;
 	const work = new Work(room.stamps.next(), Date.now());
 	try {
-		await inTransaction(room, async (sql) => {
+		await room.transactions.run(async (sql) => {
 			await continueTo(sql, replay, Number.MAX_SAFE_INTEGER, Date.now() - DENSE_MS, room.stamps);
 			await adopt(sql, room, work, replay);
 			work.groups.add(replay.group);

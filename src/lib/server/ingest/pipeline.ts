@@ -1,12 +1,12 @@
 import { setTimeout as sleep } from 'node:timers/promises';
-import type { Pool } from 'mysql2/promise';
 import type { NodeView } from '$lib/detection/types';
 import type { Log } from '$lib/server/log';
 import type { Secret } from '$lib/server/secret';
+import type { Store } from '$lib/server/store/connect';
 import type { ActRow } from '$lib/server/store/queries/acts';
 import * as actQueries from '$lib/server/store/queries/acts';
 import { select } from '$lib/server/store/queries/bulk';
-import { LeaseLost, runBatch, viewOf, type Batch, type Room, type Touched } from './batch';
+import { runBatch, viewOf, type Batch, type Room, type Touched } from './batch';
 import { Groups } from './groups';
 import type { HostedGroup } from './hosted-group';
 import { Mutex } from './mutex';
@@ -17,9 +17,10 @@ import { SeenBlocks } from './seen-blocks';
 import { afterActs, isStructural, runStructural } from './structural-acts';
 import type { HeldMessage, Subscriber } from './subscriber-types';
 import type { OpenedMessage } from './steps/open';
+import { LeaseLost, Transactions } from './transaction';
 
 export interface PipelineDeps {
-	pool: Pool;
+	store: Store;
 	subscriber: Subscriber;
 	secret: Secret;
 	log: Log;
@@ -79,12 +80,12 @@ class RunningPipeline implements Pipeline {
 		const registry = new Registry(deps.secret);
 		let lastStampMs = 0;
 		this.room = {
-			pool: deps.pool,
+			pool: deps.store.pool,
 			registry,
 			groups: new Groups(registry, (ids) => this.#isAside(ids)),
 			seen: new SeenBlocks(),
 			log: deps.log,
-			holder: deps.holder,
+			transactions: new Transactions(async () => await deps.store.batchConnection(), deps.holder),
 			stamps: {
 				next: () => (lastStampMs = Math.max(lastStampMs + 1, Date.now())),
 				atLeast: (ms) => (lastStampMs = Math.max(lastStampMs, ms))
@@ -134,6 +135,7 @@ class RunningPipeline implements Pipeline {
 		this.#closed = true;
 		this.#wakeUp?.();
 		await this.#loop;
+		await this.#mutex.run(async () => this.room.transactions.close());
 		if (this.#timer !== null) clearTimeout(this.#timer);
 	}
 

@@ -1,6 +1,6 @@
-import type { Pool } from 'mysql2/promise';
 import type { Log } from '$lib/server/log';
 import type { Secret } from '$lib/server/secret';
+import type { Store } from '$lib/server/store/connect';
 import { endClosures } from './closure-ends';
 import { CommandSender } from './command-sender';
 import { replayMarked } from './far-replay';
@@ -13,7 +13,7 @@ import { SiteWatch } from './site-watch';
 import type { Subscriber } from './subscriber-types';
 
 export interface ServiceDeps {
-	pool: Pool;
+	store: Store;
 	subscriber: Subscriber;
 	secret: Secret;
 	log: Log;
@@ -58,7 +58,8 @@ export interface IngestService {
 
 /** Throws while the database does not answer; the caller tries again. */
 export async function startService(deps: ServiceDeps): Promise<IngestService> {
-	const { pool, subscriber, log } = deps;
+	const { subscriber, log } = deps;
+	const { pool } = deps.store;
 	const every = { ...EVERY, ...deps.every };
 	const watch = new HearingWatch();
 	await watch.load(pool, Date.now());

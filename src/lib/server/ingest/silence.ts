@@ -1,4 +1,4 @@
-import { inTransaction, hostsOf, viewOf } from './batch';
+import { hostsOf, viewOf } from './batch';
 import type { HearingWatch } from './hearing-watch';
 import { inService, type NodeEntry } from './node-entry';
 import type { Pipeline } from './pipeline';
@@ -68,7 +68,7 @@ async function storeSilence(
 	);
 	try {
 		for (const one of changed) tellSilence(pipeline, work, one, nowMs);
-		await inTransaction(room, async (sql) => {
+		await room.transactions.run(async (sql) => {
 			await storeResults(sql, work, hostsOf(room));
 		});
 	} catch (error) {

@@ -1,5 +1,4 @@
 import { inService } from './node-entry';
-import { inTransaction } from './batch';
 import type { Pipeline } from './pipeline';
 import { allotAndWrite, type SiteNews } from './steps/feed';
 
@@ -24,7 +23,7 @@ export class SiteWatch {
 			])
 		);
 		await pipeline.exclusive(async () => {
-			await inTransaction(pipeline.room, async (sql) => {
+			await pipeline.room.transactions.run(async (sql) => {
 				await allotAndWrite(sql, news, nowMs);
 			});
 		});

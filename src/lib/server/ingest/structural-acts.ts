@@ -6,9 +6,10 @@ import * as commands from '$lib/server/store/queries/commands';
 import * as ingest from '$lib/server/store/queries/ingest';
 import * as nodeState from '$lib/server/store/queries/node-state';
 import * as received from '$lib/server/store/queries/received';
-import { inTransaction, type Room } from './batch';
+import type { Room } from './batch';
 import { FAST_PERIOD_S } from './steps/aside';
 import { allotAndWrite } from './steps/feed';
+import type { Transaction } from './transaction';
 import { bareBay } from './bare-bay';
 import { closureStage } from './closure-stage';
 
@@ -27,7 +28,7 @@ export async function runStructural(
 	const ids = [...new Set(structural.flatMap(({ nodeId }) => nodeId ?? []))];
 	await room.registry.loadSome(room.pool, { ids }, nowMs);
 	const moved: number[] = [];
-	await inTransaction(room, async (sql) => {
+	await room.transactions.run(async (sql) => {
 		for (const act of structural) {
 			const outcome = await runOne(room, sql, act, nowMs);
 			await acts.settleOutcome(sql, act.id, room.stamps.next(), outcome);
@@ -50,7 +51,7 @@ async function takeUp(room: Room, ids: readonly number[], nowMs: number): Promis
 	room.groups.reconcile();
 }
 
-async function runOne(room: Room, sql: Sql, act: ActRow, nowMs: number): Promise<string> {
+async function runOne(room: Room, sql: Transaction, act: ActRow, nowMs: number): Promise<string> {
 	const { nodeId } = act;
 	if (nodeId === null) return await withoutNode(sql, act, nowMs);
 	const json = JSON.parse(act.args) as unknown;
@@ -67,7 +68,7 @@ async function runOne(room: Room, sql: Sql, act: ActRow, nowMs: number): Promise
 }
 
 /** A closure also holds for a bay without a node; anything else has nothing to act on. */
-async function withoutNode(sql: Sql, act: ActRow, nowMs: number): Promise<string> {
+async function withoutNode(sql: Transaction, act: ActRow, nowMs: number): Promise<string> {
 	if (act.kind !== 'close' && act.kind !== 'lift') return 'the bay has no node';
 	await closureStage(sql, act);
 	const change: NewChange = { kind: 'closure', bayId: act.bayId, nodeId: null };
@@ -81,7 +82,7 @@ async function withoutNode(sql: Sql, act: ActRow, nowMs: number): Promise<string
 
 async function place(
 	room: Room,
-	sql: Sql,
+	sql: Transaction,
 	act: ActRow & { nodeId: number },
 	{ preCommissioned }: { preCommissioned: boolean },
 	nowMs: number

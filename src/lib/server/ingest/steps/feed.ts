@@ -1,8 +1,8 @@
-import type { Sql } from '$lib/server/store/queries/bulk';
 import * as changes from '$lib/server/store/queries/changes';
 import * as ingest from '$lib/server/store/queries/ingest';
 import type { NodeEntry } from '../node-entry';
 import { firstDiffering } from '../order';
+import type { Transaction } from '../transaction';
 
 /** What one batch tells of one site. */
 export interface SiteNews {
@@ -24,24 +24,25 @@ const byTime = (a: SiteNews['events'][number], b: SiteNews['events'][number]): n
 
 /** Allots ids of each site's log and writes events, log and bay states under them; sites by rising id. */
 export async function allotAndWrite(
-	sql: Sql,
+	transaction: Transaction,
 	news: ReadonlyMap<number, SiteNews>,
 	nowMs: number
 ): Promise<void> {
 	for (const [siteId, site] of [...news].sort(([a], [b]) => a - b)) {
 		const n = site.events.length + site.shown.length + site.other.length;
-		if (n > 0) await writeSite(sql, siteId, site, n, nowMs);
+		if (n > 0) await writeSite(transaction, siteId, site, n, nowMs);
 	}
 }
 
 async function writeSite(
-	sql: Sql,
+	transaction: Transaction,
 	siteId: number,
 	site: SiteNews,
 	n: number,
 	nowMs: number
 ): Promise<void> {
-	const firstId = await changes.allot(sql, siteId, n);
+	const firstId = await changes.allot(transaction, siteId, n);
+	const sql = transaction.later;
 	const events = [...site.events].sort(byTime);
 	events.forEach(({ told }, i) => told(firstId + i));
 	stateOfVoids(site, events);

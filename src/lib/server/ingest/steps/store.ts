@@ -13,6 +13,7 @@ import * as rollups from '$lib/server/store/queries/rollups';
 import type { NodeEntry } from '../node-entry';
 import { firstDiffering } from '../order';
 import { changeBetween } from '../shown';
+import type { Transaction } from '../transaction';
 import type { Work } from '../work';
 import { allotAndWrite, type SiteNews } from './feed';
 
@@ -55,11 +56,16 @@ export interface Hosts {
 }
 
 /** What detection made of it: history, feed, what bays show, states. Returns nothing to undo: the caller commits. */
-export async function storeResults(sql: Sql, work: Work, hosts: Hosts): Promise<void> {
-	await storeJudgements(sql, work);
+export async function storeResults(
+	transaction: Transaction,
+	work: Work,
+	hosts: Hosts
+): Promise<void> {
+	const sql = transaction.later;
+	await storeJudgements(transaction, work);
 	await storeStates(sql, work, hosts);
 	const news = newsOf(work, hosts);
-	await allotAndWrite(sql, news, work.nowMs);
+	await allotAndWrite(transaction, news, work.nowMs);
 	for (const { historyId, eventId } of work.relinked)
 		await history.setEvent(sql, historyId, eventId);
 	for (const one of work.voided)
@@ -70,14 +76,15 @@ export async function storeResults(sql: Sql, work: Work, hosts: Hosts): Promise<
 	);
 }
 
-async function storeJudgements(sql: Sql, work: Work): Promise<void> {
+async function storeJudgements(transaction: Transaction, work: Work): Promise<void> {
+	const sql = transaction.later;
 	for (const [actId, outcome] of [...work.actsDone].sort(([a], [b]) => a - b))
 		await acts.settleOutcome(sql, actId, work.stampMs, outcome);
 	for (const { nodeId, reference } of work.learned) {
 		const bayId = bayOf(work, nodeId);
-		if (bayId !== null) await references.keepLearned(sql, nodeId, bayId, reference);
+		if (bayId !== null) await references.keepLearned(transaction, nodeId, bayId, reference);
 	}
-	for (const accepted of work.accepted) await references.accept(sql, accepted);
+	for (const accepted of work.accepted) await references.accept(transaction, accepted);
 	for (const verdict of work.judged) await pulses.judge(sql, verdict);
 	await nodeState.markHours(
 		sql,

@@ -1,7 +1,9 @@
-import type { Pool, PoolConnection, ResultSetHeader, RowDataPacket } from 'mysql2/promise';
+import type { ResultSetHeader } from 'mysql2/promise';
 
-/** A pool or one connection of it: all that a query needs. */
-export type Sql = Pick<Pool | PoolConnection, 'query'>;
+/** A pool, a connection of it or a transaction of the pipeline: all that a query needs. */
+export interface Sql {
+	query(text: string, values?: unknown[]): Promise<[unknown, unknown]>;
+}
 
 /** Keeps one statement under MariaDB's default packet of 16 MiB with room to spare. */
 const CHUNK_ROWS = 8_000;
@@ -39,8 +41,8 @@ export async function select<T>(
 	text: string,
 	values: readonly unknown[] = []
 ): Promise<T[]> {
-	const [rows] = await sql.query<RowDataPacket[]>(text, values as unknown[]);
-	return rows as unknown as T[];
+	const [rows] = await sql.query(text, [...values]);
+	return rows as T[];
 }
 
 export async function run(
@@ -48,6 +50,6 @@ export async function run(
 	text: string,
 	values: readonly unknown[] = []
 ): Promise<ResultSetHeader> {
-	const [header] = await sql.query<ResultSetHeader>(text, values as unknown[]);
-	return header;
+	const [header] = await sql.query(text, [...values]);
+	return header as ResultSetHeader;
 }

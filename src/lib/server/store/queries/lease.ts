@@ -43,17 +43,11 @@ export async function takeOver(
 }
 
 /**
- * Inside a batch's transaction: whether `holder` still has the lease. The shared lock makes a copy
- * that would take over wait for this transaction's end, so two pipelines never write at once.
+ * First in a batch's transaction: who has the lease. The shared lock makes a copy that would take over
+ * wait for this transaction's end, so two pipelines never write at once.
  */
-export async function fence(sql: Sql, name: string, holder: string): Promise<boolean> {
-	const rows = await select<{ holder: string }>(
-		sql,
-		'SELECT holder FROM lease WHERE name = ? LOCK IN SHARE MODE',
-		[name]
-	);
-	return rows[0]?.holder === holder;
-}
+export const fenceSql = (name: 'pipeline'): string =>
+	`SELECT holder FROM lease WHERE name = '${name}' LOCK IN SHARE MODE`;
 
 /** At a clean stop: the next copy need not wait. */
 export async function release(sql: Sql, name: string, holder: string): Promise<void> {
