@@ -27,8 +27,8 @@ export default {
 				sheet: ['1.429rem', '1.3'],
 				title: ['1.857rem', '1.2']
 			},
-			minHeight: { target: 'var(--target)' },
-			minWidth: { target: 'var(--target)' },
+			minHeight: { target: 'var(--target)', least: '24px' },
+			minWidth: { target: 'var(--target)', least: '24px' },
 			width: { notes: 'var(--notes)' },
 			maxWidth: { read: '68ch' }
 		}

@@ -1,6 +1,9 @@
+import type { Sql } from '$lib/server/store/queries/bulk';
+import * as acts from '$lib/server/store/queries/acts';
 import * as nodeState from '$lib/server/store/queries/node-state';
+import * as readings from '$lib/server/store/queries/readings';
 import { hostsOf } from './batch';
-import { inService } from './node-entry';
+import { inService, type NodeEntry } from './node-entry';
 import type { Pipeline } from './pipeline';
 import { beginFar, continueTo, DENSE_MS, nextWindowEnd, type Replay } from './replay';
 import { adopt } from './steps/detect';
@@ -28,6 +31,12 @@ export async function replayMarked(pipeline: Pipeline): Promise<boolean> {
 		...marks.filter(({ nodeId }) => ids.includes(nodeId)).map(({ hourMs }) => hourMs)
 	);
 	const replay = await beginFar(room.pool, room.groups, entries, markedMs);
+	if (replay.fromStampMs === 0 && !(await reachesBack(room.pool, entries, Date.now()))) {
+		// What is left would tell another history than the one that was true: the rows stay, states do not move.
+		room.log.warn({ nodes: ids.length }, 'late rows move no state: readings do not reach back');
+		await nodeState.clearMarks(room.pool, ids, beganMs);
+		return true;
+	}
 	const denseFromMs = Date.now() - DENSE_MS;
 	for (
 		let endMs = nextWindowEnd(replay);
@@ -37,6 +46,27 @@ export async function replayMarked(pipeline: Pipeline): Promise<boolean> {
 		await continueTo(room.pool, replay, endMs, denseFromMs, room.stamps);
 	await pipeline.exclusive(async () => await finish(pipeline, replay, ids, beganMs));
 	return true;
+}
+
+/** Whether all that a replay from the beginning needs is still in store: each node's placing and every row since. */
+async function reachesBack(
+	sql: Sql,
+	entries: readonly NodeEntry[],
+	nowMs: number
+): Promise<boolean> {
+	const placed = await acts.placings(
+		sql,
+		entries.map(({ id }) => id)
+	);
+	const kept = await readings.keptFromMs(
+		sql,
+		entries.map(({ config }) => config.siteId),
+		nowMs
+	);
+	return entries.every(({ id, config: { placedAtMs } }) => {
+		const inStore = placed.some((act) => act.nodeId === id && act.atMs === placedAtMs);
+		return inStore && placedAtMs !== null && placedAtMs >= kept;
+	});
 }
 
 /** The last rows, and the swap: between two batches, in one transaction. */

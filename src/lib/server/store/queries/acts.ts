@@ -50,6 +50,19 @@ export async function takenAfter(
 	);
 }
 
+/** Taken placings of some nodes, by node and event time. */
+export async function placings(
+	sql: Sql,
+	nodeIds: readonly number[]
+): Promise<{ nodeId: number; atMs: number }[]> {
+	if (nodeIds.length === 0) return [];
+	return await select(
+		sql,
+		"SELECT node_id AS nodeId, at_ms AS atMs FROM act WHERE kind = 'place' AND node_id IN (?) AND taken_at_ms IS NOT NULL",
+		[nodeIds]
+	);
+}
+
 export async function settleOutcome(
 	sql: Sql,
 	actId: number,

@@ -1,5 +1,7 @@
 import { insertTuples, numeral, select, type Sql } from './bulk';
 
+const DAY_MS = 86_400_000;
+
 /** One row of `reading`; counts are signed. */
 export interface ReadingRow {
 	nodeId: number;
@@ -48,6 +50,20 @@ export async function moving(
 		`SELECT ${COLUMNS} FROM reading WHERE node_id = ? AND at_ms >= ? AND at_ms < ? AND flags & 16 = 0 ORDER BY at_ms`,
 		[nodeId, fromMs, toMs]
 	);
+}
+
+/** From when on every one of these sites keeps its readings. */
+export async function keptFromMs(
+	sql: Sql,
+	siteIds: readonly number[],
+	nowMs: number
+): Promise<number> {
+	const rows = await select<{ days: number | null }>(
+		sql,
+		'SELECT MIN(reading_days) AS days FROM site WHERE id IN (?)',
+		[siteIds]
+	);
+	return nowMs - (rows[0]?.days ?? 0) * DAY_MS;
 }
 
 export interface RawCursor {
