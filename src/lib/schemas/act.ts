@@ -12,8 +12,11 @@ export const actArgs = {
 	/** One act a bay; `at_ms` of the row is when it begins. The `closure` row is already there. */
 	close: z.strictObject({ closureId: z.int(), toMs: z.int(), reason: z.string() }),
 	lift: z.strictObject({ closureId: z.int() }),
-	/** Rows of `parameter` or of the node itself changed: read them again. */
-	parameters: z.strictObject({}),
+	/**
+	 * The node itself changed: read it again. With ids of `parameter` rows: a setting that holds from the
+	 * batch that takes this, and the one that ends with it; then `node_id` may be null (the whole site).
+	 */
+	parameters: z.strictObject({ began: z.int().optional(), ended: z.int().optional() }),
 	accept_boot: z.strictObject({ boot: z.int().nonnegative() }),
 	/** Ask the node for a reading and a report now. */
 	ask: z.strictObject({})

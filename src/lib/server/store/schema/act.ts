@@ -61,7 +61,9 @@ export const parameter = mysqlTable(
 		fromMs: atMs('from_ms').notNull(),
 		untilMs: atMs('until_ms'),
 		byActor: varchar('by_actor', { length: 64 }).notNull(),
-		why: varchar('why', { length: 400 }).notNull()
+		why: varchar('why', { length: 400 }).notNull(),
+		endedBy: varchar('ended_by', { length: 64 }),
+		endedWhy: varchar('ended_why', { length: 400 })
 	},
 	(t) => [index('parameter_site').on(t.siteId, t.nodeId)]
 );
