@@ -73,8 +73,17 @@ export const outbox = mysqlTable(
 		leaseUntilMs: atMs('lease_until_ms'),
 		tries: smallint('tries').notNull().default(0),
 		lastError: mediumtext('last_error'),
+		/** SMTP reply code or HTTP status of the last try; 0 = none came. */
+		lastCode: smallint('last_code'),
+		/** For people: whom a mail is for and what of; its text is sealed. */
+		personId: int('person_id'),
+		messageId: varchar('message_id', { length: 120 }),
+		about: varchar('about', { length: 200 }).notNull().default(''),
 		sentAtMs: atMs('sent_at_ms'),
 		givenUpAtMs: atMs('given_up_at_ms')
 	},
-	(t) => [index('outbox_due').on(t.sentAtMs, t.givenUpAtMs, t.notBeforeMs)]
+	(t) => [
+		index('outbox_due').on(t.sentAtMs, t.givenUpAtMs, t.notBeforeMs),
+		index('outbox_person').on(t.personId, t.createdAtMs)
+	]
 );
