@@ -19,7 +19,8 @@ export async function create(
 		bayId: number;
 		nodeId: number | null;
 		reason: string;
-		askedBy: number;
+		/** null = a rule. */
+		askedBy: number | null;
 		askedAtMs: number;
 	}
 ): Promise<number> {

@@ -92,7 +92,12 @@ async function bayRows(db: Db, bayId: number, beforeMs: number, limit: number) {
 			})),
 		...requests.flatMap((r) => [
 			{
-				...{ atMs: r.askedAtMs, what: 'request', by: `person:${r.askedBy}`, serial: null },
+				...{
+					atMs: r.askedAtMs,
+					what: 'request',
+					by: r.askedBy === null ? 'rule' : `person:${r.askedBy}`,
+					serial: null
+				},
 				detail: { reason: r.reason }
 			},
 			...(r.endedAtMs === null

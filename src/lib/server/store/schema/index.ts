@@ -5,6 +5,7 @@ export * from './mail';
 export * from './node';
 export * from './notice';
 export * from './people';
+export * from './refresh';
 export * from './site';
 export * from './system';
 export * from './visit';

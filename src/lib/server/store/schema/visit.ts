@@ -17,9 +17,8 @@ export const visitRequest = mysqlTable(
 			.references(() => bay.id),
 		nodeId: int('node_id'),
 		reason: varchar('reason', { length: 400 }).notNull(),
-		askedBy: int('asked_by')
-			.notNull()
-			.references(() => person.id),
+		/** null = a rule: a film refresh that failed twice. */
+		askedBy: int('asked_by').references(() => person.id),
 		askedAtMs: atMs('asked_at_ms').notNull(),
 		takenBy: int('taken_by').references(() => person.id),
 		takenAtMs: atMs('taken_at_ms'),
