@@ -64,6 +64,16 @@ test('place: the rows stored since the given time are taken in, and the referenc
 	expect(refs).toEqual([{ provisional: 1, s: null }]);
 });
 
+test('what a node measured before it was placed says nothing of the bay, also when it comes afterwards', async () => {
+	const startMs = Date.now() - 30 * MIN;
+	await run.acts([[node, 'place', { preCommissioned: true }, startMs]]);
+	await send(startMs - 10 * MIN, QUIET, 60);
+	expect(await shown()).not.toMatchObject({ state: 'vacant' });
+	await send(startMs + 1_000, TAKEN, 60);
+	// Learned on what stands there now, not on the field of the box it came in.
+	expect(await run.rows('SELECT field_x FROM reference WHERE node_id = ?', [node.id])).toHaveLength(1);
+});
+
 test('place on a bay that another node holds is refused by name', async () => {
 	await inService();
 	const other = run.node(15);
@@ -198,6 +208,40 @@ test('parameters: an override reaches detection with the next row', async () => 
 	expect(await run.acts([[node, 'parameters', {}, atMs]])).toEqual(['done']);
 	await send(atMs + MIN, QUIET, 2);
 	expect(run.pipeline.viewOf(node.id)!.onMg).toBeGreaterThan(before);
+});
+
+test('parameters: a site’s setting holds from the batch that takes it; what came before is judged by what held then', async () => {
+	const atMs = await inService();
+	const onMg = () => run.pipeline.viewOf(node.id)!.onMg;
+	const before = onMg();
+	const [{ id: began } = { id: 0 }] = await run.rows<{ id: number }>(
+		"INSERT INTO parameter (site_id, name, value, from_ms, by_actor, why) VALUES (?, 'onMg', '90', 0, 'person:1', 'trucks') RETURNING id",
+		[run.site.siteId]
+	);
+	const site = { ...node, id: null as unknown as number, bayId: null as unknown as number };
+	const askedMs = Date.now();
+	expect(await run.acts([[site, 'parameters', { began }, askedMs]])).toEqual(['done']);
+	const [row] = await run.rows<{ fromMs: number }>(
+		'SELECT from_ms AS fromMs FROM parameter WHERE id = ?',
+		[began]
+	);
+	expect(row!.fromMs).toBeGreaterThanOrEqual(askedMs);
+	await send(atMs + MIN, QUIET, 2);
+	expect(onMg()).toBe(before);
+	await send(row!.fromMs + 1_000, QUIET, 2);
+	expect(onMg()).toBe(90);
+	const [{ id: next } = { id: 0 }] = await run.rows<{ id: number }>(
+		"INSERT INTO parameter (site_id, name, value, from_ms, by_actor, why) VALUES (?, 'onMg', '70', ?, 'person:1', 'less') RETURNING id",
+		[run.site.siteId, Date.now()]
+	);
+	expect(await run.acts([[site, 'parameters', { began: next, ended: began }, Date.now()]])).toEqual(
+		['done']
+	);
+	await send(Date.now() + 5_000, QUIET, 2);
+	expect(onMg()).toBe(70);
+	expect(await run.acts([[site, 'parameters', { ended: next }, Date.now()]])).toEqual(['done']);
+	await send(Date.now() + 30_000, QUIET, 2);
+	expect(onMg()).toBe(before);
 });
 
 test('heartbeats that change nothing change no row and no cursor', async () => {

@@ -51,9 +51,11 @@ export class Groups {
 			const same =
 				now !== undefined && now.length === ids.length && now.every((id, i) => id === ids[i]);
 			if (!same) this.forget(ids);
-			else
+			else {
 				for (const { config } of group.entries)
 					if (config.member !== null) setMember(group.state, config.member);
+				group.settingsMayDiffer();
+			}
 		}
 	}
 

@@ -8,6 +8,7 @@ import {
 	type States
 } from '$lib/server/store/queries/node-state';
 import type { NodeEntry } from './node-entry';
+import { spellAt } from './param-spells';
 import { compareOrder, eraAt, firstDiffering, type Order } from './order';
 
 /** A group waits at most this long, on arrival, for a bursting neighbour's rows (method, 'History and feed'). */
@@ -78,6 +79,8 @@ export class HostedGroup {
 	newestAtMs = 0;
 	lastSnapshotAtMs = 0;
 	#slowWritten = new Map<number, number>();
+	/** Event times for which the members' present settings hold. */
+	#settled = { fromMs: Infinity, toMs: -Infinity };
 
 	constructor(
 		readonly entries: readonly NodeEntry[],
@@ -209,9 +212,29 @@ export class HostedGroup {
 		return this.isBehindOwn(queued) || detection.isLate(this.state, queued.item);
 	}
 
+	/** The settings were read again. */
+	settingsMayDiffer(): void {
+		this.#settled = { fromMs: Infinity, toMs: -Infinity };
+	}
+
+	/** An item is judged by the settings of its own time: a change moves nothing that came before it. */
+	#settle(atMs: number): void {
+		if (atMs >= this.#settled.fromMs && atMs < this.#settled.toMs) return;
+		const span = { fromMs: -Infinity, toMs: Infinity };
+		for (const { config } of this.entries) {
+			const { params, fromMs, toMs } = spellAt(config.spells, atMs);
+			span.fromMs = Math.max(span.fromMs, fromMs);
+			span.toMs = Math.min(span.toMs, toMs);
+			if (config.member !== null && config.spells.length > 1)
+				detection.setMember(this.state, { ...config.member, params });
+		}
+		this.#settled = span;
+	}
+
 	/** Puts one item in, whatever its time. */
 	take(queued: Queued, outcomes: Outcome[]): void {
 		const { item, order } = queued;
+		this.#settle(item.atMs);
 		for (const outcome of detection.advance(this.state, item)) outcomes.push(outcome);
 		this.newestAtMs = Math.max(this.newestAtMs, item.atMs);
 		if (order !== null)

@@ -2,6 +2,7 @@ import type { GroupMember } from '$lib/detection/types';
 import type { SensorProfile } from '$lib/magnetics/sensor-profile';
 import type { FastRow, Pointer } from '$lib/server/store/queries/node-state';
 import type { ShownRow } from '$lib/server/store/queries/ingest';
+import type { Spell } from './param-spells';
 import { SkewWindow } from './skew';
 
 /** A node as registered: read from the database, changed by routes and by acts. */
@@ -20,6 +21,8 @@ export interface NodeConfig {
 	usualPeriodS: number;
 	placedAtMs: number | null;
 	withdrawnAtMs: number | null;
+	/** Overrides of settings by event time; `member` has those of now. */
+	spells: readonly Spell[];
 	/** null while the node is on no bay. */
 	member: GroupMember | null;
 }

@@ -16,6 +16,7 @@ const NO_SECRET = createSecret('no key is opened for a view of a node');
  */
 export async function readNodeView(sql: Sql, nodeId: number): Promise<NodeView | null> {
 	const registry = new Registry(NO_SECRET);
+	await registry.loadParameters(sql);
 	await registry.loadSome(sql, { ids: [nodeId] }, Date.now());
 	const entry = registry.byId(nodeId);
 	if (entry === undefined || entry.config.member === null) return null;

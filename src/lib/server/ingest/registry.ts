@@ -10,10 +10,9 @@ import * as nodeState from '$lib/server/store/queries/node-state';
 import { centreOf } from './bay-centre';
 import { chain, type Chains } from './chain';
 import { freshLive, inService, type NodeConfig, type NodeEntry, type NodeLive } from './node-entry';
+import { ParamSpells, spellAt, type Spell } from './param-spells';
 import { SkewWindow } from './skew';
 import type { NodeDirectoryEntry } from './subscriber-types';
-
-type Overrides = Map<string, Readonly<Record<string, number>>>;
 
 const NO_CHAINS: Chains = { groups: [], neighbours: new Map() };
 
@@ -24,7 +23,7 @@ export class Registry {
 	readonly #bySerial = new Map<string, NodeEntry>();
 	/** Opened keys by the sealed bytes, so that a re-read unseals only what changed. */
 	readonly #keys = new Map<string, Uint8Array | null>();
-	#overrides: Overrides = new Map();
+	#spells = new ParamSpells();
 	#chains: Chains = NO_CHAINS;
 	#groupOf = new Map<number, readonly number[]>();
 	#directory = new Map<string, NodeDirectoryEntry>();
@@ -35,7 +34,7 @@ export class Registry {
 
 	/** Reads everything; memory of known nodes stays as it is. */
 	async loadAll(sql: Sql, nowMs: number): Promise<void> {
-		this.#overrides = overridesOf(await ingest.parameters(sql, nowMs));
+		await this.loadParameters(sql);
 		const rows = await ingest.nodes(sql);
 		const known = new Set(this.#byId.keys());
 		const unknown = rows.some((row) => !known.has(row.id));
@@ -60,8 +59,9 @@ export class Registry {
 		await this.loadLives(sql, fresh);
 	}
 
-	async loadParameters(sql: Sql, nowMs: number): Promise<void> {
-		this.#overrides = overridesOf(await ingest.parameters(sql, nowMs));
+	/** Nodes take them up when they are next read. */
+	async loadParameters(sql: Sql): Promise<void> {
+		this.#spells = new ParamSpells(await ingest.parameters(sql));
 	}
 
 	/** Takes what is stored as what is known: after an error, and for nodes not seen before. */
@@ -163,6 +163,7 @@ export class Registry {
 
 	#configOf(row: ingest.RegisteredNode, nowMs: number): NodeConfig {
 		const profile = profileOf(row);
+		const spells = this.#spells.of(row.siteId, row.id);
 		return {
 			siteId: row.siteId,
 			bayId: row.bayId,
@@ -176,11 +177,17 @@ export class Registry {
 			usualPeriodS: row.usualPeriodS,
 			placedAtMs: row.placedAtMs,
 			withdrawnAtMs: row.withdrawnAtMs,
-			member: row.bayId === null ? null : this.#memberOf(row, profile)
+			spells,
+			member: row.bayId === null ? null : this.#memberOf(row, profile, spells, nowMs)
 		};
 	}
 
-	#memberOf(row: ingest.RegisteredNode, profile: SensorProfile): GroupMember {
+	#memberOf(
+		row: ingest.RegisteredNode,
+		profile: SensorProfile,
+		spells: readonly Spell[],
+		nowMs: number
+	): GroupMember {
 		const centre = row.geometry === null ? null : centreOf(row.geometry, row.latDeg, row.lonDeg);
 		return {
 			nodeId: row.id,
@@ -195,10 +202,7 @@ export class Registry {
 			// The usual period, not the one in force: a replay must find what live ingest found.
 			periodS: row.usualPeriodS,
 			graceS: row.graceS,
-			params: {
-				...this.#overrides.get(`site:${row.siteId}`),
-				...this.#overrides.get(`node:${row.id}`)
-			}
+			params: spellAt(spells, nowMs).params
 		};
 	}
 
@@ -258,18 +262,6 @@ export class Registry {
 			};
 		}
 	}
-}
-
-function overridesOf(
-	rows: readonly { siteId: number; nodeId: number | null; name: string; value: string }[]
-): Overrides {
-	const overrides = new Map<string, Record<string, number>>();
-	for (const { siteId, nodeId, name, value } of rows) {
-		const key = nodeId === null ? `site:${siteId}` : `node:${nodeId}`;
-		const number = Number(value);
-		if (Number.isFinite(number)) overrides.set(key, { ...overrides.get(key), [name]: number });
-	}
-	return overrides;
 }
 
 /** A stored profile that does not parse was written past the forms: the built-in of its name stands in. */

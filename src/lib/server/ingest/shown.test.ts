@@ -39,6 +39,7 @@ function entry(): NodeEntry {
 			usualPeriodS: 60,
 			placedAtMs: 1,
 			withdrawnAtMs: null,
+			spells: [],
 			member: null
 		},
 		live: freshLive()

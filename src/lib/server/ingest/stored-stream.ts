@@ -81,6 +81,10 @@ export async function storedItems(
 	return merged.sort(byTime);
 }
 
+/** A change of a setting, not of the node itself: detection is given it as the item's own settings. */
+export const isSetting = ({ kind, args }: Pick<acts.ActRow, 'kind' | 'args'>): boolean =>
+	kind === 'parameters' && args !== '{}';
+
 /** An act as detection takes it; null for those that concern ingest alone. */
 export function actItem(row: acts.ActRow): ActItem | null {
 	if (row.nodeId === null) return null;
@@ -101,8 +105,9 @@ export function actItem(row: acts.ActRow): ActItem | null {
 		}
 		case 'lift':
 		case 'withdraw':
-		case 'parameters':
 			return { ...base, act: { kind: row.kind } };
+		case 'parameters':
+			return isSetting(row) ? null : { ...base, act: { kind: row.kind } };
 		case 'accept_boot':
 		case 'ask':
 			return null;

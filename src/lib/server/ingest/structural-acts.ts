@@ -8,6 +8,7 @@ import * as nodeState from '$lib/server/store/queries/node-state';
 import * as received from '$lib/server/store/queries/received';
 import type { Room } from './batch';
 import { FAST_PERIOD_S } from './steps/aside';
+import { isSetting } from './stored-stream';
 import { allotAndWrite } from './steps/feed';
 import type { Transaction } from './transaction';
 import { bareBay } from './bare-bay';
@@ -16,8 +17,8 @@ import { closureStage } from './closure-stage';
 type ActRow = acts.ActRow;
 
 /** Acts that change which nodes there are or how they are counted: each is a transaction of its own. */
-export const isStructural = ({ kind, nodeId }: ActRow): boolean =>
-	nodeId === null || kind === 'place' || kind === 'accept_boot' || kind === 'ask';
+export const isStructural = (act: ActRow): boolean =>
+	act.nodeId === null || isSetting(act) || ['place', 'accept_boot', 'ask'].includes(act.kind);
 
 /** Runs some in one transaction; returns the nodes whose groups must be loaded with the next batch. */
 export async function runStructural(
@@ -32,9 +33,11 @@ export async function runStructural(
 		for (const act of structural) {
 			const outcome = await runOne(room, sql, act, nowMs);
 			await acts.settleOutcome(sql, act.id, room.stamps.next(), outcome);
-			if (act.nodeId !== null && act.kind !== 'ask' && outcome === 'done') moved.push(act.nodeId);
+			const moves = act.kind === 'place' || act.kind === 'accept_boot';
+			if (act.nodeId !== null && moves && outcome === 'done') moved.push(act.nodeId);
 		}
 	});
+	if (structural.some(isSetting)) await takeSettings(room, nowMs);
 	if (moved.length > 0) await takeUp(room, moved, nowMs);
 	const placed = new Set(structural.filter(({ kind }) => kind === 'place').map((a) => a.nodeId));
 	return moved.filter((id) => placed.has(id));
@@ -51,8 +54,18 @@ async function takeUp(room: Room, ids: readonly number[], nowMs: number): Promis
 	room.groups.reconcile();
 }
 
+/** Settings are few and their nodes may be all of a site: the registrations are read again whole. */
+async function takeSettings(room: Room, nowMs: number): Promise<void> {
+	await room.registry.loadAll(room.pool, nowMs);
+	room.groups.reconcile();
+}
+
 async function runOne(room: Room, sql: Transaction, act: ActRow, nowMs: number): Promise<string> {
 	const { nodeId } = act;
+	if (isSetting(act)) {
+		await ingest.turnParameters(sql, actArgs.parameters.parse(JSON.parse(act.args)), nowMs);
+		return 'done';
+	}
 	if (nodeId === null) return await withoutNode(sql, act, nowMs);
 	const json = JSON.parse(act.args) as unknown;
 	switch (act.kind) {
@@ -142,7 +155,7 @@ export async function afterActs(room: Room, taken: readonly ActRow[]): Promise<v
 	const ids = changed.flatMap(({ nodeId }) => nodeId ?? []);
 	if (ids.length === 0) return;
 	const nowMs = Date.now();
-	await room.registry.loadParameters(room.pool, nowMs);
+	await room.registry.loadParameters(room.pool);
 	await room.registry.loadSome(room.pool, { ids }, nowMs);
 	room.groups.reconcile();
 }

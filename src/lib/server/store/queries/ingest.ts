@@ -58,17 +58,34 @@ export async function nodesBySerial(
 	return await select(sql, `${NODES} WHERE n.serial IN (?) ORDER BY n.id`, [serials]);
 }
 
-/** Overrides of detection parameters in force at `nowMs`; a node's own come after its site's. */
-export async function parameters(
-	sql: Sql,
-	nowMs: number
-): Promise<{ siteId: number; nodeId: number | null; name: string; value: string }[]> {
+/** Every override of a setting that ever held: replays judge a row by what held at its own time. */
+export async function parameters(sql: Sql): Promise<StoredParameter[]> {
 	return await select(
 		sql,
-		`SELECT site_id AS siteId, node_id AS nodeId, name, value FROM parameter
-		 WHERE from_ms <= ? AND (until_ms IS NULL OR until_ms > ?) ORDER BY node_id IS NOT NULL, id`,
-		[nowMs, nowMs]
+		`SELECT site_id AS siteId, node_id AS nodeId, name, value, from_ms AS fromMs, until_ms AS untilMs
+		 FROM parameter ORDER BY id`
 	);
+}
+
+export interface StoredParameter {
+	siteId: number;
+	nodeId: number | null;
+	name: string;
+	value: string;
+	fromMs: number;
+	untilMs: number | null;
+}
+
+/** A setting holds, and the one before it ends, with the batch that takes it. */
+export async function turnParameters(
+	sql: Sql,
+	{ began, ended }: { began?: number | undefined; ended?: number | undefined },
+	atMs: number
+): Promise<void> {
+	if (began !== undefined)
+		await run(sql, 'UPDATE parameter SET from_ms = ? WHERE id = ?', [atMs, began]);
+	if (ended !== undefined)
+		await run(sql, 'UPDATE parameter SET until_ms = ? WHERE id = ?', [atMs, ended]);
 }
 
 /** Stored part of `node_fast` that the pipeline keeps in memory for every node. */
