@@ -9,6 +9,10 @@ export default {
 	preprocess: vitePreprocess(),
 	kit: {
 		adapter: adapter({ out: 'build', precompress: false }),
+		// components/sheet/device.svelte.ts does it, after the first drawing.
+		serviceWorker: { register: false },
+		// A shell kept by the service worker is opened from other paths too.
+		paths: { relative: false },
 		// hooks.server.ts checks Origin itself, for every content type (a plain 403 would break problem+json).
 		csrf: { trustedOrigins: ['*'] },
 		csp: {

@@ -10,7 +10,7 @@ let next = 0;
 const seqs = new Map<number, number>();
 
 beforeAll(async () => {
-	await run.begin({ nodes: 16 });
+	await run.begin({ nodes: 17 });
 });
 afterAll(async () => await run.end());
 beforeEach(() => (node = run.node(next++)));
@@ -70,13 +70,17 @@ test('what a node measured before it was placed says nothing of the bay, also wh
 	await send(startMs - 10 * MIN, QUIET, 60);
 	expect(await shown()).not.toMatchObject({ state: 'vacant' });
 	await send(startMs + 1_000, TAKEN, 60);
-	// Learned on what stands there now, not on the field of the box it came in.
-	expect(await run.rows('SELECT field_x FROM reference WHERE node_id = ?', [node.id])).toHaveLength(1);
+	// Learned on the field of the bay, not on that of the box it came in.
+	const [learned] = await run.rows<{ x: number }>(
+		'SELECT x_mg AS x FROM reference WHERE node_id = ?',
+		[node.id]
+	);
+	expect(learned?.x).toBeCloseTo(TAKEN[0] / 16.384, 0);
 });
 
 test('place on a bay that another node holds is refused by name', async () => {
 	await inService();
-	const other = run.node(15);
+	const other = run.node(16);
 	const taken = { ...other, bayId: node.bayId };
 	expect(await run.acts([[taken, 'place', { preCommissioned: false }, Date.now()]])).toEqual([
 		`the bay holds node ${node.serial}: withdraw it first`

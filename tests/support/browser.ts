@@ -25,6 +25,8 @@ export interface Desk {
 	theme?: ThemeName;
 	/** A phone: touch, coarse pointer. */
 	phone?: boolean;
+	/** Lets the service worker in: only the test of the offline shell wants it. */
+	worker?: boolean;
 	baseURL?: string;
 }
 
@@ -35,6 +37,7 @@ export async function openDesk(browser: Browser, desk: Desk): Promise<BrowserCon
 		colorScheme: desk.theme === 'blueprint' ? 'dark' : 'light',
 		hasTouch: desk.phone ?? false,
 		isMobile: desk.phone ?? false,
+		serviceWorkers: desk.worker === true ? 'allow' : 'block',
 		...(desk.baseURL === undefined ? {} : { baseURL: desk.baseURL })
 	});
 }

@@ -1,5 +1,6 @@
 import { instance } from '$lib/server/api/instance';
 import { PATHS } from '$lib/server/auth/paths';
+import { personIdOf } from '$lib/server/auth/reach';
 import { listed } from '$lib/server/store/queries/desk-sites';
 import { redirect } from '@sveltejs/kit';
 import type { LayoutServerLoad } from './$types';
@@ -14,7 +15,7 @@ export const load: LayoutServerLoad = async ({ locals, url, depends }) => {
 	if (reach.mustChangePassword) redirect(303, PATHS.password);
 	const sites = await listed(instance().store.db, reach.sites);
 	return {
-		person: { name: reach.name, role: reach.role },
+		person: { id: personIdOf(reach) ?? 0, name: reach.name, role: reach.role },
 		sites: sites.map(({ slug, name, timezone, demo }) => ({ slug, name, timezone, demo }))
 	};
 };

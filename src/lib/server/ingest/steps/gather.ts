@@ -112,7 +112,9 @@ function takeReading(checked: CheckedMessage, rows: readonly ReadingRow[], work:
 		}
 	}
 	if (!movesState(checked)) return [];
-	return rows.map((row) => queuedOf(checked, rowItem(row, config.profile), row.row));
+	// What a node measured before it was placed says nothing of its bay.
+	const inBay = rows.filter(({ atMs }) => atMs >= (config.placedAtMs ?? 0));
+	return inBay.map((row) => queuedOf(checked, rowItem(row, config.profile), row.row));
 }
 
 function takePulse(checked: CheckedMessage, pulse: PulseRow, work: Work): Queued[] {
