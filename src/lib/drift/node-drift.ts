@@ -203,6 +203,15 @@ export function applyPair(
 	};
 }
 
+/**
+ * A pulse without a pair, or a pair that was refused: the film may have been healed, so the level may have
+ * stepped, and nothing was measured.
+ */
+export const applyPulse = (drift: NodeDrift): NodeDrift => ({
+	...drift,
+	slopeState: breakSlope(drift.slopeState)
+});
+
 function pairSetting(drift: NodeDrift): PairSetting {
 	const { reference, tempcoPerC, slope, pairs, last, geomagneticMg } = drift;
 	return {

@@ -37,7 +37,7 @@ export const DRIFT_PARAMS = {
 		'temperature that bends less over a day tells slope from noise badly'
 	),
 	minTriples: param(40, 10, 1000, '1', 'fewer triples give no slope worth the name'),
-	slopeDays: param(60, 7, 120, 'd', 'long enough to average weather, short enough to follow age'),
+	slopeDays: param(60, 7, 60, 'd', 'long enough to average weather, short enough to follow age'),
 	offsetSlopeSpanC: param(10, 4, 40, '°C', 'pairs that span less do not tell an offset slope'),
 	lineNodes: param(5, 3, 50, '1', 'fewer nodes cannot outvote one that moved'),
 	lineSpreadMg: param(2, 0.5, 10, 'mG', 'nodes that disagree more see no common cause'),

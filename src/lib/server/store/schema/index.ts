@@ -1,6 +1,7 @@
 export * from './act';
 export * from './bay';
 export * from './change';
+export * from './drift';
 export * from './mail';
 export * from './node';
 export * from './notice';
