@@ -148,12 +148,11 @@ function drawFlag(pen: Pen, { layout, view }: Scene, flag: Flag): void {
 	const bay = layout.bays[flag.bay];
 	if (bay === undefined) return;
 	const corners = bay.corners.map((c) => toScreen(view, c));
-	const top = corners.reduce((a, b) => (b.y < a.y || (b.y === a.y && b.x > a.x) ? b : a));
+	const centre = toScreen(view, bay.centre);
 	const large = sizeOf(bay.shortM * view.scale) === 'large';
 	const [w, h] = large ? [6, 10] : [4.5, 8];
-	const tip = large
-		? { x: Math.max(...corners.map((c) => c.x)) - 8, y: top.y + 6 }
-		: toScreen(view, bay.centre);
+	// On the rim straight above the middle: at a corner it could be the neighbour's.
+	const tip = large ? { x: centre.x, y: rimAbove(corners, centre) + 4 } : centre;
 	const triangle = closedPath([
 		{ x: tip.x - w, y: tip.y - h },
 		{ x: tip.x + w, y: tip.y - h },
@@ -172,6 +171,16 @@ function drawFlag(pen: Pen, { layout, view }: Scene, flag: Flag): void {
 				cleared: true
 			}
 		);
+}
+
+/** Where a line straight up from inside leaves an outline, px. */
+function rimAbove(corners: readonly { x: number; y: number }[], from: { x: number; y: number }) {
+	const crossings = corners.flatMap((a, at) => {
+		const b = corners[(at + 1) % corners.length] ?? a;
+		if (a.x > from.x === b.x > from.x) return [];
+		return [a.y + ((from.x - a.x) / (b.x - a.x)) * (b.y - a.y)];
+	});
+	return Math.min(from.y, ...crossings);
 }
 
 function drawPicked(pen: Pen, scene: Scene): void {
