@@ -133,14 +133,18 @@ function drawThresholds(plot: uPlot, thresholds: readonly Threshold[], ink: stri
 	ctx.lineWidth = devicePixelRatio;
 	ctx.font = `${11 * devicePixelRatio}px 'JetBrains Mono', monospace`;
 	ctx.textAlign = 'right';
-	for (const { value, text } of thresholds) {
+	let lastY = -Infinity;
+	for (const { value, text } of [...thresholds].sort((a, b) => b.value - a.value)) {
 		const y = plot.valToPos(value, 'y', true);
+		// Two limits close together: the lower one's words go under its line.
+		const under = y - lastY < 16 * devicePixelRatio;
+		lastY = y;
 		ctx.setLineDash(DASH_DOT.map((v) => v * devicePixelRatio));
 		ctx.beginPath();
 		ctx.moveTo(left, y);
 		ctx.lineTo(left + width, y);
 		ctx.stroke();
-		ctx.fillText(text, left + width - 4, y - 4 * devicePixelRatio);
+		ctx.fillText(text, left + width - 4, y + (under ? 12 : -4) * devicePixelRatio);
 	}
 	ctx.restore();
 }
