@@ -196,7 +196,7 @@ test.each(desk.map(({ name }) => name))('%s answers each caller as its rule says
 	for (const [who, caller] of Object.entries(callers)) {
 		// Keys are not looked at here: a program without a session is nobody.
 		const may = caller.role !== null && (rule?.roles?.includes(caller.role) ?? false);
-		const reached = !path.includes('{site}') || caller.yard;
+		const reached = !/\{(site|serial)\}/.test(path) || caller.yard;
 		wanted[who] = caller.role === null ? 401 : !may ? 403 : reached ? 400 : 404;
 		got[who] = (await caller.ask(fill(path) + REFUSED_LATER, { method })).status;
 	}

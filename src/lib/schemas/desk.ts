@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { parameterIn, parameterQuery } from './desk-parameters';
 import { code } from './v1/common';
 import { spec } from './v1/spec';
 
@@ -62,6 +63,29 @@ export const DESK_ROUTES = {
 		scope: null,
 		roles: everyday,
 		body: z.strictObject({})
+	}),
+	parameters: spec({
+		summary: 'Every setting in force at a site, or for one node of it, and who changed it',
+		scope: null,
+		roles: everyone,
+		query: parameterQuery
+	}),
+	setParameter: spec({
+		summary: 'Set a setting of a site or node, or take it back',
+		scope: null,
+		roles: ['maintenance', 'admin'],
+		body: parameterIn
+	}),
+	undoParameter: spec({
+		summary: 'Undo the last change of a setting',
+		scope: null,
+		roles: ['maintenance', 'admin'],
+		body: z.strictObject({})
+	}),
+	earth: spec({
+		summary: 'A node’s quiet field against the Earth’s',
+		scope: null,
+		roles: everyone
 	}),
 	timeline: spec({
 		summary: 'Everything that happened to a bay and its nodes',

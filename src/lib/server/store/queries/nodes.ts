@@ -9,6 +9,11 @@ export async function bySerial(db: Db, serial: string): Promise<NodeRow | null> 
 	return rows[0] ?? null;
 }
 
+export async function byId(db: Db, id: number): Promise<NodeRow | null> {
+	const rows = await db.select().from(node).where(eq(node.id, id));
+	return rows[0] ?? null;
+}
+
 const summary = {
 	id: node.id,
 	serial: node.serial,
