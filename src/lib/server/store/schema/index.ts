@@ -10,3 +10,4 @@ export * from './refresh';
 export * from './site';
 export * from './system';
 export * from './visit';
+export * from './wall';
