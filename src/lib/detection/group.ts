@@ -200,6 +200,7 @@ export function view(group: Group, nodeId: number): NodeView {
 		evidence: slow.evidence,
 		fieldMg: heard ? triple(fast.last) : null,
 		baselineMg: based ? triple(fast.baseline) : null,
+		provisional: slow.reference?.provisional === true,
 		offsetMg: slow.offset,
 		disturbanceMg: heard && based ? disturbanceMg(n) : null,
 		onMg: onMg(n),

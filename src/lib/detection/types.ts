@@ -139,6 +139,8 @@ export interface NodeView {
 	evidence: Evidence;
 	fieldMg: Vec3 | null;
 	baselineMg: Vec3 | null;
+	/** The reference in use was accepted by rule and the field has not come back to it often enough. */
+	provisional: boolean;
 	offsetMg: Vec3 | null;
 	disturbanceMg: number | null;
 	onMg: number;

@@ -1,3 +1,4 @@
+import type { NodeView } from '$lib/detection/types';
 import { z } from 'zod';
 import type { NodeIn, NodePatch } from '$lib/schemas/v1/nodes';
 import { countsToMg, isClipped } from '$lib/magnetics/counts';
@@ -82,7 +83,7 @@ async function lastReading(db: Db, row: nodes.NodeRow) {
 	};
 }
 
-async function referenceView(db: Db, nodeId: number) {
+async function referenceView(db: Db, nodeId: number, view: NodeView | null) {
 	const r = await nodes.currentReference(db, nodeId);
 	if (r === null) return { reference: null, offsetMg: null };
 	const offset = vec(r.offsetXMg, r.offsetYMg, r.offsetZMg);
@@ -93,7 +94,7 @@ async function referenceView(db: Db, nodeId: number) {
 			sigmaMg: round2(r.sigmaMg),
 			tempC: r.tempC,
 			acceptedAt: rfc3339OrNull(r.acceptedAtMs),
-			provisional: r.provisional
+			provisional: r.provisional && (view?.provisional ?? true)
 		},
 		offsetMg: offset === null ? null : rounded(offset)
 	};
@@ -105,8 +106,9 @@ export async function nodeDetail(app: Instance, serial: string): Promise<Answer 
 	const row = await nodes.bySerial(db, serial);
 	const summary = row === null ? null : await nodes.summaryOf(db, row.id);
 	if (row === null || summary === null) return problem(404, 'There is no such node.');
-	const learned = await referenceView(db, row.id);
-	const inUse = (await app.nodeView(row.id))?.offsetMg ?? null;
+	const view = await app.nodeView(row.id);
+	const learned = await referenceView(db, row.id, view);
+	const inUse = view?.offsetMg ?? null;
 	return ok({
 		...nodeSummary(summary),
 		periodS: row.periodS,

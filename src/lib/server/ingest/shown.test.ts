@@ -15,6 +15,7 @@ const view: NodeView = {
 	evidence: { because: ['stands beside {node:2}'], against: [] },
 	fieldMg: null,
 	baselineMg: null,
+	provisional: false,
 	offsetMg: null,
 	disturbanceMg: null,
 	onMg: 35,
