@@ -5,7 +5,7 @@ import type { Vec3 } from '$lib/magnetics/vector';
 import type { Generated } from '../../../simulator/generate';
 import { inEventOrder, type GeneratedRow } from '../../../simulator/items';
 import { gradeSaid, type SaidChange, type Score } from '../support/grade';
-import { serverTimes } from '../support/server-times';
+import { inServerOrder } from '../support/server-times';
 import { adaptiveThreshold } from './adaptive-threshold';
 import { crossCorrelation } from './cross-correlation';
 import { fixedAxis } from './fixed-axis';
@@ -47,12 +47,11 @@ function firstOffset(
 	return [0, 0, 0];
 }
 
-function runNode(generated: Generated, nodeIndex: number): Running[] {
+function runNode(generated: Generated, at: Float64Array, nodeIndex: number): Running[] {
 	const { plan, truth } = generated;
 	const node = plan.nodes[nodeIndex]!;
 	const scale = builtInProfile(node.profileCode)!;
 	const offsetMg = firstOffset(generated, nodeIndex, scale);
-	const at = serverTimes(generated, nodeIndex);
 	const quiet: Vec3[] = [];
 	let running: Running[] = [];
 	for (const item of inEventOrder(generated, [nodeIndex], () => (m) => at[m]!)) {
@@ -84,7 +83,8 @@ function start(method: PublishedMethod, quiet: readonly Vec3[]): Running {
 
 /** Grades every published method on the same rows that ours gets; by place in PUBLISHED. */
 export function gradePublished(generated: Generated): Score[] {
-	const byNode = generated.plan.nodes.map((_, nodeIndex) => runNode(generated, nodeIndex));
+	const { ordered, times } = inServerOrder(generated);
+	const byNode = times.map((at, nodeIndex) => runNode(ordered, at, nodeIndex));
 	return PUBLISHED.map((_, which) => {
 		const saidOf = (bayIndex: number): SaidChange[] => {
 			const nodeIndex = generated.plan.nodes.findIndex((node) => node.bayIndex === bayIndex);

@@ -5,7 +5,7 @@ import { chain } from '$lib/server/ingest/chain';
 import type { Generated, PlannedAct } from '../../../simulator/generate';
 import { inEventOrder } from '../../../simulator/items';
 import { pulseItem, rowItem } from './group-items';
-import { serverTimes } from './server-times';
+import { inServerOrder } from './server-times';
 
 /** What a reader was told of a bay at a random instant. */
 export interface Look {
@@ -55,7 +55,10 @@ export function detect(generated: Generated, options: DetectOptions = {}): Detec
 		eastM,
 		northM
 	}));
-	for (const nodes of chain(placed).groups) detectGroup(generated, nodes, options, detected);
+	const inOrder = inServerOrder(generated);
+	for (const nodes of chain(placed).groups) {
+		detectGroup(inOrder, nodes, options, detected);
+	}
 	detected.entries.sort((a, b) => a.atMs - b.atMs);
 	return detected;
 }
@@ -105,7 +108,7 @@ function act(planned: PlannedAct, actId: number): ActItem {
 }
 
 function detectGroup(
-	generated: Generated,
+	{ ordered: generated, times }: ReturnType<typeof inServerOrder>,
 	nodes: readonly number[],
 	options: DetectOptions,
 	detected: Detected
@@ -116,14 +119,14 @@ function detectGroup(
 		.filter((planned) => nodes.includes(planned.nodeIndex))
 		.sort((a, b) => a.atMs - b.atMs);
 	const profiles = generated.plan.nodes.map((node) => builtInProfile(node.profileCode)!);
-	const times = (nodeIndex: number) => {
-		const at = serverTimes(generated, nodeIndex);
-		return (message: number) => at[message]!;
-	};
 	let nextAct = 0;
 	let nextLookMs = generated.truth.judgedFromMs + LOOK_EVERY_MS;
 	const startedAt = performance.now();
-	for (const item of inEventOrder(generated, nodes, times)) {
+	for (const item of inEventOrder(
+		generated,
+		nodes,
+		(nodeIndex) => (message) => times[nodeIndex]![message]!
+	)) {
 		while (nextAct < acts.length && acts[nextAct]!.atMs <= item.atMs) {
 			take(detected, live, advance(group, act(acts[nextAct]!, nextAct + 1)));
 			nextAct++;

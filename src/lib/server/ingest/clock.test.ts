@@ -7,7 +7,7 @@ const message = (over: Partial<TimedMessage>): TimedMessage => ({
 	t: NOW - 5_000,
 	lastDtMs: 0,
 	sentMs: null,
-	lateBoot: false,
+	behind: false,
 	arrivedAtMs: NOW,
 	...over
 });
@@ -83,9 +83,9 @@ describe('a message on the clock of the server', () => {
 		expect(place({ t: NOW - CLOCK.oldestMovingMs }).flags).toBe(0);
 	});
 
-	test('a late boot without a usable clock moves nothing, one with a clock does', () => {
-		expect(place({ t: 0, lateBoot: true }).flags).toBe(FLAG.clockless | FLAG.unmoving);
-		expect(place({ lateBoot: true }).flags).toBe(0);
+	test('a straggler without a usable clock moves nothing, one with a clock does', () => {
+		expect(place({ t: 0, behind: true }).flags).toBe(FLAG.clockless | FLAG.unmoving);
+		expect(place({ behind: true }).flags).toBe(0);
 	});
 });
 

@@ -31,8 +31,8 @@ export interface TimedMessage {
 	lastDtMs: number;
 	/** Key 23, null when it did not come. */
 	sentMs: number | null;
-	/** From a boot before the newest heard. */
-	lateBoot: boolean;
+	/** Sent before one that is already heard (lower boot, or lower seq of the same boot). */
+	behind: boolean;
 	arrivedAtMs: number;
 }
 
@@ -40,8 +40,8 @@ export interface TimedMessage {
 function atArrival(message: TimedMessage, clockOff: boolean | null): MessageTime {
 	const baseMs = message.arrivedAtMs - message.lastDtMs;
 	const flag = message.t === 0 ? FLAG.clockless : FLAG.shifted;
-	// A late boot without a usable clock says nothing of when it was: it is kept and moves nothing.
-	return { baseMs, flags: flag | (message.lateBoot ? FLAG.unmoving : 0), clockOff };
+	// Without a usable clock a straggler says nothing of when it was: it is kept and moves nothing.
+	return { baseMs, flags: flag | (message.behind ? FLAG.unmoving : 0), clockOff };
 }
 
 /**

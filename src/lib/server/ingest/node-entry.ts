@@ -38,6 +38,8 @@ export interface Silence {
 export interface NodeLive {
 	heardAtMs: number | null;
 	heardBoot: number | null;
+	/** Highest seq of that boot heard since the node was loaded; -1 = none. */
+	heardSeq: number;
 	/** How far detection has taken its rows. */
 	pointer: Pointer | null;
 	waitingFromMs: number | null;
@@ -66,6 +68,7 @@ export interface NodeEntry {
 export const freshLive = (): NodeLive => ({
 	heardAtMs: null,
 	heardBoot: null,
+	heardSeq: -1,
 	pointer: null,
 	waitingFromMs: null,
 	last: null,

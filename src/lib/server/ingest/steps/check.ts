@@ -1,7 +1,7 @@
 import type { Block } from '$lib/server/store/queries/received';
 import type { UpFrame } from '$lib/wire/types';
 import { placeInTime, type MessageTime } from '../clock';
-import type { NodeEntry } from '../node-entry';
+import type { NodeEntry, NodeLive } from '../node-entry';
 import type { SeenBlocks } from '../seen-blocks';
 import type { HeldMessage } from '../subscriber-types';
 
@@ -45,16 +45,24 @@ export function check(messages: readonly FrameMessage[], seen: SeenBlocks): Chec
 	return { fresh, duplicates, blocks: [...blocks] };
 }
 
+/** Notes how far a node is heard; true = this message was sent before one that is already heard. */
+function isBehind(live: NodeLive, { boot, seq }: UpFrame): boolean {
+	const newBoot = live.heardBoot === null || boot > live.heardBoot;
+	if (!newBoot && (boot < (live.heardBoot ?? 0) || seq < live.heardSeq)) return true;
+	live.heardBoot = boot;
+	live.heardSeq = seq;
+	return false;
+}
+
 function timeOf({ message, entry, frame }: FrameMessage): MessageTime {
 	const { live } = entry;
-	const lateBoot = live.heardBoot !== null && frame.boot < live.heardBoot;
-	if (!lateBoot) live.heardBoot = frame.boot;
+	const behind = isBehind(live, frame);
 	return placeInTime(
 		{
 			t: frame.t,
 			lastDtMs: lastDtMs(frame),
 			sentMs: frame.sentMs,
-			lateBoot,
+			behind,
 			arrivedAtMs: message.arrivedAtMs
 		},
 		live.skew
