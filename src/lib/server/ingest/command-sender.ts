@@ -60,7 +60,7 @@ export class CommandSender {
 		await commands.answer(sql, command.id, command.nodeId, {
 			atMs: nowMs,
 			outcome: 2,
-			reason: 'the node started anew before it could obey'
+			reason: commands.STARTED_ANEW
 		});
 		if (command.byActor !== 'rule' || command.cause.startsWith('refresh')) return;
 		const { nodeId, verb, periodS, deltaMg, cause, byActor, expiresAtMs } = command;

@@ -5,6 +5,8 @@ import { deltaFor, FAST_PERIOD_S } from './steps/aside';
 
 /** A reading that was asked for has come by then, and the usual habit is put back. */
 const ASKED_FOR_MS = 60_000;
+/** While a film refresh counts its still readings; its worker puts the usual back sooner. */
+const PROVING_MS = 900_000;
 /** A habit that was not taken is asked for again after this; a node may be out of reach for days. */
 const AGAIN_MS = 900_000;
 const EXPIRES_MS = 86_400_000;
@@ -81,7 +83,7 @@ export function mayOrder(
 	const isOpen = last.answeredAtMs === null && last.expiresAtMs > nowMs;
 	if (last.cause.startsWith('ask') || last.cause.startsWith('refresh')) {
 		const sinceMs = last.answeredAtMs ?? (isOpen ? nowMs : last.expiresAtMs);
-		return nowMs - sinceMs >= ASKED_FOR_MS;
+		return nowMs - sinceMs >= (last.cause.startsWith('refresh') ? PROVING_MS : ASKED_FOR_MS);
 	}
 	const same = last.periodS === wanted.periodS && last.deltaMg === wanted.deltaMg;
 	if (!same) return true;

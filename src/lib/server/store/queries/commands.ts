@@ -20,7 +20,12 @@ export interface CommandRow {
 	outcome: number | null;
 }
 
+/** Said of a command whose node started anew before it answered: the node's own word, when it comes, outdoes it. */
+export const STARTED_ANEW = 'the node started anew before it could obey';
+
 export interface NewCommand {
+	/** 8 bytes; made at random when left out. */
+	id?: Buffer;
 	nodeId: number;
 	verb: Verb;
 	report: { periodS: number; deltaMg: number } | null;
@@ -38,7 +43,7 @@ const COLUMNS =
 
 /** Orders a command; the sender picks it up. Returns its id. */
 export async function order(sql: Sql, command: NewCommand): Promise<Buffer> {
-	const id = randomBytes(8);
+	const id = command.id ?? randomBytes(8);
 	await run(
 		sql,
 		'INSERT INTO command (id, node_id, verb, period_s, delta_mg, boot, cause, by_actor, created_at_ms, expires_at_ms) VALUES (?)',
@@ -93,13 +98,14 @@ export async function answer(
 ): Promise<void> {
 	await run(
 		sql,
-		'UPDATE command SET answered_at_ms = ?, outcome = ?, reason = ? WHERE id = ? AND node_id = ? AND answered_at_ms IS NULL',
+		'UPDATE command SET answered_at_ms = ?, outcome = ?, reason = ? WHERE id = ? AND node_id = ? AND (answered_at_ms IS NULL OR reason = ?)',
 		[
 			answered.atMs,
 			answered.outcome,
 			answered.reason?.slice(0, 200) ?? null,
 			Buffer.from(id),
-			nodeId
+			nodeId,
+			STARTED_ANEW
 		]
 	);
 }
