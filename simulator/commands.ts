@@ -1,6 +1,6 @@
 import type { CommandFrame } from '$lib/wire/types';
 import { firePulse, sendAck, type Out } from './node-frames';
-import { setHabit } from './node';
+import { ownBeatMs, setHabit } from './node';
 import type { NodeState } from './node-state';
 
 /** What a node remembers of a command it has obeyed; kept over a reboot (protocol, `down`). */
@@ -75,7 +75,9 @@ const NO_PULSE = { before: null, after: null };
 
 function obey(node: NodeState, command: CommandFrame, nowMs: number, out: Out) {
 	if (command.verb === 'report') {
-		if (command.report !== null) setHabit(node, command.report, nowMs);
+		if (command.report === null) return null;
+		setHabit(node, command.report, nowMs);
+		node.heartbeatMs = ownBeatMs(node.config.serial, command.report.periodS, nowMs);
 		return null;
 	}
 	if (command.verb === 'pair') {

@@ -3,6 +3,7 @@ import { existsSync, mkdirSync, readFileSync, renameSync, writeFileSync } from '
 import { join } from 'node:path';
 import type { Obeyed } from './commands';
 import type { Film } from './film';
+import { ownBeatMs } from './node';
 import type { NodeState } from './node-state';
 import { rotationOf } from './node-field';
 
@@ -102,7 +103,7 @@ export function recallNode(node: NodeState, kept: KeptNode): void {
 	node.boot = kept.boot;
 	node.seq = kept.seqFrom;
 	node.atMs = kept.atMs;
-	node.heartbeatMs = Math.ceil(kept.atMs + kept.habit.periodS * 1000);
+	node.heartbeatMs = ownBeatMs(node.config.serial, kept.habit.periodS, kept.atMs);
 	node.eventNext = kept.eventNext;
 	node.film = kept.film;
 	node.field.surroundingsMg = kept.surroundingsMg;

@@ -116,3 +116,11 @@ export function setHabit(node: NodeState, habit: NodeState['habit'], atMs: numbe
 	node.habit = habit;
 	node.heartbeatMs = Math.round(atMs + habit.periodS * 1000);
 }
+
+/** The next heartbeat of a node that keeps a phase of its own: a fleet told at one moment does not beat as one. */
+export function ownBeatMs(serial: string, periodS: number, atMs: number): number {
+	let phase = 0;
+	for (const letter of serial) phase = (phase * 31 + letter.charCodeAt(0)) % 997;
+	const periodMs = periodS * 1000;
+	return Math.round(atMs + (periodMs * (1 + ((phase * 7) % 997))) / 997);
+}
