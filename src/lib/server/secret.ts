@@ -2,7 +2,7 @@ import { createCipheriv, createDecipheriv, hkdfSync, randomBytes } from 'node:cr
 
 /** What a sealed value is for; each purpose has a key of its own. */
 export type Purpose =
-	'node key' | 'outbox' | 'idempotency' | 'webhook secret' | 'session' | 'check';
+	'node key' | 'outbox' | 'idempotency' | 'webhook secret' | 'session' | 'check' | 'mail link';
 
 export type Opened =
 	| { ok: true; bytes: Buffer; /** Sealed under the former secret. */ previous: boolean }

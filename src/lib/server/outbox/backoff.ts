@@ -1,5 +1,5 @@
-/** Given up after a day: what a one-time link could still do then is worth nothing. */
-export const GIVE_UP_MS = 24 * 3_600_000;
+/** Given up after two days: a mail server that is down over a night or a day loses nothing. */
+export const GIVE_UP_MS = 48 * 3_600_000;
 const FIRST_MS = 15_000;
 const LONGEST_MS = 3_600_000;
 

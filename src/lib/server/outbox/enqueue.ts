@@ -4,24 +4,26 @@ import * as outbox from '$lib/server/store/queries/outbox';
 import type { Db } from '$lib/server/store/queries/people';
 import type { Mail } from './mail';
 
-export interface MailWanted {
-	to: string;
-	subject: string;
-	text: string;
-	demo: boolean;
+export interface MailWanted extends Omit<Mail, 'messageId'> {
+	messageId?: string;
 	/** Two mails with one key are one mail. */
 	dedupeKey?: string;
+	/** The person it is for: what the mail server says of it is shown to admins. */
+	personId?: number;
 }
 
-/** In the caller's transaction: the mail goes when and only when that commits. */
+/** Its right half is no host that takes mail; RFC 5322 asks only that the whole is unique. */
+export const newMessageId = (): string => `<${randomUUID()}@lodekeep>`;
+
+/** In the caller's transaction: the mail goes when and only when that commits. Returns its Message-ID. */
 export async function enqueueMail(
 	db: Db,
 	secret: Secret,
 	wanted: MailWanted,
 	nowMs: number
-): Promise<void> {
-	const { dedupeKey, ...rest } = wanted;
-	const mail: Mail = { ...rest, messageId: `<${randomUUID()}@lodekeep>` };
+): Promise<string> {
+	const { dedupeKey, personId, messageId = newMessageId(), ...rest } = wanted;
+	const mail: Mail = { ...rest, messageId };
 	await outbox.add(
 		db,
 		{
@@ -30,8 +32,10 @@ export async function enqueueMail(
 			dedupe:
 				dedupeKey === undefined
 					? null
-					: createHash('sha256').update(dedupeKey).digest().subarray(0, 16)
+					: createHash('sha256').update(dedupeKey).digest().subarray(0, 16),
+			...{ personId: personId ?? null, messageId, about: rest.subject }
 		},
 		nowMs
 	);
+	return messageId;
 }

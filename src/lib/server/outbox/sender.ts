@@ -1,15 +1,19 @@
-import { createTransport } from 'nodemailer';
 import type { Config } from '$lib/server/config';
 import type { Log } from '$lib/server/log';
 import type { Secret } from '$lib/server/secret';
 import type { Database } from '$lib/server/store/connect';
 import * as outbox from '$lib/server/store/queries/outbox';
 import { backoffMs, GIVE_UP_MS } from './backoff';
-import { mail, type Mail } from './mail';
+import { mail } from './mail';
+import { openDelivery, type Delivery } from './transport';
 
-const LEASE_MS = 120_000;
 const LOOK_EVERY_MS = 2_000;
-const AT_ONCE = 10;
+/** As many as are on their way at once: the lease holds for one mail's time, not for a queue's. */
+const AT_ONCE = 8;
+/** A server that dribbles its answers is not waited for longer. */
+const ONE_MAIL_MS = 60_000;
+/** Well over `ONE_MAIL_MS`: a row is not another's while this one is still sending it. */
+const LEASE_MS = 120_000;
 
 export interface Sender {
 	/** Something was enqueued: look now. */
@@ -18,47 +22,20 @@ export interface Sender {
 	close(): Promise<void>;
 }
 
-interface Parts {
+export interface SenderParts {
 	db: Database;
 	secret: Secret;
 	log: Log;
 	config: Pick<Config, 'smtpUrl' | 'mailFrom' | 'mailCatcherPort'>;
-}
-
-type Deliver = (m: Mail) => Promise<void>;
-
-const timeouts = { connectionTimeout: 10_000, greetingTimeout: 10_000, socketTimeout: 20_000 };
-
-/** Through SMTP_URL, or to the catcher; mail of the demo only ever to the catcher. */
-function delivery(config: Parts['config']): Deliver {
-	const catcher =
-		config.mailCatcherPort === 0
-			? null
-			: createTransport({
-					host: '127.0.0.1',
-					port: config.mailCatcherPort,
-					secure: false,
-					ignoreTLS: true,
-					...timeouts
-				});
-	const outside = config.smtpUrl === null ? catcher : createTransport(config.smtpUrl, timeouts);
-	return async (m) => {
-		const transport = m.demo ? catcher : outside;
-		if (transport === null) throw new Error('no mail server is set: SMTP_URL is missing');
-		await transport.sendMail({
-			from: config.mailFrom,
-			to: m.to,
-			subject: m.subject,
-			text: m.text,
-			messageId: m.messageId,
-			headers: { 'Auto-Submitted': 'auto-generated' }
-		});
-	};
+	/** Tests and the bench watch and shorten. */
+	lookEveryMs?: number;
+	leaseMs?: number;
+	delivery?: Delivery;
 }
 
 /** Sends what waits in the outbox, at least once each, until closed. */
-export function startSender(parts: Parts): Sender {
-	const deliver = delivery(parts.config);
+export function startSender(parts: SenderParts): Sender {
+	const delivery = parts.delivery ?? openDelivery(parts.config);
 	let closed = false;
 	let woken: (() => void) | null = null;
 	let timer: NodeJS.Timeout | undefined;
@@ -66,7 +43,7 @@ export function startSender(parts: Parts): Sender {
 	const rest = async (): Promise<void> => {
 		await new Promise<void>((go) => {
 			woken = go;
-			timer = setTimeout(go, LOOK_EVERY_MS);
+			timer = setTimeout(go, parts.lookEveryMs ?? LOOK_EVERY_MS);
 			timer.unref();
 		});
 		clearTimeout(timer);
@@ -74,8 +51,8 @@ export function startSender(parts: Parts): Sender {
 	};
 	const loop = async (): Promise<void> => {
 		while (!closed) {
-			const busy = await sendDue(parts, deliver).catch((error: unknown) => {
-				parts.log.debug({ reason: reasonOf(error) }, 'outbox: the database is away');
+			const busy = await sendDue(parts, delivery).catch((error: unknown) => {
+				parts.log.debug({ reason: replyOf(error).text }, 'outbox: the database is away');
 				return false;
 			});
 			if (!busy && !closed) await rest();
@@ -88,41 +65,84 @@ export function startSender(parts: Parts): Sender {
 			closed = true;
 			woken?.();
 			await running;
+			delivery.close();
 		}
 	};
 }
 
 /** One round; true when there may be more. */
-async function sendDue(parts: Parts, deliver: Deliver): Promise<boolean> {
+async function sendDue(parts: SenderParts, delivery: Delivery): Promise<boolean> {
 	const rows = await outbox.claim(parts.db, 'mail', {
 		nowMs: Date.now(),
-		leaseMs: LEASE_MS,
+		leaseMs: parts.leaseMs ?? LEASE_MS,
 		limit: AT_ONCE
 	});
-	for (const row of rows) await sendOne(parts, deliver, row);
+	const ends = await Promise.allSettled(
+		rows.map(async (row) => {
+			await sendOne(parts, delivery, row);
+		})
+	);
+	// Sent but not written down: its lease ends and it goes once more, under the same Message-ID.
+	for (const end of ends)
+		if (end.status === 'rejected')
+			parts.log.warn({ reason: replyOf(end.reason).text }, 'a mail’s end could not be stored');
 	return rows.length === AT_ONCE;
 }
 
-async function sendOne(parts: Parts, deliver: Deliver, row: outbox.Claimed): Promise<void> {
+async function sendOne(parts: SenderParts, delivery: Delivery, row: outbox.Claimed): Promise<void> {
+	const failure = await tryOne(parts, delivery, row);
+	const nowMs = Date.now();
+	if (failure === null) {
+		await outbox.sent(parts.db, row.id, nowMs);
+		return;
+	}
+	const tries = row.tries + 1;
+	const over = nowMs - row.createdAtMs > GIVE_UP_MS;
+	parts.log.warn({ mail: row.id, tries, over, reply: failure.text }, 'mail not sent');
+	await outbox.failed(parts.db, row.id, {
+		...{ error: failure.text, code: failure.code, notBeforeMs: nowMs + backoffMs(tries) },
+		givenUpAtMs: over ? nowMs : null
+	});
+}
+
+/** null = the mail server has it. */
+async function tryOne(
+	parts: SenderParts,
+	delivery: Delivery,
+	row: outbox.Claimed
+): Promise<Reply | null> {
 	const opened = parts.secret.open('outbox', 'mail', row.payloadSealed);
 	const parsed = opened.ok ? mail.safeParse(JSON.parse(opened.bytes.toString('utf8'))) : null;
+	if (parsed?.success !== true) return { text: 'the sealed mail cannot be opened', code: 0 };
+	let timer: NodeJS.Timeout | undefined;
+	const late = new Promise<never>((_, fail) => {
+		timer = setTimeout(() => {
+			fail(new Error('the mail server took too long'));
+		}, ONE_MAIL_MS);
+	});
 	try {
-		if (parsed?.success !== true) throw new Error('the sealed mail cannot be opened');
-		await deliver(parsed.data);
-		await outbox.sent(parts.db, row.id, Date.now());
+		await Promise.race([delivery.deliver(parsed.data), late]);
+		return null;
 	} catch (error) {
-		const nowMs = Date.now();
-		const tries = row.tries + 1;
-		const over = nowMs - row.createdAtMs > GIVE_UP_MS;
-		await outbox.failed(parts.db, row.id, {
-			error: reasonOf(error),
-			notBeforeMs: nowMs + backoffMs(tries),
-			givenUpAtMs: over ? nowMs : null
-		});
-		parts.log.warn({ mail: row.id, tries, over, reason: reasonOf(error) }, 'mail not sent');
+		return replyOf(error);
+	} finally {
+		clearTimeout(timer);
 	}
 }
 
-/** The first line, without addresses and text of the mail. */
-const reasonOf = (error: unknown): string =>
-	(error instanceof Error ? error.message : String(error)).split('\n')[0]?.slice(0, 200) ?? '';
+interface Reply {
+	text: string;
+	/** SMTP reply code; 0 = none came. */
+	code: number;
+}
+
+/** The mail server's reply, else the first line of what went wrong: no address, nothing of the mail. */
+function replyOf(error: unknown): Reply {
+	const { response, responseCode, message } = error as {
+		response?: string;
+		responseCode?: number;
+		message?: string;
+	};
+	const text = (response ?? message ?? String(error)).split('\n')[0] ?? '';
+	return { text: text.slice(0, 200), code: responseCode ?? 0 };
+}

@@ -1,12 +1,17 @@
-import { and, asc, eq, inArray, isNull, lt, lte, or, sql } from 'drizzle-orm';
+import { and, asc, desc, eq, inArray, isNull, lt, lte, or, sql } from 'drizzle-orm';
 import type { Database } from '../connect';
-import { outbox } from '../schema';
+import { outbox, person } from '../schema';
+import { select, type Sql } from './bulk';
 import type { Db } from './people';
 
 export interface Queued {
 	kind: 'mail' | 'webhook';
 	payloadSealed: Buffer;
 	dedupe: Buffer | null;
+	/** For people: whom it is for and what it is about; null and '' where that says too much. */
+	personId?: number | null;
+	messageId?: string | null;
+	about?: string;
 }
 
 /** One that has the dedupe of another is that other: nothing is added. */
@@ -71,22 +76,75 @@ export async function claim(
 export async function sent(db: Db, id: number, nowMs: number): Promise<void> {
 	await db
 		.update(outbox)
-		.set({ sentAtMs: nowMs, leaseUntilMs: null, lastError: null, payloadSealed: Buffer.alloc(0) })
+		.set({
+			...{ sentAtMs: nowMs, leaseUntilMs: null, lastError: null, lastCode: null },
+			payloadSealed: Buffer.alloc(0)
+		})
 		.where(eq(outbox.id, id));
 }
 
-export async function failed(
-	db: Db,
-	id: number,
-	o: { error: string; notBeforeMs: number; givenUpAtMs: number | null }
-): Promise<void> {
+export interface Failure {
+	error: string;
+	/** SMTP reply or HTTP status; 0 = none came. */
+	code: number;
+	notBeforeMs: number;
+	givenUpAtMs: number | null;
+}
+
+export async function failed(db: Db, id: number, failure: Failure): Promise<void> {
 	await db
 		.update(outbox)
 		.set({
-			lastError: o.error,
-			notBeforeMs: o.notBeforeMs,
-			givenUpAtMs: o.givenUpAtMs,
+			lastError: failure.error,
+			lastCode: failure.code,
+			notBeforeMs: failure.notBeforeMs,
+			givenUpAtMs: failure.givenUpAtMs,
 			leaseUntilMs: null
 		})
 		.where(eq(outbox.id, id));
+}
+
+export interface Failing {
+	personId: number;
+	email: string;
+	sinceMs: number;
+	mails: number;
+	error: string;
+}
+
+/** People with a mail given up, or refused for good (5xx), and none delivered since it was tried. */
+export async function failing(sql: Sql, sinceMs: number): Promise<Failing[]> {
+	return await select<Failing>(
+		sql,
+		`SELECT o.person_id AS personId, p.email, MIN(o.created_at_ms) AS sinceMs, COUNT(*) AS mails,
+			SUBSTRING(MAX(o.last_error), 1, 200) AS error
+		 FROM outbox o JOIN person p ON p.id = o.person_id AND p.switched_off_at_ms IS NULL
+		 WHERE o.kind = 'mail' AND o.sent_at_ms IS NULL AND o.created_at_ms > ?
+			AND (o.given_up_at_ms IS NOT NULL OR o.last_code >= 500)
+			AND NOT EXISTS (SELECT 1 FROM outbox later
+				WHERE later.person_id = o.person_id AND later.sent_at_ms > o.created_at_ms)
+		 GROUP BY o.person_id, p.email`,
+		[sinceMs]
+	);
+}
+
+/** What waits, failed or was given up, the newest first: for an admin to look at. */
+export async function troubles(db: Db, limit: number) {
+	return await db
+		.select({
+			id: outbox.id,
+			to: person.email,
+			about: outbox.about,
+			createdAtMs: outbox.createdAtMs,
+			tries: outbox.tries,
+			lastCode: outbox.lastCode,
+			lastError: outbox.lastError,
+			notBeforeMs: outbox.notBeforeMs,
+			givenUpAtMs: outbox.givenUpAtMs
+		})
+		.from(outbox)
+		.leftJoin(person, eq(person.id, outbox.personId))
+		.where(and(eq(outbox.kind, 'mail'), isNull(outbox.sentAtMs)))
+		.orderBy(desc(outbox.id))
+		.limit(limit);
 }
