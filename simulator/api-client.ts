@@ -59,6 +59,16 @@ async function exists(api: Api, path: string): Promise<boolean> {
 export const siteExists = async (api: Api, slug: string): Promise<boolean> =>
 	await exists(api, `/sites/${slug}`);
 
+/** Whether somebody took the demo away: the site is not there, or the key is ended. */
+export async function siteIsGone(api: Api, slug: string): Promise<boolean> {
+	try {
+		return !(await siteExists(api, slug));
+	} catch (error) {
+		// Anything else (the app restarts) says nothing of the site.
+		return error instanceof ApiRefusal && error.status === 401;
+	}
+}
+
 export async function createSite(api: Api, plan: SitePlan): Promise<void> {
 	const { slug, name, latDeg, lonDeg, altitudeM, timezone } = plan;
 	await call(api, 'POST', '/sites', { slug, name, lat: latDeg, lon: lonDeg, altitudeM, timezone });

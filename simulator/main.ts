@@ -5,6 +5,7 @@ import {
 	createSite,
 	placeNodes,
 	siteExists,
+	siteIsGone,
 	waitUntilReady,
 	type Api
 } from './api-client';
@@ -25,6 +26,8 @@ const TICK_MS = 200;
 const SAVE_EVERY_MS = 20_000;
 const LOOK_AHEAD_MS = 6 * 3_600_000;
 const DAY_MS = 86_400_000;
+/** How often it asks whether its site is still wanted. */
+const ASK_EVERY_MS = 20_000;
 
 interface Settings {
 	api: Api;
@@ -68,11 +71,17 @@ async function live(
 	members: readonly Member[],
 	stop: AbortSignal,
 	save: () => void,
-	told: (stays: Stay[], upToMs: number) => void
+	told: (stays: Stay[], upToMs: number) => void,
+	isGone: () => Promise<boolean>
 ): Promise<void> {
 	let savedMs = Date.now();
+	let askedMs = savedMs;
 	while (!stop.aborted) {
 		const nowMs = Date.now();
+		if (nowMs - askedMs > ASK_EVERY_MS) {
+			askedMs = nowMs;
+			if (await isGone()) return;
+		}
 		told(extendTo(demo, nowMs + LOOK_AHEAD_MS), nowMs);
 		for (const member of members) {
 			for (const sent of advanceMember(member, nowMs, 'live')) post(member, sent);
@@ -142,7 +151,8 @@ async function run(stop: AbortSignal): Promise<void> {
 		);
 	}
 	save('running');
-	await live(demo, members, stop, () => save('running'), told);
+	const isGone = async () => await siteIsGone(api, demo.world.plan.slug);
+	await live(demo, members, stop, () => save('running'), told, isGone);
 	await Promise.all(members.map(({ client }) => client.close()));
 	save('clean');
 	say('ended');

@@ -4,11 +4,12 @@ import type { Config } from '../lib/server/config';
 import { makeKey } from '../lib/server/auth/make-key';
 import type { Database } from '../lib/server/store/connect';
 import * as installation from '../lib/server/store/queries/installation';
+import { DEMO_KEY } from '../lib/server/store/queries/demo';
 import * as firstStart from '../lib/server/store/queries/first-start';
 
 import { startNode, type Child } from './processes';
 
-const KEY_NAME = 'demo simulator';
+const KEY_NAME = DEMO_KEY;
 /** Set while the demo's site is being made; gone when it is marked as the demo's. */
 const BEGUN = 'demo_begun';
 

@@ -227,7 +227,12 @@ export class Launcher {
 		const options = { config, db: store.db, apiUrl, mqtt, logFile };
 		if (demo === 'make') await forgetFormerDemo(config);
 		const fromByte = await sizeOf(logFile);
-		await this.#supervise('simulator', 'simulator', async () => await startSimulator(options));
+		await this.#supervise(
+			'simulator',
+			'simulator',
+			async () => await startSimulator(options),
+			async () => await this.#isDemoWanted(store)
+		);
 		if (demo === 'go on') {
 			say('demo', 'its vehicles come and go on');
 			return;
@@ -244,6 +249,13 @@ export class Launcher {
 		});
 	}
 
+	/** The simulator ends by itself when an admin has taken the demo away. */
+	async #isDemoWanted(store: Store): Promise<boolean> {
+		const isWanted = (await demoWanted(store.db, this.config)) !== 'no';
+		if (!isWanted) say('demo', 'was taken away; its simulator stays down');
+		return isWanted;
+	}
+
 	#greet(made: Made[]): void {
 		for (const { who, email, password } of made)
 			say('sign-in', `${who}: ${email}  ${password ?? '(the password given)'}`);
@@ -252,13 +264,19 @@ export class Launcher {
 		say('Lodekeep', `is up: ${addressOf(this.config)}   (Ctrl-C ends it)`);
 	}
 
-	async #supervise(name: string, log: LoggedPart | 'database', start: () => Promise<Child>) {
+	async #supervise(
+		name: string,
+		log: LoggedPart | 'database',
+		start: () => Promise<Child>,
+		isWanted?: () => Promise<boolean>
+	) {
 		const { dataDir } = this.config;
 		const logFile = log === 'database' ? `${dataDir}/db/mariadb.log` : logFileOf(dataDir, log);
 		const part = await supervise({
 			name,
 			start,
 			logFile,
+			...(isWanted === undefined ? {} : { isWanted }),
 			onStarted: async (child) => {
 				await this.#record?.remember(name, child.pid);
 			},

@@ -13,6 +13,8 @@ export interface SuperviseOptions {
 	/** After each start: its id is written down so that the next launcher can end it. */
 	onStarted: (child: Child) => Promise<void>;
 	say: (text: string) => void;
+	/** Asked when it ended by itself: false = it is not wanted any more and stays down. */
+	isWanted?: () => Promise<boolean>;
 	/** It ended again and again: the whole product stops. */
 	onHopeless: (reason: string) => void;
 	/** Where a person finds why. */
@@ -38,6 +40,7 @@ export async function supervise(options: SuperviseOptions): Promise<Part> {
 			const beganMs = performance.now();
 			await child.ended;
 			if (stopping) return;
+			if (!((await options.isWanted?.().catch(() => true)) ?? true)) return;
 			failures = performance.now() - beganMs > SHORT_RUN_MS ? 0 : failures + 1;
 			if (failures > MOST_FAILURES) {
 				options.onHopeless(`${options.name} ends as soon as it starts (see ${options.logFile})`);
