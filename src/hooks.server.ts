@@ -152,6 +152,8 @@ export const handleError: HandleServerError = ({ error, event, status, message }
 	const reference = randomUUID().slice(0, 8);
 	// Path and stack only: query strings, bodies and headers may hold secrets.
 	const stack = error instanceof Error ? error.stack : String(error);
-	if (!building) instance().log.error({ reference, path: event.url.pathname, stack }, 'unexpected');
+	// The path of a wall link is its secret.
+	const path = event.url.pathname.replace(/^\/wall\/[^/]+/, '/wall/…');
+	if (!building) instance().log.error({ reference, path, stack }, 'unexpected');
 	return { message: 'Something broke here.', reference };
 };

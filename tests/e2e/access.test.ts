@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { AxeBuilder } from '@axe-core/playwright';
 import type { Page } from 'playwright-core';
+import { picture } from '../support/browser';
 import { alive, Office } from './support/desk';
 
 let office: Office;
@@ -19,6 +20,7 @@ const SHEETS = [
 	`${SITE}/closures`,
 	`${SITE}/sent-for`,
 	'/connections',
+	'/walls',
 	'/people',
 	'/mail',
 	'/desk',
@@ -26,7 +28,7 @@ const SHEETS = [
 	'/sign-out',
 	'/primer'
 ];
-const PUBLIC = ['/sign-in', '/reset', '/invitation?ticket=none'];
+const PUBLIC = ['/sign-in', '/reset', '/invitation?ticket=none', '/offline'];
 const WCAG = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'];
 
 /** All rules on paper; in the night theme only contrast can differ, as the document is the same. */
@@ -63,6 +65,36 @@ describe('in both themes', () => {
 	test.each(PUBLIC)('axe finds nothing on %s, open to everybody', async (path) => {
 		expect(await findings(nobody, path)).toEqual([]);
 	});
+});
+
+test('a wall link shows the plan with lettering of 12 mm by the ruler, axe finds nothing, and it ends', async () => {
+	const page = await office.signIn('operator', { width: 1920, height: 1080 });
+	await page.goto('/walls');
+	await alive(page);
+	await page.getByRole('button', { name: 'Make a wall link' }).click();
+	await page.getByLabel('Where it hangs').fill('gate house');
+	await page.getByRole('button', { name: 'Make it' }).click();
+	const href = (await page.locator('code').first().textContent()) ?? '';
+	const wall = await (await office.context({ width: 1920, height: 1080 })).newPage();
+	await wall.goto(href);
+	await alive(wall);
+	await wall.getByText('live, 24 of 24 nodes heard').waitFor();
+	await wall.getByRole('region', { name: 'Oldest doubts' }).getByText('A-09').waitFor();
+	// Held against a ruler: a screen of 1.6 px a mm (about 1.2 m wide).
+	await wall.evaluate(() => localStorage.setItem('lodekeep-wall-px-per-mm', '1.6'));
+	await wall.reload();
+	await alive(wall);
+	const fontPx = await wall
+		.getByRole('complementary')
+		.evaluate((element) => parseFloat(getComputedStyle(element).fontSize));
+	// Capitals of the typeface are 0.73 em.
+	expect((fontPx * 0.73) / 1.6).toBeGreaterThanOrEqual(12);
+	expect(await findings(wall, href)).toEqual([]);
+	await picture(wall, 'wall');
+	await page.getByRole('button', { name: 'Revoke gate house' }).click();
+	await page.getByRole('button', { name: 'Revoke it' }).click();
+	await wall.getByText('it was revoked').waitFor({ timeout: 10_000 });
+	await Promise.all([page, wall].map(async (one) => await one.context().close()));
 });
 
 test('on a phone no sheet is wider than the screen, and targets of the bar are 44 px', async () => {

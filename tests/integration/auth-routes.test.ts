@@ -3,6 +3,8 @@ import type { Role, Scope } from '$lib/schemas/roles';
 import { ROUTES, type RouteName } from '$lib/schemas/v1/route-table';
 import type { RouteSpec } from '$lib/schemas/v1/spec';
 import type { TestApp } from '../support/app';
+import { newTicket } from '$lib/server/auth/ticket';
+import * as wallLinks from '$lib/server/store/queries/wall-links';
 import { openRoom, type Room } from '../support/api-room';
 
 /**
@@ -227,4 +229,105 @@ describe('pages', () => {
 			expect(data.text).not.toContain('Tallow');
 		}
 	);
+});
+
+/** What is open without signing in: sign-in and passwords, the shell without a connection, the wall. */
+const PUBLIC = [
+	'/invitation',
+	'/offline',
+	'/password',
+	'/primer',
+	'/reset',
+	'/sign-in',
+	'/sign-out',
+	'/wall/{token}',
+	'/wall/{token}/now'
+];
+
+describe('outside sign-in', () => {
+	test('stands what is listed here and nothing else', () => {
+		const routes = Object.keys(
+			import.meta.glob('/src/routes/(public)/**/{+page.svelte,+server.ts}')
+		).map((file) =>
+			file
+				.replace('/src/routes/(public)', '')
+				.replace(/\/\+(page|server)\..*$/, '')
+				.replaceAll(/\[(\w+)\]/g, '{$1}')
+		);
+		expect(routes.sort()).toEqual(PUBLIC);
+	});
+
+	/** A link to the yard, as the sheet of wall links makes it. */
+	const wall = async (more: { expiresAtMs?: number } = {}) => {
+		const { text, hash } = newTicket();
+		const id = await wallLinks.create(
+			room.store.db,
+			{
+				...{ tokenHash: hash, name: 'gate house', turnS: 0, makerId: null },
+				siteIds: [room.seeded.sites.yard],
+				expiresAtMs: more.expiresAtMs ?? null
+			},
+			Date.now()
+		);
+		return { text, id };
+	};
+	const asked = async (path: string, headers: Record<string, string> = {}) =>
+		await anywhere(room.app.ask)(path, { headers });
+
+	test('a wall link opens its one view of its own sites, without personal bays', async () => {
+		const { text } = await wall();
+		const page = await asked(`/wall/${text}`);
+		const now = await asked(`/wall/${text}/now?site=tallow-yard`);
+		expect([page.status, now.status]).toEqual([200, 200]);
+		// The seed marks C-04 personal; A-01 is not.
+		for (const { text: body } of [page, now]) {
+			expect(body).toContain('A-01');
+			expect(body).not.toContain('C-04');
+		}
+		expect(now.text).not.toMatch(/SEED-|because|Perro/);
+		expect(now.json()['bays']).toHaveLength(23);
+		for (const bay of now.json()['bays'] as { since: unknown }[]) expect(bay.since).toBeNull();
+		expect((await asked(`/wall/${text}/now?site=far-shed`)).status).toBe(404);
+		expect(page.headers['referrer-policy']).toBe('no-referrer');
+		expect(page.headers['cache-control']).toBe('no-store');
+	});
+
+	test('a wall token opens nothing else, however it is sent', async () => {
+		const { text } = await wall();
+		const ways = [
+			{ authorization: `Bearer ${text}` },
+			{ cookie: `lodekeep-session=${text}` },
+			{ cookie: `wall=${text}` }
+		];
+		for (const headers of ways) {
+			expect((await asked('/api/v1/sites/tallow-yard/bays', headers)).status).toBe(401);
+			expect((await asked('/api/desk/sites', headers)).status).toBe(401);
+			expect((await asked('/sites/tallow-yard/plan', headers)).status).toBe(303);
+		}
+		const written = await anywhere(room.app.ask)(`/wall/${text}/now?site=tallow-yard`, {
+			method: 'POST'
+		});
+		expect([403, 405]).toContain(written.status);
+	});
+
+	test('a wall link that is revoked, over or made up is not known', async () => {
+		const { text, id } = await wall();
+		await wallLinks.revoke(room.store.db, id, Date.now());
+		const over = await wall({ expiresAtMs: Date.now() - 1 });
+		for (const token of [text, over.text, newTicket().text, 'x']) {
+			expect((await asked(`/wall/${token}`)).status).toBe(404);
+			expect((await asked(`/wall/${token}/now?site=tallow-yard`)).status).toBe(404);
+		}
+	});
+
+	test('an operator revokes no wall link that shows a site out of reach', async () => {
+		const { id } = await wall();
+		const body = new URLSearchParams({ id: String(id) }).toString();
+		const headers = { 'content-type': 'application/x-www-form-urlencoded', accept: 'text/html' };
+		const revoke = async (who: string) =>
+			(await callers[who]!.ask('/walls?/revoke', { method: 'POST', headers, body })).status;
+		expect(await revoke('an operator of another site')).toBe(404);
+		expect(await revoke('integrator')).toBe(403);
+		expect(await revoke('operator')).toBe(200);
+	});
 });

@@ -30,7 +30,12 @@ export interface SeenBay {
 }
 
 /** Section hatching, bare outline, dashed with `?`, crossed out, one diagonal with the word. */
-export function drawLarge(pen: Pen, seen: readonly SeenBay[], view: View): void {
+export function drawLarge(
+	pen: Pen,
+	seen: readonly SeenBay[],
+	view: View,
+	letterLeastPx: number
+): void {
 	const of = (mark: Mark) => seen.filter(({ shown }) => shown.mark === mark && !shown.faded);
 	const outline = (list: readonly SeenBay[]) => list.map(({ corners }) => closedPath(corners));
 	pen.fill(outline(of('taken')), 'hatching');
@@ -49,7 +54,7 @@ export function drawLarge(pen: Pen, seen: readonly SeenBay[], view: View): void 
 		ink: 'ink',
 		width: 1
 	});
-	for (const one of seen) letter(pen, one, view);
+	for (const one of seen) letter(pen, one, view, letterLeastPx);
 }
 
 /** Solid, outline, half-filled corner to corner, crossed out. */
@@ -122,10 +127,10 @@ const pick = (corners: readonly Xy[], ...at: number[]): Xy[] =>
 	at.map((i) => corners[i]).filter((c) => c !== undefined);
 
 /** Code, `?`, the word and what it last was, where they fit into the bay's own outline. */
-function letter(pen: Pen, { bay, corners, shown }: SeenBay, view: View): void {
+function letter(pen: Pen, { bay, corners, shown }: SeenBay, view: View, leastPx: number): void {
 	const [shortPx, longPx] = [bay.shortM * view.scale, bay.longM * view.scale];
 	const centre = middleOf(corners);
-	const sizePx = Math.min(13, Math.max(9.5, shortPx * 0.3));
+	const sizePx = Math.min(Math.max(13, leastPx), Math.max(leastPx, shortPx * 0.3));
 	const level = upright(bay.longAngle);
 	// Letters lie along the long side where they don't fit across.
 	const across = Math.abs(Math.sin(level)) > 0.7 && textWidth(bay.code, sizePx) <= shortPx - 5;

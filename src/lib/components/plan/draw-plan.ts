@@ -31,7 +31,10 @@ export interface Scene {
 	zoneNames: ReadonlyMap<string, string>;
 	/** Where the leader line leaves the drawing, in px; null without a picked bay's note. */
 	leaderTo: Xy | null;
+	/** Least size of lettering; larger for a screen across the room. */
+	letterLeastPx?: number;
 }
+const LETTER_LEAST_PX = 9.5;
 
 const SHOW_BEYOND_PX = 30;
 
@@ -44,7 +47,8 @@ export function drawPlan(pen: Pen, scene: Scene): void {
 		drawLarge(
 			pen,
 			seen.filter((one) => one !== null),
-			scene.view
+			scene.view,
+			scene.letterLeastPx ?? LETTER_LEAST_PX
 		);
 	else if (size === 'small')
 		drawSmall(
@@ -82,7 +86,7 @@ function seenBays({ layout, view, size, marks }: Scene): (SeenBay | null)[] {
 	});
 }
 
-function drawZoneNames(pen: Pen, { layout, view, zoneNames }: Scene): void {
+function drawZoneNames(pen: Pen, { layout, view, zoneNames, letterLeastPx }: Scene): void {
 	const tops = new Map<string, { x: number; y: number }>();
 	for (const bay of layout.bays) {
 		const [top, left] = [
@@ -92,14 +96,15 @@ function drawZoneNames(pen: Pen, { layout, view, zoneNames }: Scene): void {
 		const old = tops.get(bay.zone);
 		tops.set(bay.zone, { x: Math.min(left, old?.x ?? left), y: Math.min(top, old?.y ?? top) });
 	}
+	const sizePx = Math.max(12, letterLeastPx ?? 0);
 	for (const [zone, corner] of tops) {
 		const at = toScreen(view, corner);
 		pen.text(
 			zoneNames.get(zone) ?? zone,
-			{ x: at.x, y: at.y - 10 },
+			{ x: at.x, y: at.y - 4 - sizePx / 2 },
 			{
 				ink: 'ink-2',
-				sizePx: 12,
+				sizePx,
 				bold: true
 			}
 		);
@@ -144,7 +149,7 @@ function cloud(corners: readonly Xy[]): Path {
 }
 
 /** The datum triangle: ochre while nobody has it, open in ink with initials once somebody has. */
-function drawFlag(pen: Pen, { layout, view }: Scene, flag: Flag): void {
+function drawFlag(pen: Pen, { layout, view, letterLeastPx }: Scene, flag: Flag): void {
 	const bay = layout.bays[flag.bay];
 	if (bay === undefined) return;
 	const corners = bay.corners.map((c) => toScreen(view, c));
@@ -167,7 +172,7 @@ function drawFlag(pen: Pen, { layout, view }: Scene, flag: Flag): void {
 			{ x: tip.x + w + 3, y: tip.y - h / 2 },
 			{
 				ink: 'ink',
-				sizePx: 10,
+				sizePx: Math.max(10, letterLeastPx ?? 0),
 				cleared: true
 			}
 		);
@@ -237,7 +242,7 @@ function drawLeader(pen: Pen, { layout, view }: Scene, picked: number, to: Xy): 
 }
 
 /** Frame lines and metre marks along the border, counted from the drawing's upper left corner. */
-function drawBorder(pen: Pen, { view, size }: Scene): void {
+function drawBorder(pen: Pen, { view, size, letterLeastPx }: Scene): void {
 	const { width, height } = size;
 	const b = BORDER_PX;
 	const rect = (x: number, y: number, w: number, h: number) =>
@@ -257,6 +262,8 @@ function drawBorder(pen: Pen, { view, size }: Scene): void {
 		'paper'
 	);
 	const step = stepM(view.scale, 64);
+	// Numbers as large as a wall needs find no room in the border: it keeps its marks.
+	const numbered = letterLeastPx === undefined;
 	const [from, to] = [toPage(view, { x: b, y: b }), toPage(view, { x: width - b, y: height - b })];
 	const ticks: Path[] = [];
 	for (let m = Math.ceil(from.x / step) * step; m <= to.x; m += step) {
@@ -266,7 +273,7 @@ function drawBorder(pen: Pen, { view, size }: Scene): void {
 			line({ x, y: height - b }, { x, y: height - b + 5 })
 		);
 		const text = String(Math.round(m * 100) / 100);
-		if (x + textWidth(text, 10) < width - b)
+		if (numbered && x + textWidth(text, 10) < width - b)
 			pen.text(text, { x, y: b - 11 }, { ink: 'ink-2', sizePx: 10, align: 'centre' });
 	}
 	for (let m = Math.ceil(from.y / step) * step; m <= to.y; m += step) {
@@ -275,6 +282,7 @@ function drawBorder(pen: Pen, { view, size }: Scene): void {
 			line({ x: b - 5, y }, { x: b, y }),
 			line({ x: width - b, y }, { x: width - b + 5, y })
 		);
+		if (!numbered) continue;
 		pen.text(
 			String(Math.round(m * 100) / 100),
 			{ x: b - 11, y },
@@ -282,7 +290,8 @@ function drawBorder(pen: Pen, { view, size }: Scene): void {
 		);
 	}
 	pen.stroke(ticks, { ink: 'ink-2', width: 0.8 });
-	pen.text('m', { x: b / 2, y: b / 2 }, { ink: 'ink-2', sizePx: 10, align: 'centre' });
+	if (numbered)
+		pen.text('m', { x: b / 2, y: b / 2 }, { ink: 'ink-2', sizePx: 10, align: 'centre' });
 	pen.stroke([rect(b, b, width - 2 * b, height - 2 * b)], { ink: 'ink', width: 1.4 });
 	pen.stroke([rect(0.5, 0.5, width - 1, height - 1)], { ink: 'hair', width: 0.8 });
 }

@@ -75,6 +75,14 @@ export const SHEETS: readonly Sheet[] = [
 		ofSite: false,
 		roles: ['admin']
 	},
+	{
+		number: '15',
+		name: 'Wall links',
+		letter: 'w',
+		path: () => '/walls',
+		ofSite: false,
+		roles: ['operator', 'maintenance', 'admin']
+	},
 	{ number: '10', name: 'Mail', letter: 'm', path: () => '/mail', ofSite: false, roles: ['admin'] }
 ];
 

@@ -1,16 +1,12 @@
 import { wholeList } from '$lib/components/live/bay-poll';
 import { instance } from '$lib/server/api/instance';
+import { ringOf } from '$lib/server/api/outline';
 import { personIdOf } from '$lib/server/auth/reach';
 import { listed, outlines } from '$lib/server/store/queries/desk-sites';
 import * as looks from '$lib/server/store/queries/desk-looks';
 import { error } from '@sveltejs/kit';
-import { z } from 'zod';
 import type { PageServerLoad } from './$types';
 
-const polygon = z.object({
-	type: z.literal('Polygon'),
-	coordinates: z.array(z.array(z.array(z.number()).min(2))).min(1)
-});
 /** Under this the person has not been away. */
 const AWAY_MS = 600_000;
 
@@ -40,15 +36,6 @@ export const load: PageServerLoad = async ({ locals, params, depends, fetch }) =
 		since: await sinceLast(personIdOf(reach), site.id)
 	};
 };
-
-/** The exterior ring, to 8 decimals of a degree (about 1 mm). */
-function ringOf(geometry: string | null): [number, number][] | null {
-	if (geometry === null) return null;
-	const parsed = polygon.safeParse(JSON.parse(geometry));
-	const ring = parsed.success ? parsed.data.coordinates[0] : undefined;
-	return ring?.map(([lon, lat]) => [round(lon ?? 0), round(lat ?? 0)]) ?? null;
-}
-const round = (deg: number) => Math.round(deg * 1e8) / 1e8;
 
 async function sinceLast(personId: number | null, siteId: number) {
 	if (personId === null) return null;
