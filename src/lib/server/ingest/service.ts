@@ -1,4 +1,5 @@
 import type { Log } from '$lib/server/log';
+import { RefreshWorker } from '$lib/server/refreshes/worker';
 import type { Secret } from '$lib/server/secret';
 import type { Store } from '$lib/server/store/connect';
 import { endClosures } from './closure-ends';
@@ -32,6 +33,7 @@ export interface Every {
 	habitsMs: number;
 	replayMs: number;
 	closuresMs: number;
+	refreshesMs: number;
 }
 
 export const EVERY: Every = {
@@ -41,7 +43,8 @@ export const EVERY: Every = {
 	commandsMs: 1_000,
 	habitsMs: 15_000,
 	replayMs: 5_000,
-	closuresMs: 5_000
+	closuresMs: 5_000,
+	refreshesMs: 2_000
 };
 
 /** A backlog older than this is still being worked off: silence cannot be judged yet. */
@@ -101,6 +104,10 @@ export async function startService(deps: ServiceDeps): Promise<IngestService> {
 		periodic('habits', every.habitsMs, log, async () => await keepHabits(pipeline, Date.now())),
 		periodic('closures', every.closuresMs, log, async () => await endClosures(pipeline, Date.now()))
 	];
+	const worker = new RefreshWorker(deps.store, log);
+	const refreshes = periodic('film refreshes', every.refreshesMs, log, async () => {
+		await worker.look(Date.now());
+	});
 	const reread = periodic('registry', every.registryMs, log, readRegistry);
 	const commands = periodic('commands', every.commandsMs, log, async () => {
 		if (subscriber.connected) await sender.send(pool, Date.now());
@@ -113,11 +120,12 @@ export async function startService(deps: ServiceDeps): Promise<IngestService> {
 		nudge: () => {
 			reread.now();
 			commands.now();
+			refreshes.now();
 			pipeline.nudge();
 		},
 		judge,
 		close: async () => {
-			await Promise.all([...works, reread, commands].map(async (work) => await work.close()));
+			await Promise.all([...works, reread, commands, refreshes].map(async (work) => await work.close()));
 			await pipeline.close();
 		}
 	};

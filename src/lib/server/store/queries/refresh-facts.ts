@@ -258,3 +258,17 @@ export async function endCommand(
 		[nowMs, reason, Buffer.from(commandId, 'hex')]
 	);
 }
+
+/** What a `report` command to a node needs. */
+export async function habitOf(
+	sql: Sql,
+	nodeId: number
+): Promise<{ usualPeriodS: number; deltaMg: number; heardBoot: number | null } | null> {
+	const rows = await select<{ usualPeriodS: number; deltaMg: number; heardBoot: number | null }>(
+		sql,
+		`SELECT n.usual_period_s AS usualPeriodS, n.delta_mg AS deltaMg, f.heard_boot AS heardBoot
+		 FROM node n LEFT JOIN node_fast f ON f.node_id = n.id WHERE n.id = ?`,
+		[nodeId]
+	);
+	return rows[0] ?? null;
+}
