@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { bays, beats, drives, MIN, plus, QUIET, READY, S, Street } from './rows.fixture';
+import { bays, beats, drives, MIN, plus, QUIET, READY, S, Street, times } from './rows.fixture';
 
 /** A vehicle waiting in the aisle, felt at two bays of the row that do not hear each other: under 2 on. */
 const LOW = plus(QUIET, [0, 0, 50]);
@@ -89,5 +89,61 @@ describe('queue in the aisle', () => {
 			)
 		);
 		expect(street.moves(1)).toEqual(['arrival']);
+	});
+});
+
+describe('a kerb: no other node of the row within reach', () => {
+	/** Steel beside the node: the induced dipole takes from the vertical (−m/r³ where it adds 2m/r³ above). */
+	const BESIDE = plus(QUIET, [25, 0, -35]);
+	const OVER = plus(QUIET, [25, 0, 35]);
+	const COMES = READY + 2 * MIN;
+
+	function kerb(): Street {
+		const street = new Street().commission();
+		street.pulse(READY, { setMg: QUIET, resetMg: times(QUIET, -1) });
+		return street;
+	}
+
+	function stands(street: Street, level: typeof QUIET, forMin: number, peak = level): void {
+		const leavesMs = COMES + forMin * MIN;
+		street.play(
+			beats(1, READY + 5 * S, COMES, QUIET, 10 * S),
+			drives(1, COMES, QUIET, level, peak),
+			beats(1, COMES + 30 * S, leavesMs, level, 10 * S),
+			drives(1, leavesMs, level, QUIET, QUIET),
+			beats(1, leavesMs + MIN, leavesMs + 15 * MIN, QUIET)
+		);
+	}
+
+	test('what halts beside the node for minutes and weakens the vertical is no arrival', () => {
+		const street = kerb();
+		stands(street, BESIDE, 5);
+		expect(street.moves()).toEqual([]);
+		expect(street.view().state).toBe('vacant');
+	});
+
+	test('the same for over 10 min is parked, since its own time', () => {
+		const street = kerb();
+		stands(street, BESIDE, 12);
+		expect(street.moves()).toEqual(['arrival', 'departure']);
+		expect(street.entries().find((e) => e.type === 'arrival')!.atMs).toBeLessThan(COMES + 3 * S);
+	});
+
+	test('what adds to the vertical stands over the node and arrives at once', () => {
+		const street = kerb();
+		stands(street, OVER, 5);
+		expect(street.moves()).toEqual(['arrival', 'departure']);
+	});
+
+	test('an axle’s peak on the way shows a vehicle in the bay', () => {
+		const street = kerb();
+		stands(street, BESIDE, 5, plus(QUIET, [90, 60, -80]));
+		expect(street.moves()).toEqual(['arrival', 'departure']);
+	});
+
+	test('without a pair the sign of the vertical is not known: it arrives', () => {
+		const street = new Street().commission();
+		stands(street, BESIDE, 5);
+		expect(street.moves()).toEqual(['arrival', 'departure']);
 	});
 });

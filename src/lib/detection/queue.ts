@@ -28,6 +28,27 @@ function likeStep(n: Node, step: Step): { node: Node; step: Step } | null {
 export const isFlat = (n: Node, step: Step): boolean =>
 	step.burst && step.peakMg < n.params.flatRatio * size3(step.j);
 
+/** A peak under this many times the level: no axle came as near as it would in the bay. */
+const BESIDE_FLAT = 2;
+/** Where the vertical carries less than this share of the Earth's field, its sign tells nothing. */
+const UPRIGHT = 0.5;
+/** Nearly level is beside, too: what stands over the node adds to the vertical. */
+const LEVEL = 0.1;
+
+/**
+ * Where no other node of the row is within reach (kerbs), the field's own shape must tell. The Earth's field
+ * induces a dipole along itself: over the node it adds to the vertical, beside the node, in the lane, it takes
+ * from it, whichever way the street runs.
+ */
+function standsBeside(n: Node, step: Step): boolean {
+	if (n.mates.length > 0 || n.slow.offset === null || !step.burst) return false;
+	if (step.peakMg >= BESIDE_FLAT * size3(step.j)) return false;
+	const { level, baseline } = n.fast;
+	if (Math.abs(baseline[2]) < UPRIGHT * size3(baseline)) return false;
+	const added = (level[2] - baseline[2]) * Math.sign(baseline[2]);
+	return added < LEVEL * apart(level, baseline);
+}
+
 /** A level under this may stand in the aisle, mG. */
 export function aisleLimitMg(n: Node, step: Step): number {
 	const { queueOnRatio, queueFlatOnRatio } = n.params;
@@ -42,12 +63,12 @@ export function takeAisle(g: Group, n: Node, step: Step, atMs: number): boolean 
 	if (slow.aisle !== null) return followAisle(g, n, step, d, atMs);
 	if (step.gapS > 0 || d >= aisleLimitMg(n, step) || !isArrival(n, step)) return false;
 	const like = likeStep(n, step);
-	if (like === null) return false;
+	if (like === null && !standsBeside(n, step)) return false;
 	step.became = 'aisle';
 	slow.aisle = {
 		step: { ...step, before: null },
-		by: like.node.id,
-		byJ: like.step.j,
+		by: like === null ? null : like.node.id,
+		byJ: like === null ? step.j : like.step.j,
 		deadlineMs: step.toMs + params.queueMaxS * MS_PER_S
 	};
 	slow.confidence = Math.min(slow.confidence, aisleConfidence(n));

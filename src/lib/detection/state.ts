@@ -143,7 +143,8 @@ export interface Echo {
 
 export interface Aisle {
 	step: Step;
-	by: number;
+	/** The node of the row that felt a like step; null = told by the node's own field alone. */
+	by: number | null;
 	byJ: Triple;
 	deadlineMs: number;
 }
