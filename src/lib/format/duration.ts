@@ -1,3 +1,5 @@
+import { words } from './messages';
+
 const SECOND_MS = 1000;
 const MINUTE_MS = 60 * SECOND_MS;
 const HOUR_MS = 60 * MINUTE_MS;
@@ -6,10 +8,11 @@ const DAY_MS = 24 * HOUR_MS;
 /** A length of time as people say it: '38 s', '12 min', '1 h 17 min', '3 d 4 h'. Negative counts as 0. */
 export function duration(lengthMs: number): string {
 	const ms = Math.max(0, lengthMs);
-	if (ms < MINUTE_MS) return `${Math.floor(ms / SECOND_MS)} s`;
-	if (ms < HOUR_MS) return `${Math.floor(ms / MINUTE_MS)} min`;
-	if (ms < DAY_MS) return pair(ms, HOUR_MS, 'h', MINUTE_MS, 'min');
-	return pair(ms, DAY_MS, 'd', HOUR_MS, 'h');
+	const unit = words().duration;
+	if (ms < MINUTE_MS) return `${Math.floor(ms / SECOND_MS)} ${unit.second}`;
+	if (ms < HOUR_MS) return `${Math.floor(ms / MINUTE_MS)} ${unit.minute}`;
+	if (ms < DAY_MS) return pair(ms, HOUR_MS, unit.hour, MINUTE_MS, unit.minute);
+	return pair(ms, DAY_MS, unit.day, HOUR_MS, unit.hour);
 }
 
 function pair(ms: number, bigMs: number, big: string, smallMs: number, small: string): string {
@@ -19,7 +22,8 @@ function pair(ms: number, bigMs: number, big: string, smallMs: number, small: st
 
 /** How long ago an instant was: '38 s ago', 'just now' under 2 s, 'never' when there is none. */
 export function ago(atMs: number | null, nowMs: number): string {
-	if (atMs === null) return 'never';
+	const said = words().duration;
+	if (atMs === null) return said.never;
 	const ageMs = nowMs - atMs;
-	return ageMs < 2 * SECOND_MS ? 'just now' : `${duration(ageMs)} ago`;
+	return ageMs < 2 * SECOND_MS ? said.justNow : said.ago(duration(ageMs));
 }

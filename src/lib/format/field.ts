@@ -1,20 +1,22 @@
+import { words } from './messages';
+
 /** Physical quantities as text: one place for rounding; the unit is always written. */
-const NOT_MEASURED = 'not measured';
+const notMeasured = () => words().notMeasured;
 const minus = (text: string) => text.replace('-', '\u2212');
 
 /** Field in milligauss, whole above 100 mG, else one decimal: '412 mG', '8.4 mG'. */
 export function milligauss(fieldMg: number | null): string {
-	if (fieldMg === null) return NOT_MEASURED;
+	if (fieldMg === null) return notMeasured();
 	return `${minus(fieldMg.toFixed(Math.abs(fieldMg) >= 100 ? 0 : 1))} mG`;
 }
 /** '21.5 °C' */
 export const celsius = (tempC: number | null) =>
-	tempC === null ? NOT_MEASURED : `${minus(tempC.toFixed(1))} °C`;
+	tempC === null ? notMeasured() : `${minus(tempC.toFixed(1))} °C`;
 /** '3612 mV' */
 export const millivolt = (batteryMv: number | null) =>
-	batteryMv === null ? NOT_MEASURED : `${batteryMv.toFixed(0)} mV`;
+	batteryMv === null ? notMeasured() : `${batteryMv.toFixed(0)} mV`;
 /** '−71 dBm' */
 export const dbm = (rssiDbm: number | null) =>
-	rssiDbm === null ? NOT_MEASURED : `${minus(rssiDbm.toFixed(0))} dBm`;
+	rssiDbm === null ? notMeasured() : `${minus(rssiDbm.toFixed(0))} dBm`;
 /** '12 m', '3.4 m' under 10 m. */
 export const metres = (lengthM: number) => `${lengthM.toFixed(Math.abs(lengthM) < 10 ? 1 : 0)} m`;

@@ -1,12 +1,14 @@
+import { words } from './messages';
+
 /** Instants as text in a site's time zone. 24 h clock; dates by Intl, English with day before month. */
-const LOCALE = 'en-GB';
 const kept = new Map<string, Intl.DateTimeFormat>();
 
 function formatter(name: string, timeZone: string, options: Intl.DateTimeFormatOptions) {
-	const key = `${name} ${timeZone}`;
+	const { locale } = words();
+	const key = `${name} ${timeZone} ${locale}`;
 	let format = kept.get(key);
 	if (format === undefined) {
-		format = new Intl.DateTimeFormat(LOCALE, { timeZone, hourCycle: 'h23', ...options });
+		format = new Intl.DateTimeFormat(locale, { timeZone, hourCycle: 'h23', ...options });
 		kept.set(key, format);
 	}
 	return format;

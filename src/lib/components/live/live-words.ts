@@ -1,4 +1,5 @@
 import { duration } from '$lib/format/duration';
+import { words } from '$lib/format/messages';
 import { clockTime } from '$lib/format/time';
 
 /** GET /api/v1/sites/{site}/live */
@@ -26,18 +27,19 @@ export function liveText(
 	nowMs: number
 ): { struck: boolean; text: string } {
 	const { answeredAtMs } = connection;
-	if (connection.signedOut) return { struck: true, text: 'signed out: what is shown stands still' };
+	const said = words().live;
+	if (connection.signedOut) return { struck: true, text: said.signedOut };
 	if (answeredAtMs !== null && nowMs - answeredAtMs > NO_ANSWER_MS)
 		return {
 			struck: true,
-			text: `no answer from Lodekeep since ${clockTime(answeredAtMs, timezone)} (${duration(nowMs - answeredAtMs)})`
+			text: said.noAnswer(clockTime(answeredAtMs, timezone), duration(nowMs - answeredAtMs))
 		};
-	if (live === null) return { struck: false, text: 'asking …' };
-	const heard = `${live.nodesHeard} of ${live.nodesExpected} nodes heard`;
-	if (live.status === 'live') return { struck: false, text: `live, ${heard}` };
+	if (live === null) return { struck: false, text: said.asking };
+	const heard = said.heard(live.nodesHeard, live.nodesExpected);
+	if (live.status === 'live') return { struck: false, text: said.live(heard) };
 	const sinceMs = Date.parse(live.lateSince ?? live.asOf);
 	return {
 		struck: true,
-		text: `${live.status} since ${clockTime(sinceMs, timezone)} (${duration(nowMs - sinceMs)}), ${heard}`
+		text: said[live.status](clockTime(sinceMs, timezone), duration(nowMs - sinceMs), heard)
 	};
 }

@@ -1,27 +1,32 @@
 import { duration } from '$lib/format/duration';
+import { words } from '$lib/format/messages';
 import { exact, moment } from '$lib/format/time';
 import { confidenceWord, plain, stateWord } from '$lib/format/words';
-import { closedNow, markOf, needOf } from './marks';
+import { closedNow, markOf, markText, needOf } from './marks';
 import type { BayItem, PlanLayout } from './types';
 
 /** 'was taken 08:12' under not known; null where it was never known. */
 export function wasText(bay: BayItem, timezone: string, nowMs: number): string | null {
 	if (bay.state !== 'unknown' || bay.lastKnown === null) return null;
 	const at = moment(Date.parse(bay.lastKnown.at), timezone, nowMs);
-	return `was ${stateWord(bay.lastKnown.state)} ${at}`;
+	return words().plan.was(stateWord(bay.lastKnown.state), at);
 }
 
 /** 'taken since 07:55 (1 h 17 min), sure' */
 export function stateSentence(bay: BayItem, timezone: string, nowMs: number): string {
 	if (closedNow(bay, nowMs) && bay.closed !== null) {
 		const until = moment(Date.parse(bay.closed.to), timezone, nowMs);
-		return `closed until ${until}: ${bay.closed.reason}`;
+		return words().plan.closedUntil(until, bay.closed.reason);
 	}
-	if (bay.condition === 'withdrawn') return 'withdrawn';
+	if (bay.condition === 'withdrawn') return words().plan.withdrawn;
 	const parts = [stateWord(bay.state)];
 	if (bay.since !== null) {
 		const sinceMs = Date.parse(bay.since);
-		parts[0] += ` since ${moment(sinceMs, timezone, nowMs)} (${duration(nowMs - sinceMs)})`;
+		parts[0] = words().plan.since(
+			stateWord(bay.state),
+			moment(sinceMs, timezone, nowMs),
+			duration(nowMs - sinceMs)
+		);
 	}
 	const sure = confidenceWord(bay.confidence);
 	if (sure !== null) parts.push(sure);
@@ -43,10 +48,13 @@ export function spokenBay(
 	const code = layout.bays[at]?.code ?? '';
 	const parts = [code, zoneName];
 	if (row !== undefined)
-		parts.push(`row ${row.number}`, `${row.bays.indexOf(at) + 1} of ${row.bays.length}`);
-	if (bay === undefined) return [...parts, 'not known'].join(', ');
+		parts.push(
+			words().plan.row(row.number),
+			words().plan.ofRow(row.bays.indexOf(at) + 1, row.bays.length)
+		);
+	if (bay === undefined) return [...parts, stateWord('unknown')].join(', ');
 	parts.push(stateSentence(bay, timezone, nowMs));
-	if (bay.doubt !== null) parts.push(`doubtful: ${plain(bay.doubt.reason)}`);
+	if (bay.doubt !== null) parts.push(words().plan.doubtfulFor(plain(bay.doubt.reason)));
 	else {
 		const need = needOf(bay, nowMs);
 		if (need !== null) parts.push(need);
@@ -66,8 +74,8 @@ export function changeSum(
 		const old = before.get(code);
 		if (old === undefined || old === bay) continue;
 		const [was, is] = [markOf(old, nowMs), markOf(bay, nowMs)];
-		if (was !== is) add(is === 'unknown' ? 'not known' : is);
-		if (old.doubt === null && bay.doubt !== null) add('doubtful');
+		if (was !== is) add(markText(is));
+		if (old.doubt === null && bay.doubt !== null) add(words().plan.doubtful);
 	}
 	if (sums.size === 0) return null;
 	return [...sums].map(([word, n]) => `${n} ${word}`).join(', ');

@@ -1,24 +1,33 @@
+import { words } from '$lib/format/messages';
+import { markWord, stateWord } from '$lib/format/words';
 import { closedNow, markOf, needOf } from './marks';
 import type { BayItem } from './types';
 
-/** What the plan may be narrowed to; the words of the list. */
-export const CONDITION_FILTERS = [
-	{ value: 'all', text: 'everything' },
-	{ value: 'need', text: 'needs a person' },
-	{ value: 'doubtful', text: 'doubtful' },
-	{ value: 'taken', text: 'taken' },
-	{ value: 'free', text: 'free' },
-	{ value: 'unknown', text: 'not known' },
-	{ value: 'closed', text: 'closed' },
-	{ value: 'learning', text: 'learning' },
-	{ value: 'silent', text: 'silent' },
-	{ value: 'inverted', text: 'inverted' },
-	{ value: 'clipped', text: 'clipped' },
-	{ value: 'refresh_due', text: 'film refresh due' },
-	{ value: 'drifting', text: 'drifting' },
-	{ value: 'low_cell', text: 'low cell' },
-	{ value: 'withdrawn', text: 'withdrawn' }
-] as const;
+const CONDITIONS = [
+	'learning',
+	'silent',
+	'inverted',
+	'clipped',
+	'refresh_due',
+	'drifting',
+	'low_cell',
+	'withdrawn'
+];
+
+/** What the plan may be narrowed to, with the words of the list. */
+export function conditionFilters(): { value: string; text: string }[] {
+	const { plan } = words();
+	return [
+		{ value: 'all', text: plan.everything },
+		{ value: 'need', text: plan.needsPerson },
+		{ value: 'doubtful', text: plan.doubtful },
+		{ value: 'taken', text: stateWord('occupied') },
+		{ value: 'free', text: stateWord('vacant') },
+		{ value: 'unknown', text: stateWord('unknown') },
+		{ value: 'closed', text: plan.closed },
+		...CONDITIONS.map((value) => ({ value, text: markWord(value) }))
+	];
+}
 
 export function matches(bay: BayItem, zone: string, condition: string, nowMs: number): boolean {
 	if (zone !== 'all' && bay.zone !== zone) return false;

@@ -1,3 +1,5 @@
+import { conditionWord, markWord, stateWord } from '$lib/format/words';
+import { words } from '$lib/format/messages';
 import type { BayItem } from './types';
 
 /** How a bay is drawn (product.md, 'The look'). */
@@ -26,10 +28,16 @@ const PERSON_CONDITIONS = ['silent', 'inverted', 'clipped', 'refresh_due'];
 /** Why a bay needs a person, in words, or null. A closed bay asks for nobody. */
 export function needOf(bay: BayItem, nowMs: number): string | null {
 	if (closedNow(bay, nowMs)) return null;
-	if (bay.doubt !== null) return 'doubtful';
+	if (bay.doubt !== null) return words().plan.doubtful;
 	const condition = [bay.condition, ...bay.also].find((c) => PERSON_CONDITIONS.includes(c));
-	if (condition === 'refresh_due') return 'film refresh due';
-	return condition ?? (bay.also.includes('low_cell') ? 'low cell' : null);
+	if (condition !== undefined) return conditionWord(condition);
+	return bay.also.includes('low_cell') ? markWord('low_cell') : null;
+}
+
+/** What a mark means, in words. */
+export function markText(mark: Mark): string {
+	if (mark === 'closed' || mark === 'withdrawn') return words().plan[mark];
+	return stateWord(mark === 'taken' ? 'occupied' : mark === 'free' ? 'vacant' : 'unknown');
 }
 
 export interface Tally {
