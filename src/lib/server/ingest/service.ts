@@ -1,3 +1,4 @@
+import { startDrift } from '$lib/server/drift/start';
 import type { Log } from '$lib/server/log';
 import { RefreshWorker } from '$lib/server/refreshes/worker';
 import type { Secret } from '$lib/server/secret';
@@ -34,6 +35,7 @@ export interface Every {
 	replayMs: number;
 	closuresMs: number;
 	refreshesMs: number;
+	driftMs: number;
 }
 
 export const EVERY: Every = {
@@ -44,7 +46,8 @@ export const EVERY: Every = {
 	habitsMs: 15_000,
 	replayMs: 5_000,
 	closuresMs: 5_000,
-	refreshesMs: 2_000
+	refreshesMs: 2_000,
+	driftMs: 15_000
 };
 
 /** A backlog older than this is still being worked off: silence cannot be judged yet. */
@@ -108,6 +111,7 @@ export async function startService(deps: ServiceDeps): Promise<IngestService> {
 	const refreshes = periodic('film refreshes', every.refreshesMs, log, async () => {
 		await worker.look(Date.now());
 	});
+	const drift = startDrift(deps, pipeline, every.driftMs);
 	const reread = periodic('registry', every.registryMs, log, readRegistry);
 	const commands = periodic('commands', every.commandsMs, log, async () => {
 		if (subscriber.connected) await sender.send(pool, Date.now());
@@ -125,7 +129,9 @@ export async function startService(deps: ServiceDeps): Promise<IngestService> {
 		},
 		judge,
 		close: async () => {
-			await Promise.all([...works, reread, commands, refreshes].map(async (work) => await work.close()));
+			await Promise.all(
+				[...works, reread, commands, refreshes, drift].map(async (work) => await work.close())
+			);
 			await pipeline.close();
 		}
 	};
