@@ -5,6 +5,7 @@ import { watchOwnerless } from '$lib/server/auth/ownerless';
 import { Throttle } from '$lib/server/auth/throttle';
 import { requireConfig, type Config } from '$lib/server/config';
 import { createLog, type Log } from '$lib/server/log';
+import { startNotices } from '$lib/server/notices/worker';
 import { startSender, type Sender } from '$lib/server/outbox/sender';
 import { createSecret, type Secret } from '$lib/server/secret';
 import { connect, type Store } from '$lib/server/store/connect';
@@ -27,6 +28,8 @@ export interface Instance {
 	readonly limiter: RateLimiter;
 	readonly coded: CodedCache;
 	readonly sender: Sender;
+	/** Mails that follow from what somebody just did are composed now. */
+	readonly nudgeNotices: () => void;
 	/** The pipeline looks for acts now. */
 	readonly nudge: () => void;
 	/** What detection holds of a node now; null while nothing is stored. */
@@ -84,6 +87,7 @@ function create(config: Config): Instance {
 		.map((text) => createSecret(text).derive('session').toString('hex'));
 	const sender = startSender({ db: store.db, secret, log, config });
 	const ownerless = watchOwnerless({ db: store.db, secret, log, wake: sender.wake });
+	const notices = startNotices({ store, secret, log, config, wake: sender.wake });
 	const upkeep = startUpkeep(databaseUrl, log);
 	const supervisor = startSupervisor({ config, store, secret, log });
 	return {
@@ -98,6 +102,9 @@ function create(config: Config): Instance {
 		limiter: new RateLimiter(),
 		coded: new CodedCache(),
 		sender,
+		nudgeNotices: () => {
+			notices.nudge();
+		},
 		nudge: () => {
 			supervisor.nudge();
 		},
@@ -105,7 +112,7 @@ function create(config: Config): Instance {
 		ingest: () => supervisor.status(),
 		secureCookies,
 		close: async () => {
-			const parts = { supervisor, ownerless, sender, upkeep, store };
+			const parts = { supervisor, ownerless, notices, sender, upkeep, store };
 			for (const [part, running] of Object.entries(parts)) {
 				log.debug({ closing: part }, 'ends');
 				await running.close();

@@ -1,14 +1,13 @@
-import type { NoticeFacts } from '$lib/schemas/notices';
 import { judgeLive } from '$lib/server/api/live';
 import type { Store } from '$lib/server/store/connect';
 import type { Sql } from '$lib/server/store/queries/bulk';
 import * as changes from '$lib/server/store/queries/changes';
 import * as live from '$lib/server/store/queries/live';
-import { driftFacts } from '$lib/server/store/queries/notice-drift';
 import * as queries from '$lib/server/store/queries/notice-look';
 import * as notices from '$lib/server/store/queries/notices';
 import { transaction } from '$lib/server/store/transaction';
 import { apply, type Applied } from './apply';
+import type { DriftFacts } from './drift-facts';
 import { kindsOf } from './kinds';
 import type { Recipient } from './people';
 import { reconcile } from './reconcile';
@@ -31,6 +30,8 @@ export interface Look {
 	nowMs: number;
 	/** Since when this server listens: what was sent before cannot have been heard. */
 	listensSinceMs: number;
+	/** Kept by the worker: figures of drift are worked out once an hour. */
+	drift: DriftFacts;
 }
 
 const NOTHING: Applied = { opened: 0, closed: 0, wishes: 0 };
@@ -86,7 +87,7 @@ async function judge(sql: Sql, look: Look, site: queries.SiteToLook): Promise<Ap
 		extra: {
 			refused,
 			notCured: new Set(notCured.map(({ nodeId }) => nodeId)),
-			drift: await driftOf(sql, nodes)
+			drift: await look.drift.of(sql, drifting(nodes), nowMs)
 		},
 		lateSinceMs: lateSinceMs(heard, site, look),
 		stormsOpen: new Set(rows.flatMap(({ about }) => stormKey(about, site.id))),
@@ -119,17 +120,10 @@ async function judge(sql: Sql, look: Look, site: queries.SiteToLook): Promise<Ap
 
 const DRIFTING = /drifting|refresh_due/;
 
-async function driftOf(
-	sql: Sql,
-	nodes: readonly queries.TroubledRow[]
-): Promise<Map<number, NoticeFacts>> {
-	return await driftFacts(
-		sql,
-		nodes
-			.filter(({ condition, also }) => DRIFTING.test(`${condition},${also}`))
-			.map(({ nodeId }) => nodeId)
-	);
-}
+const drifting = (nodes: readonly queries.TroubledRow[]): number[] =>
+	nodes
+		.filter(({ condition, also }) => DRIFTING.test(`${condition},${also}`))
+		.map(({ nodeId }) => nodeId);
 
 function lateSinceMs(
 	heard: live.Heard,
