@@ -4,6 +4,7 @@ import { acted, changeIdIn, page } from './common';
 import * as feed from './feed';
 import { featureCollection } from './geojson';
 import * as nodes from './nodes';
+import * as refresh from './refresh';
 import { selfView } from './self';
 import * as sites from './sites';
 import { spec } from './spec';
@@ -202,6 +203,36 @@ export const ROUTES = {
 		scope: 'telemetry',
 		query: nodes.readingQuery,
 		answer: nodes.readingList
+	}),
+	'POST /nodes/{serial}/refresh': spec({
+		summary: 'Ask for a film refresh; a person approves it',
+		scope: 'refresh',
+		roles: everyday,
+		body: refresh.refreshIn,
+		bodyOptional: true,
+		answer: refresh.refreshView,
+		status: 201
+	}),
+	'GET /refreshes': spec({
+		summary: 'Film refreshes within reach, newest first',
+		scope: 'refresh',
+		roles: everyday,
+		query: refresh.refreshQuery,
+		answer: refresh.refreshList
+	}),
+	'GET /refreshes/{id}': spec({
+		summary: 'A film refresh: every step, and its proof',
+		scope: 'refresh',
+		roles: everyday,
+		answer: refresh.refreshView
+	}),
+	'POST /refreshes/{id}/call-off': spec({
+		summary: 'Call a film refresh off',
+		scope: 'refresh',
+		roles: everyday,
+		body: refresh.callOffIn,
+		bodyOptional: true,
+		answer: refresh.refreshView
 	}),
 	'GET /openapi.json': spec({
 		summary: 'This description, as OpenAPI 3.1',

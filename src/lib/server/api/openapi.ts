@@ -18,7 +18,8 @@ const ROOT = '/api/v1';
 const PARAMS: Record<string, string> = {
 	site: "The site's slug.",
 	code: "The bay's code.",
-	serial: "The node's serial."
+	serial: "The node's serial.",
+	id: 'The number of the film refresh.'
 };
 
 function operationId(method: string, path: string): string {
@@ -142,7 +143,7 @@ export function openapi(origin: string): Json {
 				'Not a safety device: never the only means that keeps a barrier, bollard or gate from moving.'
 		},
 		servers: [{ url: origin }],
-		tags: ['self', 'sites', 'nodes', 'openapi.json'].map((name) => ({ name })),
+		tags: ['self', 'sites', 'nodes', 'refreshes', 'openapi.json'].map((name) => ({ name })),
 		paths,
 		components: {
 			securitySchemes: {

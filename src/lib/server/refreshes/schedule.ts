@@ -19,18 +19,18 @@ export interface DueNode {
 }
 
 /** Nodes of a site for which a film refresh may be due and none is open. */
-export async function dueNodes(sql: Sql, siteId: number): Promise<DueNode[]> {
+export async function dueNodes(sql: Sql, siteId: number, personal: boolean): Promise<DueNode[]> {
 	return await select<DueNode>(
 		sql,
 		`SELECT n.id AS nodeId, y.code AS bay, z.code AS zone, b.condition, b.also, d.refresh_since_ms AS refreshSinceMs
 		 FROM bay_state b JOIN node n ON n.id = b.node_id AND n.withdrawn_at_ms IS NULL AND n.bay_id = b.bay_id
 		 JOIN bay y ON y.id = b.bay_id AND y.removed_at_ms = 0 JOIN zone z ON z.id = y.zone_id
 		 LEFT JOIN drift_node d ON d.node_id = n.id LEFT JOIN refresh o ON o.open_node_id = n.id
-		 WHERE b.site_id = ? AND o.id IS NULL AND (b.condition IN ('inverted', 'clipped', 'refresh_due')
+		 WHERE b.site_id = ? AND (? OR y.personal = 0) AND o.id IS NULL AND (b.condition IN ('inverted', 'clipped', 'refresh_due')
 			OR FIND_IN_SET('inverted', b.also) OR FIND_IN_SET('clipped', b.also) OR FIND_IN_SET('refresh_due', b.also)
 			OR d.refresh_since_ms IS NOT NULL)
 		 ORDER BY y.code LIMIT 2000`,
-		[siteId]
+		[siteId, personal]
 	);
 }
 
@@ -63,7 +63,7 @@ export async function runSchedule(
 			[siteId, nightBeganMs(s, nowMs)]
 		);
 		let left = s.mostANight - Number(done?.n ?? 0);
-		for (const node of left > 0 ? await dueNodes(store.pool, siteId) : []) {
+		for (const node of left > 0 ? await dueNodes(store.pool, siteId, true) : []) {
 			const reasons = reasonsOf(node).filter((reason) => s.scheduleReasons.includes(reason));
 			if (left <= 0 || reasons.length === 0) continue;
 			const reason = `by schedule: ${reasons.map((name) => DUE_WORDS[name]).join('; ')}`;
