@@ -7,14 +7,24 @@ beforeAll(async () => (office = await Office.open()));
 afterAll(async () => await office.end());
 
 /** First screens of product.md, 'The people', as far as their sheets are built; sheets their index offers. */
+const EVERYBODY = ['Sites', 'Plan', 'Nodes'];
+const EVERYDAY = [...EVERYBODY, 'Closures', 'Sent for', 'Drift'];
 const ROLES = [
-	['operator', '/sites/tallow-yard/plan', ['Sites', 'Plan', 'Nodes', 'Closures', 'Sent for']],
-	['maintenance', '/sites/tallow-yard/nodes', ['Sites', 'Plan', 'Nodes', 'Closures', 'Sent for']],
-	['integrator', '/connections', ['Sites', 'Plan', 'Nodes', 'Connections']],
+	['operator', '/sites/tallow-yard/plan', [...EVERYDAY, 'Wall links', 'Parameters', 'How decided']],
+	[
+		'maintenance',
+		'/sites/tallow-yard/drift',
+		[...EVERYDAY, 'Wall links', 'Parameters', 'How decided']
+	],
+	[
+		'integrator',
+		'/connections',
+		[...EVERYBODY, 'Drift', 'Connections', 'Parameters', 'How decided']
+	],
 	[
 		'admin',
 		'/sites',
-		['Sites', 'Plan', 'Nodes', 'Closures', 'Sent for', 'Connections', 'People', 'Mail']
+		[...EVERYDAY, ...['Connections', 'People', 'Wall links', 'Mail', 'Parameters', 'How decided']]
 	]
 ] as const;
 
@@ -79,5 +89,22 @@ test('a session that ends on an open sheet is said so, and signing in again lose
 	await dialog.waitFor({ state: 'detached' });
 	await page.getByText('signed out: what is shown stands still').waitFor({ state: 'detached' });
 	expect(await page.getByLabel('Filter').inputValue()).toBe('A-0');
+	await page.context().close();
+});
+
+test('a person who chooses German reads the sheets in German from then on, dates by Intl', async () => {
+	const page = await office.signIn('operator');
+	await page.goto('/desk');
+	await page.getByLabel('Language').selectOption('de');
+	await page.getByRole('button', { name: 'Use this language' }).click();
+	await page.waitForFunction(() => document.documentElement.lang === 'de');
+	await page.goto('/sites/tallow-yard/plan');
+	await alive(page);
+	await page.getByRole('heading', { name: 'Braucht jemanden' }).waitFor();
+	await page.getByText('aktuell, 24 von 24 Knoten gehört').waitFor();
+	await page.context().clearCookies({ name: 'lodekeep-session' });
+	await page.goto('/sign-in');
+	await page.getByRole('button', { name: 'Anmelden' }).waitFor();
+	await office.store.pool.query("UPDATE person SET language = 'en'");
 	await page.context().close();
 });

@@ -7,6 +7,7 @@ import {
 	type BayMark,
 	type SeenBay
 } from './draw-bays';
+import { drawArrows, type DriftArrow } from './drift-arrows';
 import { closedPath, line, textWidth, type Path, type Pen } from './pen';
 import type { PlanLayout, Xy } from './types';
 import { BORDER_PX, stepM, toPage, toScreen, type Size, type View } from './view';
@@ -23,6 +24,8 @@ export interface Scene {
 	size: Size;
 	marks: readonly BayMark[];
 	flags: readonly Flag[];
+	/** Displacement of the field, where it is wanted. */
+	arrows?: readonly DriftArrow[] | undefined;
 	/** Bays that changed in the last minute. */
 	revised: readonly number[];
 	picked: number | null;
@@ -64,6 +67,7 @@ export function drawPlan(pen: Pen, scene: Scene): void {
 			);
 	drawZoneNames(pen, scene);
 	drawRevisions(pen, scene);
+	if (scene.arrows !== undefined) drawArrows(pen, { ...scene, arrows: scene.arrows });
 	for (const flag of scene.flags) drawFlag(pen, scene, flag);
 	drawBorder(pen, scene);
 	drawPicked(pen, scene);

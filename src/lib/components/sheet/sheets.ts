@@ -60,6 +60,14 @@ export const SHEETS: readonly Sheet[] = [
 		roles: ['operator', 'maintenance', 'admin']
 	},
 	{
+		number: '6',
+		name: 'Drift',
+		letter: 'd',
+		path: (site) => `/sites/${site}/drift`,
+		ofSite: true,
+		roles: ALL
+	},
+	{
 		number: '8',
 		name: 'Connections',
 		letter: 'k',
@@ -83,7 +91,23 @@ export const SHEETS: readonly Sheet[] = [
 		ofSite: false,
 		roles: ['operator', 'maintenance', 'admin']
 	},
-	{ number: '10', name: 'Mail', letter: 'm', path: () => '/mail', ofSite: false, roles: ['admin'] }
+	{ number: '10', name: 'Mail', letter: 'm', path: () => '/mail', ofSite: false, roles: ['admin'] },
+	{
+		number: '11',
+		name: 'Parameters',
+		letter: 'a',
+		path: (site) => `/sites/${site}/parameters`,
+		ofSite: true,
+		roles: ALL
+	},
+	{
+		number: '12',
+		name: 'How decided',
+		letter: 'h',
+		path: (site) => `/sites/${site}/how`,
+		ofSite: true,
+		roles: ALL
+	}
 ];
 
 /** Sheets a role may open; those of a site only when there is one to show. */
@@ -98,6 +122,6 @@ export function firstScreen(role: string, sites: readonly string[]): string {
 	if (role === 'integrator') return '/connections';
 	const site = sites[0];
 	if (site === undefined) return '/sites';
-	if (role === 'maintenance') return sites.length === 1 ? `/sites/${site}/nodes` : '/sites';
+	if (role === 'maintenance') return sites.length === 1 ? `/sites/${site}/drift` : '/sites';
 	return sites.length === 1 ? `/sites/${site}/plan` : '/sites';
 }

@@ -1,0 +1,59 @@
+import { ask, send } from '$lib/components/live/ask';
+import { session } from '$lib/components/live/session.svelte';
+import { marginNotes } from '$lib/ui/margin-notes.svelte';
+import type { ParameterChange, ParameterSheet } from '$lib/schemas/desk-parameters';
+import { createQuery } from '@tanstack/svelte-query';
+import { parameterLabel } from './parameter-words';
+
+const EVERY_MS = 30_000;
+
+/** Settings of a site, or as one node of it has them, and when they were last answered. */
+export function parametersOf(site: () => string, node: () => string | null) {
+	let answeredAtMs = $state<number | null>(null);
+	const path = () => `/api/desk/sites/${site()}/parameters`;
+	const query = createQuery(() => ({
+		queryKey: ['parameters', site(), node()],
+		queryFn: async () => {
+			const serial = node();
+			try {
+				const { body } = await ask<ParameterSheet>(
+					path() + (serial === null ? '' : `?node=${encodeURIComponent(serial)}`)
+				);
+				session.answered();
+				answeredAtMs = Date.now();
+				return body;
+			} catch (error) {
+				session.heed(error);
+				throw error;
+			}
+		},
+		refetchInterval: EVERY_MS,
+		retry: false,
+		networkMode: 'always' as const
+	}));
+	return {
+		get sheet(): ParameterSheet | undefined {
+			return query.data;
+		},
+		get error(): Error | null {
+			return query.error;
+		},
+		get answeredAtMs(): number | null {
+			return answeredAtMs;
+		},
+		look: async () => void (await query.refetch()),
+		/** What stood before the change stands again. */
+		undo: async (change: ParameterChange): Promise<void> => {
+			try {
+				await send('POST', `${path()}/${change.id}/undo`, {});
+				marginNotes.add(`${parameterLabel(change.name)}: undone, from the next batch on.`);
+			} catch (error) {
+				session.heed(error);
+				marginNotes.add(error instanceof Error ? error.message : 'That did not work.', {
+					trouble: true
+				});
+			}
+			await query.refetch();
+		}
+	};
+}
