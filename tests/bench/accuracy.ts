@@ -1,4 +1,5 @@
 import { parseArgs } from 'node:util';
+import { refuseParams } from '$lib/detection/params';
 import { ALL_SCENARIOS, scenarioByName } from '../../simulator/scenarios/lines';
 import { addScores } from '../accuracy/support/grade';
 import {
@@ -13,6 +14,7 @@ import { runRound, type Round } from '../accuracy/support/round';
 
 /**
  * npm run bench:accuracy -- [--scenarios hard,echo] [--seed 1 | --fresh] [--rounds 1] [--misses 5] [--alone]
+ *                           [--set onPassFactor=1.2,stillSigma=4]
  *
  * Every line of method.md 11 and their mixture: events matched as section 9 says, Wilson limits, share
  * of time in the right state, confidence as section 4 judges it, and beside them the published methods of
@@ -25,12 +27,23 @@ const { values } = parseArgs({
 		fresh: { type: 'boolean', default: false },
 		rounds: { type: 'string', default: '1' },
 		misses: { type: 'string', default: '0' },
-		alone: { type: 'boolean', default: false }
+		alone: { type: 'boolean', default: false },
+		set: { type: 'string', default: '' }
 	}
 });
 
 const seed = values.fresh ? Date.now() % 1_000_000 : Number(values.seed);
 const names = values.scenarios?.split(',') ?? ALL_SCENARIOS.map(({ name }) => name);
+/** Detector settings other than the defaults, so that their price is known. */
+const params = Object.fromEntries(
+	values.set
+		.split(',')
+		.filter((pair) => pair !== '')
+		.map((pair) => pair.split('='))
+		.map(([name, value]) => [name ?? '', Number(value)])
+);
+const refused = refuseParams(params);
+if (refused.length > 0) throw new Error(`settings refused: ${JSON.stringify(refused)}`);
 const print = (lines: readonly string[]): void => console.log(lines.join('\n'));
 
 function bench(name: string): Round[] {
@@ -38,7 +51,7 @@ function bench(name: string): Round[] {
 	if (scenario === undefined) throw new Error(`no scenario is called ${name}`);
 	const seeds = Array.from({ length: Number(values.rounds) }, (_, i) => seed + i);
 	const rounds = seeds.map((one) =>
-		runRound(scenario, one, values.alone ? {} : { published: 'with' })
+		runRound(scenario, one, values.alone ? { params } : { params, published: 'with' })
 	);
 	const score = addScores(rounds.map((round) => round.score));
 	print([scoreLine(name, score), ...rounds.flatMap(detailLines)]);

@@ -58,6 +58,35 @@ describe('settling', () => {
 		expect(street.moves()).toEqual(['arrival', 'departure']);
 	});
 
+	test('seen taken on a level that the baseline had taken in: the first step is the leaving', () => {
+		const street = new Street().commission('rule', TAKEN);
+		settle(street, 'seen_occupied', READY);
+		street.play(
+			beats(1, READY + 5000, READY + 10 * MIN, TAKEN),
+			drives(1, NOW, TAKEN, QUIET),
+			beats(1, NOW + MIN, NOW + 5 * MIN, QUIET)
+		);
+		expect(street.moves()).toEqual(['departure']);
+		expect(street.view().baselineMg![1]).toBeCloseTo(QUIET[1], -0.5);
+	});
+
+	test('seen taken where the field stands at a reference seen empty: a step is the next vehicle’s', () => {
+		const street = new Street().commission();
+		settle(street, 'seen_occupied', READY);
+		street.play(
+			beats(1, READY + 5000, READY + 10 * MIN, QUIET),
+			drives(1, NOW, QUIET, TAKEN),
+			beats(1, NOW + MIN, NOW + 5 * MIN, TAKEN)
+		);
+		expect(street.moves()).toEqual([]);
+		expect(street.view().state).toBe('occupied');
+		street.play(
+			drives(1, NOW + 5 * MIN, TAKEN, QUIET),
+			beats(1, NOW + 6 * MIN, NOW + 9 * MIN, QUIET)
+		);
+		expect(street.moves()).toEqual(['departure']);
+	});
+
 	test('a settlement ends a doubt', () => {
 		const street = taken();
 		street.group.nodes[0]!.slow.doubt = { reason: 'magnet', sinceMs: NOW };

@@ -165,6 +165,15 @@ describe('magnet', () => {
 		expect(street.view().state).toBe('vacant');
 	});
 
+	test('one clipped row that leaves no trace still makes a film refresh due, until a pulse', () => {
+		const street = withPair();
+		const clipped = { nodeId: 1, atMs: START, fieldMg: [8000, 0, 0] as Vec3, clipped: true };
+		street.play([clipped], beats(1, START + S, START + 10 * MIN, QUIET));
+		expect(street.view().conditions).toEqual(['refresh_due']);
+		street.pulse(START + 10 * MIN);
+		expect(street.view().conditions).toEqual(['in_service']);
+	});
+
 	test('the next pulse heals the film and ends the magnet’s doubt', () => {
 		const street = withPair();
 		const weak: Vec3 = [QUIET[0] * 0.8, QUIET[1] * 0.8, QUIET[2] * 0.8];

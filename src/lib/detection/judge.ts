@@ -55,12 +55,31 @@ export function isDeparture(n: Node, step: Step, echoMg = 0): boolean {
 	const size = size3(step.j);
 	if (size < n.params.stepRatio * onMg(n)) return false;
 	if (arrival === null) return apart(n.fast.level, n.fast.baseline) < releaseMg(n);
+	if (seenNotFelt(n)) return size >= onMg(n) && !leftReference(n, step);
 	const stood = Math.min(size3(arrival.first), size3(arrival.step));
 	if (step.gapS === 0 && size < MOST_OF_IT * Math.min(stood, n.fast.stayMg)) return false;
 	if (undoes(n, step, arrival.step, echoMg)) return true;
 	const grown = sumSize(step.j, arrival.step) > MOST_GROWTH * size3(arrival.first);
 	if (!grown && undoes(n, step, arrival.first, echoMg)) return true;
 	return apart(n.fast.level, n.fast.baseline) < releaseMg(n) || atReference(n, n.fast.level);
+}
+
+/** A person saw the bay taken while its field stood at the baseline, and nothing was told since. */
+function seenNotFelt(n: Node): boolean {
+	const { settle, entries, arrival } = n.slow;
+	if (settle?.as !== 'seen_occupied' || settle.entries !== entries || arrival === null)
+		return false;
+	return size3(arrival.step) < offMg(n);
+}
+
+/**
+ * Was the field at a reference that a person saw empty? Then the vehicle stands where the node does not feel it, and
+ * the step is not its own; else the baseline had taken it in, and the step is its leaving.
+ */
+function leftReference(n: Node, step: Step): boolean {
+	if (n.slow.reference?.provisional !== false) return false;
+	const left = triple(n.fast.level).map((v, i) => v - step.j[i as 0]) as Triple;
+	return atReference(n, left);
 }
 
 /** Step ledger: does this step take that one back? */

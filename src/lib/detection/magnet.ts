@@ -1,6 +1,14 @@
 import { doubtIt, enter } from './entries';
 import { evidence, stepWords } from './evidence';
-import { touch, triple, type Group, type Node, type Step, type Triple } from './state';
+import {
+	STRONG_FIELD,
+	touch,
+	triple,
+	type Group,
+	type Node,
+	type Step,
+	type Triple
+} from './state';
 import { offMg, stillMg } from './thresholds';
 import { apart, set3, size3 } from './vec';
 
@@ -54,7 +62,7 @@ export function takeMagnet(n: Node, step: Step): boolean {
 
 /** Whatever it left behind, a field past what the film bears asks for a pulse and makes the bay doubtful. */
 export function noteStrongField(n: Node, step: Step): void {
-	n.slow.refreshWhy = 'a strong field met the film';
+	n.slow.refreshWhy = STRONG_FIELD;
 	doubtIt(n, 'magnet', step.atMs);
 	touch(n);
 }

@@ -2,7 +2,7 @@ import { enter } from './entries';
 import { evidence, spanWords } from './evidence';
 import { believeAgain } from './judge';
 import { resolve } from './neighbours';
-import type { Group, Node } from './state';
+import { STRONG_FIELD, touch, type Group, type Node } from './state';
 
 const MS_PER_S = 1000;
 /** One clipped reading is an accident; two are a state (method 1). */
@@ -45,6 +45,11 @@ export function heardAgain(g: Group, n: Node, atMs: number): void {
 export function takeClipped(g: Group, n: Node, atMs: number, clipped: boolean): void {
 	const { fast, slow } = n;
 	if (slow.reference === null || fast.levelN === 0) return;
+	if (slow.refreshWhy === null) {
+		// Whatever it leaves behind, and for however short a time (method 6).
+		slow.refreshWhy = STRONG_FIELD;
+		touch(n);
+	}
 	if (fast.open === 0) {
 		if (slow.pending !== null) resolve(g, n, atMs, 'forced');
 		fast.open = 1;

@@ -316,6 +316,9 @@ export const triple = (a: Readonly<{ 0: number; 1: number; 2: number }>): Triple
 
 export const summed = (a: Triple, b: Triple): Triple => [a[0] + b[0], a[1] + b[1], a[2] + b[2]];
 
+/** Why a film refresh is due after a clipped row, or one past what the film bears. */
+export const STRONG_FIELD = 'a strong field met the film';
+
 /** Marks the slow state as changed. */
 export function touch(n: Node): void {
 	n.slow.revision++;
