@@ -12,6 +12,7 @@ import { problem, problemResponse } from '$lib/server/api/problem';
 import { asProblem, noRoute } from '$lib/server/api/refusals';
 import { authConfig } from '$lib/server/auth/authjs';
 import { identify, isProgram, NOBODY, type Caller } from '$lib/server/auth/identify';
+import { languageOf, speaking } from '$lib/server/auth/language';
 import { forgedRequest } from '$lib/server/auth/origin';
 import { cookieOptions, SESSION_MAX_AGE_S } from '$lib/server/auth/session';
 
@@ -101,7 +102,14 @@ async function page(
 			maxAge: SESSION_MAX_AGE_S
 		});
 	}
-	return await resolve(event);
+	const language = languageOf(event);
+	return await speaking(
+		language,
+		async () =>
+			await resolve(event, {
+				transformPageChunk: ({ html }) => html.replace('%lodekeep.language%', language)
+			})
+	);
 }
 
 async function authRoute(event: Event): Promise<Response> {

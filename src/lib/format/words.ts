@@ -50,3 +50,6 @@ export function count(n: number, one: string, many = `${one}s`): string {
 	const [single, several] = Object.hasOwn(nouns, one) ? (nouns[one] ?? []) : [];
 	return `${n} ${n === 1 ? (single ?? one) : (several ?? many)}`;
 }
+
+/** A sheet's name in the language that speaks; one without a word of its own stays as it is. */
+export const sheetName = (name: string) => named(words().sheet, name) ?? name;

@@ -263,6 +263,7 @@ export const de: Messages = {
 	},
 	desk: {
 		language: 'Sprache',
-		languageHint: 'der Blätter; Daten und Namen bleiben, wie sie sind'
+		languageHint: 'der Blätter; Daten und Namen bleiben, wie sie sind',
+		speak: 'Diese Sprache verwenden'
 	}
 };

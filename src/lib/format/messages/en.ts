@@ -271,6 +271,7 @@ export const en = {
 	},
 	desk: {
 		language: 'Language',
-		languageHint: 'of the sheets; data and names stay as they are'
+		languageHint: 'of the sheets; data and names stay as they are',
+		speak: 'Use this language'
 	}
 };

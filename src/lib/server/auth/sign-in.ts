@@ -1,10 +1,12 @@
 import { Auth, raw } from '@auth/core';
 import { AuthError } from '@auth/core/errors';
 import { error as refuse, type RequestEvent } from '@sveltejs/kit';
+import { isLanguage } from '$lib/format/messages';
 import { isDatabaseAway } from '$lib/server/api/database-away';
 import { instance, type Instance } from '$lib/server/api/instance';
 import * as people from '$lib/server/store/queries/people';
 import { authConfig, noOutcome } from './authjs';
+import { setLanguage } from './language';
 import { safeReturn } from './paths';
 import { cookieOptions, DEVICE_MAX_AGE_S, deviceCookieName, SESSION_MAX_AGE_S } from './session';
 
@@ -50,6 +52,7 @@ export async function signIn(
 	// The new session may carry a version that the directory in memory has not read yet.
 	app.directory.invalidate();
 	rememberDevice(app, event, person.id);
+	if (isLanguage(person.language)) setLanguage(event.cookies, person.language, app.secureCookies);
 	return { ok: true, to: safeReturn(form.to), mustChangePassword: person.mustChangePassword };
 }
 

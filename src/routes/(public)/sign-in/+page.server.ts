@@ -1,5 +1,6 @@
 import { PATHS, safeReturn } from '$lib/server/auth/paths';
 import { signIn } from '$lib/server/auth/sign-in';
+import { words } from '$lib/format/messages';
 import { duration } from '$lib/format/duration';
 import { fail, redirect } from '@sveltejs/kit';
 import { z } from 'zod';
@@ -13,8 +14,15 @@ export const load: PageServerLoad = ({ locals, url }) => {
 };
 
 const form = z.object({
-	email: z.string().trim().min(1, 'Your e-mail address is missing.').max(254),
-	password: z.string().min(1, 'Your password is missing.').max(1000),
+	email: z
+		.string()
+		.trim()
+		.min(1, { error: () => words().signIn.emailMissing })
+		.max(254),
+	password: z
+		.string()
+		.min(1, { error: () => words().signIn.passwordMissing })
+		.max(1000),
 	to: z.string().max(2000).nullable().catch(null)
 });
 
@@ -23,7 +31,7 @@ export const actions: Actions = {
 		const given = form.safeParse(Object.fromEntries(await event.request.formData()));
 		if (!given.success) {
 			return fail(400, {
-				trouble: given.error.issues[0]?.message ?? 'Something is missing.',
+				trouble: given.error.issues[0]?.message ?? words().signIn.failed,
 				email: ''
 			});
 		}
@@ -31,8 +39,8 @@ export const actions: Actions = {
 		if (result.ok) redirect(303, result.mustChangePassword ? PATHS.password : result.to);
 		const trouble =
 			result.reason === 'throttled'
-				? `Too many attempts. Try again in ${duration(result.retryAfterS * 1000)}.`
-				: 'This address and password do not belong together.';
+				? words().signIn.throttled(duration(result.retryAfterS * 1000))
+				: words().signIn.wrong;
 		return fail(result.reason === 'throttled' ? 429 : 400, { trouble, email: given.data.email });
 	}
 };

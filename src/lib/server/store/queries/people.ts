@@ -153,6 +153,11 @@ export async function setPassword(db: Db, id: number, passwordHash: string): Pro
 		.where(eq(person.id, id));
 }
 
+/** The language of a person's sheets and mail. */
+export async function setLanguage(db: Db, id: number, language: string): Promise<void> {
+	await db.update(person).set({ language }).where(eq(person.id, id));
+}
+
 /** People who administer: told when a key's maker leaves. */
 export async function admins(db: Db) {
 	return await db
