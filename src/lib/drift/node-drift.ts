@@ -56,7 +56,7 @@ interface StayAnchor {
 }
 
 /** A film loss from here on is worth a new run of movement. */
-const HEALED_MG = 2;
+export const HEALED_MG = 2;
 
 /** Starts at an accepted reference; the slope of a former one of the same sensor is worth keeping. */
 export function startDrift(

@@ -6,7 +6,7 @@ import type { SurroundingsKind } from '$lib/drift/types';
  *
  * Film refreshes: every accepted pair is a row of `drift_pair`, within seconds of its arrival
  * (`settled` false: told with what drift knew at the last closed hour) and again, `settled`, when its hour is
- * closed. `store/queries/drift-pairs.ts` `since(sql, afterMs)` reads them; the key is (nodeId, boot, seq) of
+ * closed. `store/queries/drift-pairs.ts` `since(sql, nodeIds, afterMs)` reads them; the key is (nodeId, boot, seq) of
  * `pulse`. `cause` is that of the command that the pair answered: 'calibrate' and 'diagnose' are pairs by
  * rule, 'refresh:<id>' one of yours, null nobody's order.
  * Refresh due: `refreshNeedOf` in this room gives due, reasons and words of one node.

@@ -3,13 +3,14 @@ import type { NodeView } from '$lib/detection/types';
 import type { Log } from '$lib/server/log';
 import * as acts from '$lib/server/store/queries/acts';
 import * as commands from '$lib/server/store/queries/commands';
+import * as driftState from '$lib/server/store/queries/drift-state';
 import * as ingest from '$lib/server/store/queries/ingest';
 import type { ShownRow } from '$lib/server/store/queries/ingest';
-import * as lease from '$lib/server/store/queries/lease';
 import * as received from '$lib/server/store/queries/received';
 import * as rejected from '$lib/server/store/queries/rejected';
 import { bareBay } from './bare-bay';
 import { closureStage } from './closure-stage';
+import type { DriftFrontier } from './drift-frontier';
 import type { Groups } from './groups';
 import type { HostedGroup } from './hosted-group';
 import { inService, type NodeEntry } from './node-entry';
@@ -39,6 +40,7 @@ export interface Room extends DetectRoom {
 	stamps: Stamps;
 	log: Log;
 	transactions: Transactions;
+	frontier: DriftFrontier;
 }
 
 export interface Batch {
@@ -74,6 +76,8 @@ export async function runBatch(
 		for (const group of pumped.keys()) for (const id of group.ids) touched.nodeIds.add(id);
 		await settleAll(sql, room, work, pumped);
 		const bare = await leaveBays(sql, room, batch.acts, work);
+		const marks = room.frontier.marksOf(work, room.registry, batch.acts);
+		await driftState.mark(sql.later, marks, work.stampMs);
 		await storeResults(sql, work, hostsOf(room, bare));
 		return work;
 	});

@@ -1,5 +1,6 @@
 import type { Sql } from '$lib/server/store/queries/bulk';
 import * as acts from '$lib/server/store/queries/acts';
+import * as driftState from '$lib/server/store/queries/drift-state';
 import * as nodeState from '$lib/server/store/queries/node-state';
 import * as readings from '$lib/server/store/queries/readings';
 import { hostsOf } from './batch';
@@ -44,8 +45,24 @@ export async function replayMarked(pipeline: Pipeline): Promise<boolean> {
 		endMs = nextWindowEnd(replay)
 	)
 		await continueTo(room.pool, replay, endMs, denseFromMs, room.stamps);
-	await pipeline.exclusive(async () => await finish(pipeline, replay, ids, beganMs));
+	await pipeline.exclusive(async () => await finish(pipeline, replay, { ids, markedMs, beganMs }));
 	return true;
+}
+
+/** History may have changed from the marked hour on: drift closes those hours anew. */
+async function markDrift(
+	sql: Sql,
+	{ room }: Pipeline,
+	work: Work,
+	ids: readonly number[],
+	markedMs: number
+): Promise<void> {
+	const marks = room.frontier.marksOf(work, room.registry);
+	for (const { siteId } of room.groups.entriesOf(ids).map(({ config }) => config)) {
+		const hourMs = room.frontier.hourTouched(siteId, markedMs);
+		if (hourMs !== null) marks.push({ siteId, hourMs });
+	}
+	await driftState.mark(sql, marks, work.stampMs);
 }
 
 /** Whether all that a replay from the beginning needs is still in store: each node's placing and every row since. */
@@ -73,8 +90,7 @@ async function reachesBack(
 async function finish(
 	pipeline: Pipeline,
 	replay: Replay,
-	ids: readonly number[],
-	beganMs: number
+	{ ids, markedMs, beganMs }: { ids: readonly number[]; markedMs: number; beganMs: number }
 ): Promise<void> {
 	const { room } = pipeline;
 	const now = room.registry.groupOf(ids[0] as number) ?? [];
@@ -90,6 +106,7 @@ async function finish(
 			for (const slow of replay.group.allSlow()) work.slow.push(slow);
 			work.snapshots.push(...replay.group.snapshot(room.stamps.next(), false));
 			await nodeState.clearMarks(sql, ids, beganMs);
+			await markDrift(sql, pipeline, work, ids, markedMs);
 			await storeResults(sql, work, hostsOf(room));
 		});
 	} catch (error) {

@@ -34,6 +34,12 @@ export interface Silence {
 	unknown: { eventId: number; atMs: number } | null;
 }
 
+/** Conditions that come from drift (method 4 to 6). */
+export interface DriftHeld {
+	driftingSinceMs: number | null;
+	refreshSinceMs: number | null;
+}
+
 /** What the pipeline knows of a node beside detection's state; as in `node_fast`. */
 export interface NodeLive {
 	heardAtMs: number | null;
@@ -54,6 +60,8 @@ export interface NodeLive {
 	/** What its bay shows, as stored; null = not read yet or no bay. */
 	shown: ShownRow | null;
 	silence: Silence;
+	/** What drift holds of it: since when, or null. Told by server/drift. */
+	drift: DriftHeld;
 	/** Counters since boot, to add only what is new. */
 	tx: { boot: number; frames: number; radioMs: number; pulses: number } | null;
 }
@@ -80,6 +88,7 @@ export const freshLive = (): NodeLive => ({
 	acceptedBootsMs: [],
 	shown: null,
 	silence: { silent: false, unknown: null },
+	drift: { driftingSinceMs: null, refreshSinceMs: null },
 	tx: null
 });
 

@@ -6,7 +6,9 @@ import type { Store } from '$lib/server/store/connect';
 import type { ActRow } from '$lib/server/store/queries/acts';
 import * as actQueries from '$lib/server/store/queries/acts';
 import { select } from '$lib/server/store/queries/bulk';
+import * as driftState from '$lib/server/store/queries/drift-state';
 import { runBatch, viewOf, type Batch, type Room, type Touched } from './batch';
+import { DriftFrontier } from './drift-frontier';
 import { Groups } from './groups';
 import type { HostedGroup } from './hosted-group';
 import { Mutex } from './mutex';
@@ -84,6 +86,7 @@ class RunningPipeline implements Pipeline {
 			registry,
 			groups: new Groups(registry, (ids) => this.#isAside(ids)),
 			seen: new SeenBlocks(),
+			frontier: new DriftFrontier(),
 			log: deps.log,
 			transactions: new Transactions(async () => await deps.store.batchConnection(), deps.holder),
 			stamps: {
@@ -102,6 +105,8 @@ class RunningPipeline implements Pipeline {
 			'SELECT MAX(taken_at_ms) AS atMs FROM node_snapshot'
 		);
 		stamps.atLeast(newest?.atMs ?? 0);
+		for (const { siteId, closedToMs } of await driftState.sites(pool))
+			this.room.frontier.set(siteId, closedToMs ?? 0);
 		await registry.loadAll(pool, Date.now());
 		for (const { id, live } of registry.all())
 			if (live.waitingFromMs !== null) this.#toLoad.add(id);
@@ -209,6 +214,7 @@ class RunningPipeline implements Pipeline {
 
 	async #attempt(batch: Batch, touched: Touched) {
 		const work = await runBatch(this.room, batch, touched, Date.now());
+		this.room.frontier.noteJudged(work);
 		this.room.seen.trim(touched.nodeIds);
 		for (const facts of work.facts.values()) this.room.registry.adoptHabit(facts.nodeId, facts);
 		await afterActs(this.room, batch.acts);

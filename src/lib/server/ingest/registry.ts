@@ -5,6 +5,7 @@ import { builtInProfile, parseProfile, type SensorProfile } from '$lib/magnetics
 import type { Secret } from '$lib/server/secret';
 import * as acts from '$lib/server/store/queries/acts';
 import type { Sql } from '$lib/server/store/queries/bulk';
+import * as driftState from '$lib/server/store/queries/drift-state';
 import * as ingest from '$lib/server/store/queries/ingest';
 import * as nodeState from '$lib/server/store/queries/node-state';
 import { centreOf } from './bay-centre';
@@ -83,6 +84,11 @@ export class Registry {
 			if (wanted(nodeId)) this.#live(nodeId).skew = SkewWindow.decode(skews);
 		for (const { nodeId, atMs } of await acts.acceptedBoots(sql, ids))
 			if (wanted(nodeId)) this.#live(nodeId).acceptedBootsMs.push(atMs);
+		for (const { nodeId, placedAtMs, ...held } of await driftState.flags(sql, { nodeIds: ids })) {
+			const entry = this.#byId.get(nodeId);
+			if (entry !== undefined && wanted(nodeId) && entry.config.placedAtMs === placedAtMs)
+				entry.live.drift = held;
+		}
 		await this.#loadShown(sql, all.filter(wanted));
 	}
 

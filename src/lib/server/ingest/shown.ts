@@ -45,6 +45,8 @@ export function shownOf(
 	const { config, live } = entry;
 	const held: RankedCondition[] = [...view.conditions];
 	if (live.silence.silent) held.push('silent');
+	if (live.drift.refreshSinceMs !== null) held.push('refresh_due');
+	if (live.drift.driftingSinceMs !== null) held.push('drifting');
 	const [condition, ...others] = rankConditions(held);
 	const lost = live.silence.unknown;
 	const state = lost === null ? view.state : 'unknown';
