@@ -3,6 +3,7 @@ import { refuseParams } from '$lib/detection/params';
 import { ALL_SCENARIOS, scenarioByName } from '../../simulator/scenarios/lines';
 import { addScores } from '../accuracy/support/grade';
 import {
+	cappedLine,
 	detailLines,
 	jsonLine,
 	missLines,
@@ -80,5 +81,6 @@ print([
 		all.flatMap((round) => round.judged.nearEvents),
 		seed
 	),
+	...cappedLine(all.flatMap((round) => round.judged.capped)),
 	jsonLine('all', [seed], total)
 ]);

@@ -1,6 +1,6 @@
 import { takeAct } from './acts';
 import { decodeFastState, decodeSlowState, encodeFastState, encodeSlowState } from './codec';
-import { capOf } from './confidence';
+import { presentConfidence } from './confidence';
 import { conditionsOf } from './conditions';
 import { resolveParams } from './params';
 import { takePulse } from './pulses';
@@ -193,7 +193,7 @@ export function view(group: Group, nodeId: number): NodeView {
 	return {
 		state: slow.state,
 		sinceMs: slow.sinceMs,
-		confidence: slow.state === 'unknown' ? null : Math.min(slow.confidence, capOf(n)),
+		confidence: slow.state === 'unknown' ? null : presentConfidence(n),
 		doubt: slow.doubt,
 		conditions: conditionsOf(n),
 		lastKnown: slow.lastKnown,

@@ -191,4 +191,21 @@ describe('evidence and confidence', () => {
 		expect(faint.view().state).toBe('occupied');
 		expect(faint.view().confidence!).toBeLessThan(clear.view().confidence!);
 	});
+
+	test('while a vehicle moves over the node its state is unsure, and sure again when it has gone by', () => {
+		const street = new Street([memberOf(1)], 0.1).commission();
+		const sure = street.view().confidence!;
+		street.play(beats(1, READY, READY + S, plus(QUIET, upward(60)), 500));
+		expect(street.view()).toMatchObject({ state: 'vacant', confidence: 0.4 });
+		street.play(beats(1, READY + S, READY + 10 * S, QUIET, 500));
+		expect(street.view()).toMatchObject({ state: 'vacant', confidence: sure });
+	});
+
+	test('a level that crept over the threshold makes a bay held free unsure', () => {
+		const street = new Street([memberOf(1)], 0.1).commission();
+		const creep = (atMs: number) => plus(QUIET, upward((60 * (atMs - READY)) / HOUR));
+		street.play(beats(1, READY, READY + HOUR, creep));
+		expect(street.view().doubt?.reason).toBe('the field crossed the threshold slowly');
+		expect(street.view()).toMatchObject({ state: 'vacant', confidence: 0.4 });
+	});
 });

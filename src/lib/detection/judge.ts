@@ -143,7 +143,7 @@ export function arrive(
 			state: 'occupied',
 			atMs: step.atMs,
 			uncertaintyS: step.uncertaintyS,
-			confidence: arrivalConfidence(n, step, d, overlapping.length),
+			confidence: arrivalConfidence(n, step, d),
 			evidence: evidence(words, againstArrival(n))
 		},
 		decidedAtMs

@@ -1,4 +1,4 @@
-import { carriedConfidence } from './confidence';
+import { carriedConfidence, HOLDS_VEHICLE } from './confidence';
 import { doubtIt, enter, voidEntry } from './entries';
 import { evidence } from './evidence';
 import { summed, touch, triple, type Group, type Node, type Step, type Strange } from './state';
@@ -75,7 +75,7 @@ function comeBack(g: Group, n: Node, strange: Strange, step: Step, atMs: number)
 	};
 	n.slow.strange = back;
 	if (n.params.swapVisits > 0 && visits >= n.params.swapVisits) swap(g, n, back, atMs);
-	else if (visits >= 2) doubtIt(n, 'reference may hold a vehicle', atMs);
+	else if (visits >= 2) doubtIt(n, HOLDS_VEHICLE, atMs);
 }
 
 /** The field that keeps coming back is the empty bay's: reference and history are put right. */

@@ -41,6 +41,7 @@ describe('queue in the aisle', () => {
 			...[1, 2].map((id) => beats(id, t + MIN, t + 20 * MIN, QUIET))
 		);
 		for (const id of [1, 2]) expect(street.moves(id)).toEqual([]);
+		for (const id of [1, 2]) expect(street.view(id).confidence).toBeGreaterThan(0.9);
 	});
 
 	test('what outlasts 10 min is parked, since its own time', () => {

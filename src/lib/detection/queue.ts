@@ -1,4 +1,3 @@
-import { aisleConfidence } from './confidence';
 import { lookBy } from './entries';
 import { arrive, isArrival } from './judge';
 import { touch, type Group, type Node, type Step } from './state';
@@ -71,7 +70,6 @@ export function takeAisle(g: Group, n: Node, step: Step, atMs: number): boolean 
 		byJ: like === null ? step.j : like.step.j,
 		deadlineMs: step.toMs + params.queueMaxS * MS_PER_S
 	};
-	slow.confidence = Math.min(slow.confidence, aisleConfidence(n));
 	lookBy(n, slow.aisle.deadlineMs);
 	touch(n);
 	return true;

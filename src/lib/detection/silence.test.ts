@@ -93,7 +93,8 @@ const clippedRows = (atMs: number, count: number) =>
 test('clipped needs 2 readings', () => {
 	const street = new Street().commission();
 	street.play(clippedRows(READY, 1));
-	expect(street.view().conditions).toEqual(['in_service']);
+	// One makes a film refresh due (method 6), but no state.
+	expect(street.view().conditions).toEqual(['refresh_due']);
 	street.play(clippedRows(READY + BURST_MS, 1));
 	expect(street.view().conditions).toContain('clipped');
 });

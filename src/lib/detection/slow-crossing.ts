@@ -1,8 +1,7 @@
+import { SLOW_CROSSING } from './confidence';
 import { clearDoubt, doubtIt } from './entries';
 import type { Node } from './state';
 import { offMg, onMg } from './thresholds';
-
-const REASON = 'the field crossed the threshold slowly';
 
 /**
  * A still level over the threshold that no step brought: drift, or a vehicle that was not seen to come. The bay
@@ -11,6 +10,6 @@ const REASON = 'the field crossed the threshold slowly';
 export function watchSlowCrossing(n: Node, dMg: number, atMs: number): void {
 	const { slow } = n;
 	if (slow.doubt === null) {
-		if (dMg >= onMg(n) && slow.pending === null) doubtIt(n, REASON, atMs);
-	} else if (slow.doubt.reason === REASON && dMg < offMg(n)) clearDoubt(n);
+		if (dMg >= onMg(n) && slow.pending === null) doubtIt(n, SLOW_CROSSING, atMs);
+	} else if (slow.doubt.reason === SLOW_CROSSING && dMg < offMg(n)) clearDoubt(n);
 }

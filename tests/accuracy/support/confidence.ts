@@ -8,6 +8,8 @@ import { takenAt } from './grade';
 export interface JudgedLooks {
 	random: Judged[];
 	nearEvents: Judged[];
+	/** Random instants at which the confidence was a cap: an upper limit, not an estimate. */
+	capped: Judged[];
 	looks: number;
 	unknown: number;
 	doubtful: number;
@@ -22,6 +24,7 @@ export function judgeLooks(generated: Generated, detected: Detected, run: string
 	const judged: JudgedLooks = {
 		random: [],
 		nearEvents: [],
+		capped: [],
 		looks: 0,
 		unknown: 0,
 		doubtful: 0,
@@ -29,7 +32,7 @@ export function judgeLooks(generated: Generated, detected: Detected, run: string
 	};
 	const windows = generated.plan.bays.map((_, bayIndex) => apartWindows(generated, bayIndex));
 	for (const look of detected.looks) {
-		const { bayIndex, atMs, state, confidence, doubt } = look;
+		const { bayIndex, atMs, state, confidence, doubt, capped } = look;
 		if (apartAt(windows[bayIndex]!, toMs) !== null) {
 			judged.underVehicle.looks++;
 			if (doubt !== null) judged.underVehicle.doubtful++;
@@ -44,6 +47,10 @@ export function judgeLooks(generated: Generated, detected: Detected, run: string
 		}
 		const right = (state === 'occupied') === takenAt(stays, look);
 		const one = { cluster: `${run} ${bayIndex}`, confidence, right };
+		if (capped) {
+			judged.capped.push(one);
+			continue;
+		}
 		judged.random.push(one);
 		const near = stays.some(
 			(stay) =>

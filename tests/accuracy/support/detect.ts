@@ -1,3 +1,4 @@
+import { capOf } from '$lib/detection/confidence';
 import { advance, encodeFast, encodeSlow, newGroup, view, type Group } from '$lib/detection/group';
 import type { ActItem, BayState, HistoryEntry, Outcome } from '$lib/detection/types';
 import { builtInProfile, type SensorProfile } from '$lib/magnetics/sensor-profile';
@@ -14,6 +15,8 @@ export interface Look {
 	state: BayState;
 	confidence: number | null;
 	doubt: string | null;
+	/** Its confidence is an 'at most' (provisional reference, carried over a pulse under a vehicle). */
+	capped: boolean;
 }
 
 export interface Detected {
@@ -32,6 +35,7 @@ export interface Detected {
 
 const LOOK_EVERY_MS = 20 * 60_000;
 const SLOT_SHARE = 0.9;
+const GRACE_S = 900;
 
 export interface DetectOptions {
 	params?: Readonly<Record<string, number>>;
@@ -74,7 +78,7 @@ function members(generated: Generated, nodes: readonly number[], options: Detect
 			row: generated.plan.bays[node.bayIndex]!.row,
 			profile,
 			periodS: generated.scenario.periodS,
-			graceS: 900,
+			graceS: GRACE_S,
 			params: options.params ?? {}
 		};
 	});
@@ -166,9 +170,21 @@ function look(
 ): void {
 	for (const nodeId of nodes) {
 		const { bayIndex } = generated.plan.nodes[nodeId]!;
-		const { state, confidence, doubt } = view(group, nodeId);
+		const said = view(group, nodeId);
+		// Judged on arrival by the server, never by the detector (method, 'History and feed').
+		const lost = atMs - group.byId.get(nodeId)!.fast.lastAtMs > GRACE_S * 1000;
+		const state = lost ? 'unknown' : said.state;
+		const { confidence, doubt } = said;
+		const capped = capOf(group.byId.get(nodeId)!) < 1;
 		detected.fastBytes = Math.max(detected.fastBytes, encodeFast(group, nodeId).length);
 		detected.slowBytes = Math.max(detected.slowBytes, encodeSlow(group, nodeId).length);
-		detected.looks.push({ bayIndex, atMs, state, confidence, doubt: doubt?.reason ?? null });
+		detected.looks.push({
+			bayIndex,
+			atMs,
+			state,
+			confidence,
+			doubt: doubt?.reason ?? null,
+			capped
+		});
 	}
 }

@@ -90,6 +90,17 @@ export function reliabilityLines(title: string, judged: readonly Judged[], seed:
 	];
 }
 
+/** What was said and what came where the method caps the confidence (provisional, carried under a vehicle). */
+export function cappedLine(judged: readonly Judged[]): string[] {
+	const n = judged.length;
+	if (n === 0) return [];
+	const said = judged.reduce((sum, { confidence }) => sum + confidence, 0) / n;
+	const right = judged.filter((one) => one.right).length;
+	return [
+		`confidence under a cap: n ${n}  said at most ${said.toFixed(4)}  came ${(right / n).toFixed(4)} ${limits(right, n)}`
+	];
+}
+
 /** One JSON line a scenario for whoever reads benches by program. */
 export function jsonLine(name: string, seeds: readonly number[], score: Score): string {
 	const { precision, recall, f1 } = figuresOf(score);
