@@ -13,7 +13,7 @@ import { asProblem, noRoute } from '$lib/server/api/refusals';
 import { authConfig } from '$lib/server/auth/authjs';
 import { identify, isProgram, NOBODY, type Caller } from '$lib/server/auth/identify';
 import { languageOf, speaking } from '$lib/server/auth/language';
-import { forgedRequest } from '$lib/server/auth/origin';
+import { forgedRequest, isOneClick } from '$lib/server/auth/origin';
 import { cookieOptions, SESSION_MAX_AGE_S } from '$lib/server/auth/session';
 
 export const init: ServerInit = async () => {
@@ -71,7 +71,7 @@ async function answer(app: Instance, event: Event, resolve: Resolve): Promise<Re
 		origin: request.headers.get('origin'),
 		ours: app.config.origin ?? url.origin,
 		hasSession: event.cookies.get(app.sessions.cookieName) !== undefined,
-		program: isProgram(url.pathname, authorization)
+		program: isProgram(url.pathname, authorization) || isOneClick(url.pathname)
 	});
 	if (forged) return refuse(api, 403, 'This request came from another site, or from none.');
 	if (url.pathname.startsWith('/api/v1') && request.method === 'OPTIONS') {

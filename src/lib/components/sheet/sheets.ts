@@ -68,6 +68,14 @@ export const SHEETS: readonly Sheet[] = [
 		roles: ALL
 	},
 	{
+		number: '13',
+		name: 'Notices',
+		letter: 't',
+		path: (site) => `/sites/${site}/notices`,
+		ofSite: true,
+		roles: ['operator', 'maintenance', 'admin']
+	},
+	{
 		number: '8',
 		name: 'Connections',
 		letter: 'k',
@@ -110,11 +118,11 @@ export const SHEETS: readonly Sheet[] = [
 	}
 ];
 
-/** Sheets a role may open; those of a site only when there is one to show. */
+/** Sheets a role may open, by number; those of a site only when there is one to show. */
 export const sheetsFor = (role: string, site: string | null): Sheet[] =>
 	SHEETS.filter(
 		(sheet) => (sheet.roles as readonly string[]).includes(role) && (!sheet.ofSite || site !== null)
-	);
+	).sort((a, b) => Number(a.number) - Number(b.number));
 
 /** Where a person lands after signing in (product.md, 'The people'). */
 export function firstScreen(role: string, sites: readonly string[]): string {

@@ -2,6 +2,12 @@
 const SAFE = new Set(['GET', 'HEAD', 'OPTIONS', 'TRACE']);
 
 /**
+ * Mail programs post here without cookie or Origin (RFC 8058), some from a page of their own. What it does
+ * hangs on the sealed token in its address alone, a session is not looked at: nothing to forge.
+ */
+export const isOneClick = (pathname: string): boolean => pathname === '/unsubscribe';
+
+/**
  * true = refuse. With a session cookie an Origin that is ours must stand there, whatever the content
  * type; without one a foreign Origin is refused all the same (signing somebody in as somebody else).
  */
