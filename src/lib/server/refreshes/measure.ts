@@ -55,13 +55,20 @@ async function stillBefore(sql: Sql, r: OpenRefresh, profile: SensorProfile, pul
 	return stillRows(list, noiseOf(list) ?? DEFAULT_SIGMA_MG);
 }
 
-const referenceOf = (row: facts.ReferenceRow | null): ProofInput['reference'] =>
-	row === null ? null : { fieldMg: [row.x, row.y, row.z], tempC: row.tempC, sigmaMg: row.sigmaMg };
-
 const offsetOf = (row: facts.ReferenceRow | null): Vec3 | null =>
 	row === null || row.ox === null || row.oy === null || row.oz === null
 		? null
 		: [row.ox, row.oy, row.oz];
+
+const referenceOf = (row: facts.ReferenceRow | null): ProofInput['reference'] =>
+	row === null
+		? null
+		: {
+				fieldMg: [row.x, row.y, row.z],
+				offsetMg: offsetOf(row),
+				tempC: row.tempC,
+				sigmaMg: row.sigmaMg
+			};
 
 /** Everything that the proof holds against each other; null while the pair is not there. */
 export async function proofInput(

@@ -27,7 +27,13 @@ export interface ProofInput {
 	rowsBefore: readonly ProofRow[];
 	rowsAfter: readonly ProofRow[];
 	offsetBeforeMg: Vec3 | null;
-	reference: { fieldMg: Vec3; tempC: number | null; sigmaMg: number } | null;
+	/** `offsetMg` null: learned before the first pair, so its field still holds the offset. */
+	reference: {
+		fieldMg: Vec3;
+		offsetMg: Vec3 | null;
+		tempC: number | null;
+		sigmaMg: number;
+	} | null;
 	sensitivityTempcoPerC: number;
 	/** Unexplained drift by drift's own books, before and (once an hour has closed) after; null = not known. */
 	unexplainedBeforeMg: number | null;
@@ -85,7 +91,8 @@ function filmOf(input: ProofInput, offset: Vec3, healed: Vec3) {
 	return { before, loss, percent: (100 * magnitude(loss)) / magnitude(healed) };
 }
 
-function gainOf({ reference, pulseTempC, sensitivityTempcoPerC }: ProofInput, healed: Vec3) {
+function gainOf(input: ProofInput, offset: Vec3, healed: Vec3) {
+	const { reference, pulseTempC, sensitivityTempcoPerC } = input;
 	if (reference === null) return null;
 	const temp = pulseTempC ?? reference.tempC ?? 0;
 	const atReference = fieldAtReference(
@@ -94,7 +101,9 @@ function gainOf({ reference, pulseTempC, sensitivityTempcoPerC }: ProofInput, he
 		temp,
 		reference.tempC ?? temp
 	);
-	return magnitude(atReference) / magnitude(reference.fieldMg);
+	const quiet =
+		reference.offsetMg === null ? subtract(reference.fieldMg, offset) : reference.fieldMg;
+	return magnitude(atReference) / magnitude(quiet);
 }
 
 /** Largest distance on an axis between `after` and `set`, held against 4 sigma of a difference (method 2). */
@@ -174,7 +183,7 @@ export function prove(input: ProofInput, params: RefreshParams): Proof {
 		unexplainedBeforeMg: input.unexplainedBeforeMg,
 		unexplainedAfterMg,
 		driftingMg,
-		gainRatio: gainOf(input, healed),
+		gainRatio: gainOf(input, offset, healed),
 		readings: n,
 		tempC: input.pulseTempC,
 		checks

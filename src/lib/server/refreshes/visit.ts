@@ -20,7 +20,7 @@ export async function sendSomeone(
 	const askedBy = personOf(row.approvedBy) ?? personOf(row.askedBy);
 	await run(
 		sql,
-		'INSERT INTO visit_request (site_id, bay_id, node_id, reason, asked_by, asked_at_ms) VALUES (?)',
-		[[row.siteId, row.bayId, row.nodeId, `film refresh: ${why}`.slice(0, 400), askedBy, atMs]]
+		'INSERT INTO visit_request (site_id, bay_id, node_id, reason, asked_by, asked_at_ms) VALUES (?, ?, ?, ?, (SELECT id FROM person WHERE id = ?), ?)',
+		[row.siteId, row.bayId, row.nodeId, `film refresh: ${why}`.slice(0, 400), askedBy, atMs]
 	);
 }

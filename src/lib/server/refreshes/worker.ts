@@ -198,7 +198,7 @@ function guardFacts(r: OpenRefresh, s: RefreshSettings, look: Look): GuardFacts 
 		batteryMv: r.batteryMv,
 		batteryFloorMv: profile?.batteryFloorMv ?? Infinity,
 		// What was sent and not answered may have fired.
-		lastPulseAtMs: maxOf(r.lastPulseAtMs, r.commandId === null ? null : r.sentAtMs),
+		lastPulseAtMs: maxOf(r.lastPulseAtMs, r.sentAtMs),
 		lastEndAtMs: r.lastEndAtMs,
 		holdOffMs: s.holdOffH * HOUR_MS,
 		underWay: look.underWay.get(r.siteId) ?? 0,
