@@ -41,6 +41,7 @@ describe('every reading route answers exactly what openapi.json says', () => {
 		['GET /sites/{site}/closures', '/sites/tallow-yard/closures'],
 		['GET /sites/{site}/nodes', '/sites/tallow-yard/nodes'],
 		['GET /nodes/{serial}', '/nodes/SEED-A-03'],
+		['GET /nodes/{serial}/drift', '/nodes/SEED-A-03/drift?hours=48'],
 		['GET /nodes/{serial}/readings', '/nodes/SEED-A-03/readings'],
 		['GET /nodes/{serial}/readings', '/nodes/SEED-A-03/readings?points=10'],
 		['GET /nodes/{serial}/readings', '/nodes/SEED-A-03/readings?raw=true&limit=7']

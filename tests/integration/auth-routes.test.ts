@@ -42,6 +42,7 @@ const EXPECTED: Record<RouteName, [Scope | 'any' | 'none', Role[]]> = {
 	'POST /nodes/{serial}/accept': ['provision', FITTERS],
 	'POST /nodes/{serial}/withdraw': ['provision', FITTERS],
 	'GET /nodes/{serial}/readings': ['telemetry', READERS],
+	'GET /nodes/{serial}/drift': ['telemetry', READERS],
 	'POST /nodes/{serial}/refresh': ['refresh', EVERYDAY],
 	'GET /refreshes': ['refresh', EVERYDAY],
 	'GET /refreshes/{id}': ['refresh', EVERYDAY],

@@ -5,6 +5,10 @@ import { rewindSite } from '$lib/server/drift/rewind';
 import { nodesBySite } from '$lib/server/drift/site-nodes';
 import { replayMarked } from '$lib/server/ingest/far-replay';
 import { Transactions } from '$lib/server/ingest/transaction';
+import { driftBoard } from '$lib/server/drift/board-view';
+import { driftAnswer, nodeDriftView } from '$lib/server/drift/node-view';
+import * as schemas from '$lib/schemas/desk-drift';
+import { nodeDrift } from '$lib/schemas/v1/drift';
 import * as hours from '$lib/server/store/queries/drift-hours';
 import * as pairs from '$lib/server/store/queries/drift-pairs';
 import * as state from '$lib/server/store/queries/drift-state';
@@ -120,6 +124,34 @@ describe('a fleet with known causes', () => {
 		expect(magnitude((await lastOf(1))!.unexplainedMg)).toBeGreaterThan(25);
 		expect(await shownOf(1)).toMatchObject({ condition: 'refresh_due', also: 'drifting' });
 		expect((await shownOf(0))?.condition).toBe('in_service');
+	});
+
+	test('the board ranks it first, with its next step, and has the line of the site', async () => {
+		const of = { id: run.site.siteId, pairRule: 'calibrate' as const };
+		const board = schemas.driftBoard.parse(await driftBoard(run.store.pool, of, 72, Date.now()));
+		expect(board.rows).toHaveLength(8);
+		expect(board.rows[0]).toMatchObject({
+			...{ serial: run.node(1).serial, condition: 'refresh_due', next: 'a film refresh' },
+			refresh: { due: true, reasons: [{ reason: 'unexplained' }] },
+			...{ cause: { cause: 'unexplained' }, drifting: { by: 'level' } }
+		});
+		// 6 mG within an hour is a 3-hour range of more than 5 mG, where K = 9 begins (check-values 8a).
+		expect(Math.max(...board.line.kRanges.map(({ k }) => k))).toBe(9);
+	});
+
+	test('one node is told in full, to people and to programs, and its parts add up', async () => {
+		const { id, serial } = run.node(2);
+		const wanted = { node: { id, siteId: run.site.siteId, serial }, hours: 48, nowMs: Date.now() };
+		const view = schemas.nodeDriftView.parse(
+			await nodeDriftView(run.store.pool, 'osier-yard', wanted)
+		);
+		expect(view.slope?.triples).toBeGreaterThan(40);
+		expect(view.pairs[0]?.named?.cause).toBe('bridge');
+		expect(view.scatter.length).toBeGreaterThan(40);
+		const answer = nodeDrift.parse(await driftAnswer(run.store.pool, wanted));
+		const { totalMg, ...parts } = answer.vectors!;
+		const sum = Object.values(parts).reduce((total, part) => total + part[0], 0);
+		expect(Math.abs(sum - totalMg[0])).toBeLessThan(0.05);
 	});
 
 	test('the condition is in the change log', async () => {

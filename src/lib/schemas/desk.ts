@@ -1,5 +1,6 @@
 import { z } from 'zod';
 import { parameterIn, parameterQuery } from './desk-parameters';
+import { driftBoardQuery, nodeDriftQuery } from './desk-drift';
 import { code } from './v1/common';
 import { spec } from './v1/spec';
 
@@ -44,6 +45,18 @@ export const DESK_ROUTES = {
 		roles: everyday,
 		body: z.strictObject({ outcome: reason }),
 		status: 204
+	}),
+	driftBoard: spec({
+		summary: 'Drift of every node by cause, and the geomagnetic line of the site',
+		scope: null,
+		roles: everyone,
+		query: driftBoardQuery
+	}),
+	nodeDrift: spec({
+		summary: 'Drift of one node: hours, parts, chart, scatter, pairs',
+		scope: null,
+		roles: everyone,
+		query: nodeDriftQuery
 	}),
 	ask: spec({
 		summary: 'Ask the node for a reading and a report now',

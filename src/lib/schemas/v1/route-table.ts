@@ -1,6 +1,7 @@
 import { z } from 'zod';
 import * as bays from './bays';
 import { acted, changeIdIn, page } from './common';
+import * as drift from './drift';
 import * as feed from './feed';
 import { featureCollection } from './geojson';
 import * as nodes from './nodes';
@@ -203,6 +204,12 @@ export const ROUTES = {
 		scope: 'telemetry',
 		query: nodes.readingQuery,
 		answer: nodes.readingList
+	}),
+	'GET /nodes/{serial}/drift': spec({
+		summary: 'What moved the quiet field since the reference, by cause',
+		scope: 'telemetry',
+		query: drift.nodeDriftQuery,
+		answer: drift.nodeDrift
 	}),
 	'POST /nodes/{serial}/refresh': spec({
 		summary: 'Ask for a film refresh; a person approves it',
