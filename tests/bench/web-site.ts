@@ -28,7 +28,7 @@ export async function makeWideSite(store: Store): Promise<number> {
 		);
 	}
 	await store.pool.query(
-		`INSERT INTO bay_state (bay_id, site_id, state, since_ms, confidence20, \`condition\`)
+		`INSERT INTO bay_state (bay_id, site_id, state, since_ms, confidence_20, \`condition\`)
 		 SELECT id, site_id, IF(id % 9 < 5, 'occupied', 'vacant'), ?, 19, 'in_service' FROM bay WHERE site_id = ?`,
 		[nowMs - 3_600_000, siteId]
 	);

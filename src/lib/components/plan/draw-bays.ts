@@ -16,6 +16,9 @@ export interface BayMark {
 export const LARGE_PX = 14;
 export const SMALL_PX = 5;
 const DASH = [4, 3];
+const COMMON_LETTER_PX = 13;
+/** A bay must be this many times as wide as large lettering. */
+const MOST_COVERED = 2.4;
 
 export type BaySize = 'large' | 'small' | 'strip';
 export function sizeOf(shortPx: number): BaySize {
@@ -135,6 +138,8 @@ function letter(pen: Pen, { bay, corners, shown }: SeenBay, view: View, leastPx:
 	// Letters lie along the long side where they don't fit across.
 	const across = Math.abs(Math.sin(level)) > 0.7 && textWidth(bay.code, sizePx) <= shortPx - 5;
 	const angle = across || Math.abs(level) < 0.2 ? 0 : level;
+	// Lettering that would hide the state is left out: what a bay is comes before what it is called.
+	if (leastPx > COMMON_LETTER_PX && shortPx < sizePx * MOST_COVERED) return;
 	const lines = linesOf(bay, shown);
 	const room = angle === 0 && Math.abs(Math.sin(level)) > 0.7 ? shortPx : longPx;
 	const depth = angle === 0 && Math.abs(Math.sin(level)) > 0.7 ? longPx : shortPx;

@@ -154,7 +154,8 @@ export const de: Messages = {
 		space: 'wählen',
 		enter: 'Akte öffnen',
 		escape: 'zurück',
-		zoom: 'näher, ferner, ganzer Standort'
+		zoom: 'näher, ferner, ganzer Standort',
+		drift: 'Pfeile der Drift: über der Grenze, alle, keine'
 	},
 	planKeyNames: {
 		arrows: 'Pfeile',
@@ -165,14 +166,16 @@ export const de: Messages = {
 		space: 'Leertaste',
 		enter: 'Eingabe',
 		escape: 'Escape',
-		zoom: '+ − 0'
+		zoom: '+ − 0',
+		drift: '*'
 	},
 	plan: {
 		of: (site) => `Plan von ${site}`,
 		ofBays: (site, bays) => `Plan von ${site}, ${bays}`,
 		tableOf: (site) => `${site}, Tabelle der Stellplätze`,
 		spokenKeys:
-			'Pfeiltasten gehen zum nächsten Stellplatz, Pos1 und Ende entlang der Reihe, Bildtasten nach Zonen, Punkt und Komma zu den Stellplätzen, die jemanden brauchen, Buchstaben und Ziffern zu einem Kürzel, die Leertaste wählt, Eingabe öffnet, Escape geht zurück, Plus, Minus und 0 ändern die Größe.',
+			'Pfeiltasten gehen zum nächsten Stellplatz, Pos1 und Ende entlang der Reihe, Bildtasten nach Zonen, Punkt und Komma zu den Stellplätzen, die jemanden brauchen, Buchstaben und Ziffern zu einem Kürzel, die Leertaste wählt, Eingabe öffnet, Escape geht zurück, Plus, Minus und 0 ändern die Größe',
+		spokenArrows: ', der Stern wechselt, welche Pfeile der Drift gezeichnet sind',
 		row: (number) => `Reihe ${number}`,
 		ofRow: (at, of) => `${at} von ${of}`,
 		was: (state, time) => `war ${state} ${time}`,

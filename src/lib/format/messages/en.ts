@@ -161,7 +161,8 @@ export const en = {
 		space: 'pick',
 		enter: 'open the dossier',
 		escape: 'return',
-		zoom: 'nearer, farther, whole site'
+		zoom: 'nearer, farther, whole site',
+		drift: 'arrows of drift: past the limit, all, none'
 	},
 	planKeyNames: {
 		arrows: 'arrows',
@@ -172,14 +173,16 @@ export const en = {
 		space: 'Space',
 		enter: 'Enter',
 		escape: 'Escape',
-		zoom: '+ − 0'
+		zoom: '+ − 0',
+		drift: '*'
 	},
 	plan: {
 		of: (site: string) => `Plan of ${site}`,
 		ofBays: (site: string, bays: string) => `Plan of ${site}, ${bays}`,
 		tableOf: (site: string) => `${site}, table of bays`,
 		spokenKeys:
-			'Arrow keys go to the nearest bay, Home and End along the row, Page keys by zone, full stop and comma to the bays that need a person, letters and digits to a code, Space picks, Enter opens, Escape returns, plus, minus and 0 change the size.',
+			'Arrow keys go to the nearest bay, Home and End along the row, Page keys by zone, full stop and comma to the bays that need a person, letters and digits to a code, Space picks, Enter opens, Escape returns, plus, minus and 0 change the size',
+		spokenArrows: ', the asterisk changes which arrows of drift are drawn',
 		row: (number: number) => `row ${number}`,
 		ofRow: (at: number, of: number) => `${at} of ${of}`,
 		was: (state: string, time: string) => `was ${state} ${time}`,
