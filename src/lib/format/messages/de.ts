@@ -94,9 +94,13 @@ export const de: Messages = {
 		Closures: 'Sperrungen',
 		'Sent for': 'Gerufen',
 		Drift: 'Drift',
+		'Film refreshes': 'Filmauffrischungen',
 		Connections: 'Anbindungen',
 		People: 'Personen',
 		Mail: 'Post',
+		Parameters: 'Parameter',
+		'How decided': 'Wie entschieden',
+		Notices: 'Meldungen',
 		'Wall links': 'Wandlinks',
 		'My desk': 'Mein Platz',
 		'Sites register': 'Verzeichnis der Standorte'

@@ -101,9 +101,13 @@ export const en = {
 		Closures: 'Closures',
 		'Sent for': 'Sent for',
 		Drift: 'Drift',
+		'Film refreshes': 'Film refreshes',
 		Connections: 'Connections',
 		People: 'People',
 		Mail: 'Mail',
+		Parameters: 'Parameters',
+		'How decided': 'How decided',
+		Notices: 'Notices',
 		'Wall links': 'Wall links',
 		'My desk': 'My desk',
 		'Sites register': 'Sites register'
