@@ -55,7 +55,7 @@ export const CHAPTERS: readonly Chapter[] = [
 			{
 				title: 'The quiet field',
 				text: (say) => [
-					`A new node learns it from at least ${say('learnReadings')} over ${say('learnS')} with no more than ${say('learnSigmaMg')} of noise. A vehicle that stands still passes that test too, so a person says that they see the bay empty; without that it is provisional until the field has left and come back within ${say('returnMg')} ${say('returnsToProve')}.`,
+					`A new node learns it from at least ${say('learnReadings')} over ${say('learnS')} with no more than ${say('learnSigmaMg')} of noise. A vehicle that stands still passes that test too, so a person says that they see the bay empty; without that it is provisional until the field has left and come back within ${say('returnMg')} on ${say('returnsToProve')}.`,
 					`While the bay is free and still, the quiet field follows slow change within about ${say('baselineTauS')}. While it is taken it learns nothing, but follows temperature and the site’s geomagnetic change.`
 				]
 			},
