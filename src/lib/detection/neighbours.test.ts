@@ -146,3 +146,30 @@ describe('echo of a neighbour', () => {
 		expect(street.entries(1).at(-1)!.evidence.because).toContain('neighbour {node:2} quiet');
 	});
 });
+
+test('an echo from before the bay’s own departure is no part of the baseline that followed', () => {
+	const street = new Street(bays(2)).commission();
+	const large: Vec3 = [200, 250, -150];
+	const echo: Vec3 = [40, 40, -30];
+	const own: Vec3 = [-90, 60, 110];
+	const withEcho = plus(QUIET, echo);
+	const t = (min: number) => READY + min * MIN;
+	street.play(
+		drives(2, READY, QUIET, plus(QUIET, large)),
+		drives(1, READY, QUIET, withEcho, withEcho),
+		beats(2, t(1), t(30), plus(QUIET, large)),
+		beats(1, t(1), t(10), withEcho),
+		drives(1, t(10), withEcho, plus(withEcho, own)),
+		beats(1, t(11), t(20), plus(withEcho, own)),
+		// The neighbour had moved up meanwhile: its echo is gone when this vehicle leaves.
+		drives(1, t(20), plus(withEcho, own), QUIET),
+		beats(1, t(21), t(30), QUIET)
+	);
+	expect(street.moves(1)).toEqual(['arrival', 'departure']);
+	street.play(
+		drives(2, t(30), plus(QUIET, large), QUIET),
+		...[1, 2].map((id) => beats(id, t(31), t(40), QUIET))
+	);
+	expect(street.view(1).disturbanceMg!).toBeLessThan(5);
+	expect(street.view(1).doubt).toBeNull();
+});

@@ -266,10 +266,13 @@ export function revealEchoes(g: Group, n: Node, atMs: number): void {
 
 function reveal(g: Group, n: Node, e: Echo, atMs: number): void {
 	const { fast, slow } = n;
+	const changedSince = slow.sinceMs !== null && slow.sinceMs > e.atMs;
+	// A departure since has taken the level as it was for the baseline: the echo is no part of it any more.
+	if (changedSince && slow.state === 'vacant') return;
 	const withEcho = apart(fast.level, fast.baseline);
 	shift3(fast.baseline, e.j, -1);
 	const without = apart(fast.level, fast.baseline);
-	if (slow.sinceMs !== null && slow.sinceMs > e.atMs) return;
+	if (changedSince) return;
 	if (slow.state === 'vacant' && without >= onMg(n) && withEcho < without)
 		arriveAfterAll(g, n, e, atMs);
 	else if (slow.state === 'occupied') leaveAfterAll(g, n, e, atMs);
