@@ -190,7 +190,7 @@ export const isSpared = (
 	visit.outToMs > bornMs - 6 * HOUR_MS &&
 	visit.inFromMs < bornMs + 30 * HOUR_MS;
 
-/** One drifting, one inverted, one silent, one low cell, one doubtful; times count from the demo's first start. */
+/** Three drifting (one of them due for a film refresh), one inverted, one silent, one low cell, one doubtful; times count from the demo's first start. */
 export function troubleOf(code: string, bornMs: number): Trouble {
 	const trouble: Trouble = { events: [], silentFromMs: Infinity, cellEndsFromMs: Infinity };
 	if (code === 'Q04') {
@@ -201,6 +201,25 @@ export function troubleOf(code: string, bornMs: number): Trouble {
 			toMs: atMs + 9 * DAY_MS,
 			remaining: [0.95, 0.93, 0.915]
 		});
+	} else if (code === 'Q11') {
+		// A film that loses fast enough to be due for a pulse within days.
+		trouble.events.push({
+			kind: 'loss',
+			atMs: bornMs - 3.4 * DAY_MS,
+			toMs: bornMs - 0.4 * DAY_MS,
+			remaining: [0.93, 0.94, 0.92]
+		});
+	} else if (code === 'C03') {
+		// Steel laid nearby, told by the pair of the next night, and an offset that creeps ever since.
+		trouble.events.push(
+			{ kind: 'surroundings', atMs: bornMs - 5.3 * DAY_MS, byMg: [9, -13, 10] },
+			{
+				kind: 'offset',
+				atMs: bornMs - 3 * DAY_MS,
+				toMs: bornMs - 0.5 * DAY_MS,
+				byMg: [9, 7, -9]
+			}
+		);
 	} else if (code === 'C13') {
 		trouble.events.push({ kind: 'flip', atMs: bornMs - 7.3 * HOUR_MS, axes: [0, 1, 2] });
 	} else if (code === 'L02') trouble.silentFromMs = bornMs - 19.6 * HOUR_MS;

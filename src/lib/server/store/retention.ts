@@ -76,11 +76,19 @@ async function purgeSite(connection: Connection, site: SiteRow, nowMs: number): 
 			nodeId,
 			eventsMs
 		]);
+		deleted += await purge(connection, 'drift_hour WHERE node_id = ? AND hour_ms < ?', [
+			nodeId,
+			eventsMs
+		]);
 		deleted += await purge(connection, 'node_count WHERE node_id = ? AND day_ms < ?', [
 			nodeId,
 			eventsMs
 		]);
 	}
+	deleted += await purge(connection, 'drift_line WHERE site_id = ? AND hour_ms < ?', [
+		site.id,
+		eventsMs
+	]);
 	for (const bayId of await idsOf(connection, 'bay WHERE site_id = ?', site.id))
 		deleted += await purgeHistory(connection, bayId, eventsMs);
 	for (const bayId of await idsOf(connection, 'bay WHERE site_id = ? AND personal', site.id))
