@@ -68,6 +68,14 @@ export const SHEETS: readonly Sheet[] = [
 		roles: ALL
 	},
 	{
+		number: '7',
+		name: 'Film refreshes',
+		letter: 'f',
+		path: (site) => `/sites/${site}/refreshes`,
+		ofSite: true,
+		roles: ['operator', 'maintenance', 'admin']
+	},
+	{
 		number: '13',
 		name: 'Notices',
 		letter: 't',
