@@ -1,8 +1,12 @@
 import { afterAll, beforeAll, expect, test } from 'vitest';
+import { seedDrift } from '../support/seed-drift';
 import { alive, Office } from './support/desk';
 
 let office: Office;
-beforeAll(async () => (office = await Office.open()));
+beforeAll(async () => {
+	office = await Office.open();
+	await seedDrift(office.store, office.seeded);
+});
 afterAll(async () => await office.end());
 
 const SITE = '/sites/tallow-yard';
@@ -26,6 +30,22 @@ test('a setting out of range is refused by name and range; one within it holds, 
 	expect(await row.textContent()).toContain('trams pass close by');
 	await page.getByRole('button', { name: 'Undo On threshold, site' }).click();
 	await expect.poll(async () => await row.textContent(), { timeout: 10_000 }).toContain('35 mG');
+	await page.context().close();
+});
+
+test('the board ranks nodes, the worst first, and arrows choose the next one to look at', async () => {
+	const page = await office.signIn('maintenance');
+	await page.waitForURL((url) => url.pathname === `${SITE}/drift`);
+	await alive(page);
+	const bays = page.getByRole('group', { name: 'Nodes by drift' }).locator('button[data-row]');
+	await bays.first().waitFor();
+	// Seeded at 23.0 and 13.9 mG (tests/support/seed-drift.ts).
+	expect((await bays.allTextContents()).slice(0, 2)).toEqual(['B-02', 'A-03']);
+	await page.getByRole('heading', { name: 'B-02, node SEED-B-02' }).waitFor();
+	await bays.first().focus();
+	await page.keyboard.press('ArrowDown');
+	await page.getByRole('heading', { name: 'A-03, node SEED-A-03' }).waitFor();
+	await page.getByRole('row', { name: /^Unexplained/ }).waitFor();
 	await page.context().close();
 });
 
