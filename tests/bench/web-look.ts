@@ -14,13 +14,14 @@ import { makeWideSite, WIDE } from './web-site';
 /**
  * Pictures of the main sheets, and their prints on A4 and A3, into tests/.out; then each picture against
  * the one kept in tests/bench/reference: `npx tsx tests/bench/web-look.ts`, with `--keep` to take the new
- * ones as reference after looking at them. Times of day differ between runs: up to 4 % of the pixels may.
+ * ones as reference after looking at them, `--every` for more sheets and sizes, `--prints` for prints alone. Times of day differ between runs: up to 4 % of the pixels may.
  */
 const OUT = 'tests/.out';
 const REFERENCE = join(import.meta.dirname, 'reference');
 const TOLERANCE = 0.04;
 const keep = process.argv.includes('--keep');
 const every = process.argv.includes('--every');
+const prints = process.argv.includes('--prints');
 mkdirSync(OUT, { recursive: true });
 mkdirSync(REFERENCE, { recursive: true });
 
@@ -146,7 +147,7 @@ try {
 		},
 		Date.now()
 	);
-	const kept = [...SHOTS, shot('wall-1920', `/wall/${wall.text}`, 1920)];
+	const kept = prints ? [] : [...SHOTS, shot('wall-1920', `/wall/${wall.text}`, 1920)];
 	for (const one of kept) {
 		const png = await take(browser, app.origin, cookies, one);
 		const file = join(REFERENCE, `${one.name}.png`);
@@ -157,8 +158,8 @@ try {
 		const told = share === null ? 'kept' : Math.round(share * 1e4) / 1e4;
 		process.stdout.write(`${JSON.stringify({ bench: 'look', sheet: one.name, differs: told })}\n`);
 	}
-	if (every) {
-		for (const one of MORE) await take(browser, app.origin, cookies, one);
+	if (every) for (const one of MORE) await take(browser, app.origin, cookies, one);
+	if (every || prints)
 		for (const [name, path] of PRINTS) {
 			await page.goto(path);
 			await settled(page);
@@ -168,7 +169,6 @@ try {
 					...{ preferCSSPageSize: false, printBackground: true }
 				});
 		}
-	}
 } finally {
 	for (const end of ends) await end();
 }
