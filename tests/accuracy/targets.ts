@@ -17,21 +17,21 @@ export interface Target {
 
 const nothing = (): Record<string, boolean> => ({});
 
-/** The two that every test run judges (issue 2: 0.998 and 0.985). */
+/** The two that every test run judges (issue 5: 0.999 and 0.985); last seen 1.0000 and 0.9916, right 99.95 and 98.18 %. */
 export const SHORT_TARGETS: readonly Target[] = [
 	{
 		scenario: 'easy',
 		shortDays: 3,
-		f1: 0.998,
-		right: 0.998,
+		f1: 0.999,
+		right: 0.999,
 		eventsPerDay: 350,
 		holds: (facts) => ({ 'over 400 stays': facts.stays > 400 })
 	},
 	{
 		scenario: 'hard',
 		shortDays: 4,
-		f1: 0.985,
-		right: 0.97,
+		f1: 0.99,
+		right: 0.98,
 		eventsPerDay: 250,
 		holds: (facts) => ({
 			'a vehicle under 60 mG': facts.leastVehicleMg < 60,
@@ -58,7 +58,7 @@ export const SHORT_TARGETS: readonly Target[] = [
 	}
 ];
 
-const line = (scenario: string, holds: Target['holds'], f1 = 0.99, right = 0.98): Target => ({
+const line = (scenario: string, holds: Target['holds'], f1 = 0.995, right = 0.995): Target => ({
 	scenario,
 	shortDays: 0,
 	f1,
@@ -104,8 +104,8 @@ export const LINE_TARGETS: readonly Target[] = [
 	})),
 	line('reboots', (facts) => ({ reboots: facts.reboots > 50, backlogs: facts.backlog > 1000 })),
 	line('clocks', (facts) => ({ off: facts.clocksOff > 5, absent: facts.clocksAbsent > 3 })),
-	line('heartbeats', nothing, 0.99, 0.97),
+	line('heartbeats', nothing, 0.995, 0.99),
 	line('two-bays', (facts) => ({ 'over 60 mG next door': facts.mostEchoMg > 60 })),
-	line('silence', (facts) => ({ 'much not heard': facts.lost > 5000 }), 0.99, 0.94),
+	line('silence', (facts) => ({ 'much not heard': facts.lost > 5000 }), 0.99, 0.92),
 	line('by-rule', (facts) => ({ 'under a vehicle': facts.learnedUnderVehicle > 2 }))
 ];
