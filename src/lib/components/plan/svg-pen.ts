@@ -13,10 +13,13 @@ const n = (v: number) => String(Math.round(v * 100) / 100);
 const escaped = (text: string) =>
 	text.replaceAll('&', '&amp;').replaceAll('<', '&lt;').replaceAll('>', '&gt;');
 
-/** Draws the same plan as SVG, in ink on white: for print. `take` gives the markup. */
-export function svgPen(): Pen & { take(): string } {
+/**
+ * Draws the same plan as SVG, in ink on white: for print. `take` gives the markup. Two drawings in one
+ * document need names of their own for the hatching.
+ */
+export function svgPen(name = 'section'): Pen & { take(): string } {
 	const parts: string[] = [
-		'<defs><pattern id="section" width="6" height="6" patternUnits="userSpaceOnUse" patternTransform="rotate(45)"><path d="M0 0v6" stroke="#555" stroke-width="1"/></pattern></defs>'
+		`<defs><pattern id="${name}" width="6" height="6" patternUnits="userSpaceOnUse" patternTransform="rotate(45)"><path d="M0 0v6" stroke="#555" stroke-width="1"/></pattern></defs>`
 	];
 	const d = (paths: readonly Path[]) =>
 		paths
@@ -25,7 +28,7 @@ export function svgPen(): Pen & { take(): string } {
 					`M${points.map((p) => `${n(p.x)} ${n(p.y)}`).join('L')}${closed ? 'Z' : ''}`
 			)
 			.join('');
-	const paint = (fill: Fill) => (fill === 'hatching' ? 'url(#section)' : BLACK_ON_WHITE[fill]);
+	const paint = (fill: Fill) => (fill === 'hatching' ? `url(#${name})` : BLACK_ON_WHITE[fill]);
 	return {
 		fill(paths, fill) {
 			if (paths.length > 0) parts.push(`<path d="${d(paths)}" fill="${paint(fill)}"/>`);
