@@ -13,9 +13,9 @@ const GRADES = {
 	faint: 0.95,
 	gapFactor: 0.99,
 	/** While a step away from this state is seen or waits for its neighbours: it came true in 0.3 to 0.5. */
-	moving: 0.4,
+	moving: 0.37,
 	/** While the level itself speaks against the state: 0.3 to 0.4 came true. */
-	doubted: 0.4,
+	doubted: 0.37,
 	aisle: 0.6,
 	provisional: 0.9,
 	least: 0.5
