@@ -74,7 +74,8 @@ async function measure(): Promise<void> {
 				id,
 				bayId,
 				placedAtMs: beginMs,
-				profile: BUILT_IN_PROFILES[0]!
+				profile: BUILT_IN_PROFILES[0]!,
+				nearBayIds: []
 			}))
 		};
 		for (let h = 0; h < HOURS; h++) {

@@ -168,7 +168,7 @@ describe('hours closed again', () => {
 	test('from the beginning give the same bytes', async () => {
 		const before = await dump();
 		const { siteId, fromMs, pairRule } = await site();
-		const nodes = nodesBySite(run.pipeline.room.registry.all()).get(siteId)!;
+		const nodes = nodesBySite(run.pipeline.room.registry).get(siteId)!;
 		await run.rows('DELETE FROM drift_snapshot WHERE site_id = ?', [siteId]);
 		const closing = { sql: run.store.pool, transactions: transactions() };
 		await rewindSite(closing, { siteId, fromMs, rule: pairRule, nodes }, fromMs, 0);
@@ -194,7 +194,7 @@ describe('hours closed again', () => {
 		).length;
 		expect([without, withThem]).toEqual([0, 3]);
 		const { siteId, fromMs, pairRule } = await site();
-		const nodes = nodesBySite(run.pipeline.room.registry.all()).get(siteId)!;
+		const nodes = nodesBySite(run.pipeline.room.registry).get(siteId)!;
 		await run.rows('DELETE FROM drift_snapshot WHERE site_id = ?', [siteId]);
 		const closing = { sql: run.store.pool, transactions: transactions() };
 		await rewindSite(closing, { siteId, fromMs, rule: pairRule, nodes }, fromMs, 0);

@@ -55,7 +55,7 @@ export class DriftJob {
 	async look(nowMs: number): Promise<number> {
 		await tellPairs(this.#pipeline, nowMs);
 		const { pool, registry } = this.#pipeline.room;
-		const nodes = nodesBySite(registry.all());
+		const nodes = nodesBySite(registry);
 		const marks = new Map((await state.marks(pool)).map((mark) => [mark.siteId, mark]));
 		const upToDate: state.DriftSite[] = [];
 		let hours = 0;

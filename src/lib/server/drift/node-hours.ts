@@ -51,11 +51,12 @@ export async function readHour(
 ): Promise<NodeInput[]> {
 	const ids = nodes.map(({ id }) => id);
 	const bays = nodes.map(({ bayId }) => bayId);
+	const near = nodes.flatMap(({ nearBayIds }) => nearBayIds);
 	const toMs = hourMs + HOUR_MS;
 	const [references, readings, entries, spans, fired] = await Promise.all([
 		inputs.references(sql, ids, toMs),
 		inputs.readings(sql, ids, hourMs, toMs),
-		inputs.states(sql, bays, hourMs, toMs),
+		inputs.states(sql, [...new Set([...bays, ...near])], hourMs, toMs),
 		inputs.closures(sql, bays, hourMs, toMs),
 		inputs.pulses(sql, ids, hourMs, toMs)
 	]);
@@ -72,6 +73,7 @@ export async function readHour(
 				{
 					rows: rows.get(node.id) ?? [],
 					states: states.get(node.bayId) ?? [],
+					near: node.nearBayIds.map((bayId) => states.get(bayId) ?? []),
 					closed: closed.get(node.bayId) ?? [],
 					pulses: pulses.get(node.id) ?? []
 				},
@@ -89,6 +91,8 @@ interface Where {
 interface Read {
 	rows: readonly inputs.HourRow[];
 	states: readonly inputs.StateRow[];
+	/** The same of each bay beside it. */
+	near: readonly (readonly inputs.StateRow[])[];
 	closed: readonly inputs.ClosedSpan[];
 	pulses: readonly inputs.DriftPulse[];
 }
@@ -102,7 +106,7 @@ function inputOf(where: Where, read: Read, known: Known): NodeInput {
 	const toMs = Math.min(hourMs + HOUR_MS, pulses[0]?.atMs ?? Infinity);
 	const states = read.states.filter(({ atMs }) => atMs >= node.placedAtMs);
 	const open = (span: { fromMs: number; toMs: number }) =>
-		without(stretchesOf(states, span), read.closed);
+		without(stretchesOf(states, span, read.near), read.closed);
 	const rows = read.rows.filter(({ atMs }) => atMs >= node.placedAtMs);
 	const raw = rows.map((row): RawRow => toRaw(row, node));
 	const isVacantAt = (atMs: number) =>

@@ -1,6 +1,7 @@
 import { DRIFT_PARAMS, driftSettings, type DriftSettings } from '$lib/drift/params';
 import type { SensorProfile } from '$lib/magnetics/sensor-profile';
-import { inService, type NodeEntry } from '$lib/server/ingest/node-entry';
+import { inService } from '$lib/server/ingest/node-entry';
+import type { Registry } from '$lib/server/ingest/registry';
 import type { Sql } from '$lib/server/store/queries/bulk';
 import * as inputs from '$lib/server/store/queries/drift-inputs';
 
@@ -10,16 +11,22 @@ export interface SiteNode {
 	bayId: number;
 	placedAtMs: number;
 	profile: SensorProfile;
+	/** Bays within 4 m: what stands there moves this node's field too. */
+	nearBayIds: readonly number[];
 }
 
 /** Nodes in service by site, ids rising. */
-export function nodesBySite(entries: Iterable<NodeEntry>): Map<number, SiteNode[]> {
+export function nodesBySite(
+	registry: Pick<Registry, 'all' | 'byId' | 'neighboursOf'>
+): Map<number, SiteNode[]> {
 	const sites = new Map<number, SiteNode[]>();
-	for (const entry of entries) {
+	for (const entry of registry.all()) {
 		const { bayId, placedAtMs, siteId, profile } = entry.config;
 		if (!inService(entry) || bayId === null || placedAtMs === null) continue;
 		const nodes = sites.get(siteId) ?? [];
-		nodes.push({ id: entry.id, bayId, placedAtMs, profile });
+		const near = registry.neighboursOf(entry.id);
+		const nearBayIds = near.flatMap((id) => registry.byId(id)?.config.bayId ?? []);
+		nodes.push({ id: entry.id, bayId, placedAtMs, profile, nearBayIds });
 		sites.set(siteId, nodes);
 	}
 	for (const nodes of sites.values()) nodes.sort((a, b) => a.id - b.id);
