@@ -13,12 +13,12 @@ import { transaction } from '$lib/server/store/transaction';
 import { startDatabase } from '../support/database';
 
 /**
- * `npm run bench:outbox`: 10,000 notices (100 sites of 100) told to 100 people each as 10,000 mails, over
+ * `npm run bench:outbox`: 10,000 notices (1,000 sites of 10) told to 10 people each as 10,000 mails, over
  * MariaDB on disk and a real SMTP session by two senders. Counts what arrived.
  */
-const SITES = 100;
-const NOTICES_A_SITE = 100;
-const PEOPLE = 100;
+const SITES = 1_000;
+const NOTICES_A_SITE = 10;
+const PEOPLE = 10;
 const MAILS = SITES * PEOPLE;
 
 async function people(store: Store): Promise<void> {
