@@ -94,7 +94,7 @@ export class RefreshWorker {
 	async #next(r: OpenRefresh, look: Look): Promise<Next | null> {
 		const { nowMs } = look;
 		if (r.endedAtMs !== null) return answeredOf(r, nowMs);
-		if (nowMs - r.askedAtMs >= REFRESH_PARAMS.expiresMs && r.origin !== 'pair_rule')
+		if (nowMs - r.askedAtMs >= REFRESH_PARAMS.expiresMs)
 			return { event: { kind: 'tick', atMs: nowMs } };
 		switch (r.state) {
 			case 'approved':
