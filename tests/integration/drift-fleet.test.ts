@@ -17,7 +17,8 @@ import { FleetNode, HOUR, LENGTH_H, tellAll } from '../support/drift-fleet';
 import { IngestRun } from '../support/ingest-run';
 
 const TIMES = { lagMs: 15 * 60_000, startMs: 0, settleMs: 0, settleMostMs: 0 };
-const startMs = Math.floor((Date.now() - LENGTH_H * HOUR) / HOUR) * HOUR;
+// Its last hour can be closed whatever the minute is.
+const startMs = Math.floor((Date.now() - TIMES.lagMs - LENGTH_H * HOUR) / HOUR) * HOUR;
 const fleet = [
 	new FleetNode(0, startMs),
 	new FleetNode(1, startMs, { loss: { fromH: 34, share: 0.12 } }),

@@ -56,7 +56,8 @@ export class FleetNode {
 	#sensed(atMs: number): { field: Vec; offset: Vec } {
 		const h = (atMs - this.startMs) / HOUR;
 		const warmer = this.tempC(atMs) - REFERENCE_C;
-		const storm = h >= 45 && h < 51 ? -6 : 0;
+		// 7 h long: whatever the hour of the run, it begins or ends within a 3-hour window of UTC.
+		const storm = h >= 45 && h < 52 ? -6 : 0;
 		const [x, y, z] = turned([200 + storm, 0, 430], this.#heading);
 		const gain = 1 + KAPPA * warmer;
 		const steel =
