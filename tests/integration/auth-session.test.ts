@@ -344,7 +344,9 @@ describe('mail with one-time links', () => {
 	});
 
 	test('who has no account is told the same, and gets no mail', async () => {
-		const count = box.mails.length;
+		// Notices may mail the people of the site meanwhile.
+		const resets = () => box.mails.filter(({ subject }) => subject?.includes('password') ?? false);
+		const count = resets().length;
 		const asked = await room.app.ask('/reset?/ask', {
 			method: 'POST',
 			headers: { ...FORM, origin, 'x-forwarded-for': newAddress() },
@@ -352,7 +354,8 @@ describe('mail with one-time links', () => {
 		});
 		expect(asked.status).toBe(200);
 		await new Promise((go) => setTimeout(go, 500));
-		expect(box.mails).toHaveLength(count);
+		expect(resets()).toHaveLength(count);
+		expect(JSON.stringify(box.mails.map(({ to }) => to))).not.toContain('nobody@');
 	});
 
 	test('an invitation that is over opens nothing', async () => {
