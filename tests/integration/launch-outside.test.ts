@@ -1,4 +1,5 @@
 import { execFile } from 'node:child_process';
+import { readFile } from 'node:fs/promises';
 import { get } from 'node:https';
 import { join } from 'node:path';
 import { promisify } from 'node:util';
@@ -56,13 +57,15 @@ afterAll(async () => {
 	await folder.remove();
 });
 
-/** Status of a request that takes any certificate. */
-async function statusOf(url: string): Promise<number | undefined> {
-	return await new Promise((resolve, reject) => {
-		get(url, { rejectUnauthorized: false }, (answer) => {
+/** Status of a request that takes any certificate, or what went wrong with it. */
+async function statusOf(url: string): Promise<number | string | undefined> {
+	return await new Promise((resolve) => {
+		get(url, { rejectUnauthorized: false, agent: false }, (answer) => {
 			answer.resume();
 			resolve(answer.statusCode);
-		}).on('error', reject);
+		}).on('error', (error) => {
+			resolve(error.message);
+		});
 	});
 }
 
@@ -76,7 +79,9 @@ test('the database given is used: no other is started, and no demo is made in it
 
 test('pages are served over TLS with the certificate given', async () => {
 	const address = /is up: (https:\/\/\S+)/.exec(product.said())?.[1];
-	expect(await statusOf(`${address}/sign-in`)).toBe(200);
+	const status = await statusOf(`${address}/sign-in`);
+	const log = await readFile(join(folder.dir, 'data', 'log', 'app.log'), 'utf8');
+	expect(status, `${product.said()}\n${log}`).toBe(200);
 });
 
 test('nodes are heard over TLS', async () => {
