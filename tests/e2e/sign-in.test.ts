@@ -87,6 +87,7 @@ test('a session that ends on an open sheet is said so, and signing in again lose
 test('a person who chooses German reads the sheets in German from then on, dates by Intl', async () => {
 	const page = await office.signIn('operator');
 	await page.goto('/desk');
+	await alive(page);
 	await page.getByLabel('Language').selectOption('de');
 	await page.getByRole('button', { name: 'Use this language' }).click();
 	await page.waitForFunction(() => document.documentElement.lang === 'de');

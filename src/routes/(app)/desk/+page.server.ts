@@ -3,7 +3,7 @@ import { instance } from '$lib/server/api/instance';
 import { languageOf, setLanguage } from '$lib/server/auth/language';
 import { personIdOf } from '$lib/server/auth/reach';
 import { setLanguage as keepLanguage } from '$lib/server/store/queries/people';
-import { error, fail } from '@sveltejs/kit';
+import { error, fail, redirect } from '@sveltejs/kit';
 import type { Actions, PageServerLoad } from './$types';
 
 export const load: PageServerLoad = (event) => ({ language: languageOf(event) });
@@ -19,6 +19,7 @@ export const actions: Actions = {
 		const app = instance();
 		await keepLanguage(app.store.db, personId, wanted);
 		setLanguage(cookies, wanted, app.secureCookies);
-		return { language: wanted };
+		// The answer to this request would still speak the former language.
+		redirect(303, '/desk');
 	}
 };
