@@ -111,6 +111,8 @@ async function finish(
 		});
 	} catch (error) {
 		room.groups.forget(ids);
+		// Rows that waited in the group are to be read again, also while the database does not answer.
+		pipeline.wake(ids);
 		await room.registry.loadLives(room.pool, [...ids]);
 		throw error;
 	}

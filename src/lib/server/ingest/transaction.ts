@@ -90,8 +90,7 @@ export class Transactions {
 
 	/** Runs `write` under the pipeline's lease and commits. Throws on any error, having rolled back. */
 	async run<T>(write: (transaction: Transaction) => Promise<T>): Promise<T> {
-		this.#connection ??= await this.#open();
-		const connection = this.#connection;
+		const connection = (this.#connection ??= await this.#opened());
 		let clean = false;
 		try {
 			const transaction = new Transaction(connection, this.#holder);
@@ -106,6 +105,15 @@ export class Transactions {
 				connection.destroy();
 			}
 		}
+	}
+
+	/** One that dies while nobody uses it is not used again. */
+	async #opened(): Promise<Connection> {
+		const connection = await this.#open();
+		connection.on('error', () => {
+			if (this.#connection === connection) this.#connection = null;
+		});
+		return connection;
 	}
 
 	close(): void {
