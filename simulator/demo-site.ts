@@ -124,7 +124,8 @@ const VEHICLES: Life['vehicles'] = {
 	highMg: 700,
 	vanShare: 0.1,
 	askewM: 0.2,
-	mostEchoMg: 35
+	mostEchoMg: 35,
+	mostPassMg: 3500
 };
 
 const SHORT: Life['gaps'] = [

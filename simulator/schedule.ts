@@ -1,6 +1,6 @@
 import type { Vec3 } from '$lib/magnetics/vector';
 import { endPose, motion, type Motion, type Standing } from './motion';
-import { drawParking, parkingPath, type Path, type Pose } from './path';
+import { drawParking, parkingPath, poseAt, type Path } from './path';
 import type { Random } from './random';
 import type { BayPlan, Lane } from './site-plan';
 import { mostMg, scaleVehicle, vehicleOfSize, type Vehicle } from './vehicle';
@@ -35,6 +35,8 @@ export interface VehicleMix {
 	askewM: number;
 	/** No vehicle makes more than this at a neighbour's node, mG. */
 	mostEchoMg: number;
+	/** None makes more than this at its own node while it drives in, mG; absent = axles may pass close over it. */
+	mostPassMg?: number;
 }
 
 export interface Life {
@@ -50,6 +52,8 @@ export interface Life {
 const LEAST_GAP_S = 25;
 /** A bay stays empty this much longer when a vehicle is wanted at a time. */
 const PIN_WAIT_MS = 2 * 3_600_000;
+/** Fine enough to see an axle go over the node. */
+const PASS_STEP_S = 0.1;
 
 export function drawSpanS(rng: Random, spans: Spans): number {
 	let left = rng.uniform() * spans.reduce((sum, span) => sum + span.share, 0);
@@ -77,19 +81,33 @@ export interface BayLife {
 	pins: number[];
 }
 
-function drawGuest(bay: BayLife, pose: Pose): Vehicle {
+/** Largest field at the bay's own node on the way in, mG. */
+function passMg(vehicle: Vehicle, path: Path, nodeNedM: Vec3): number {
+	const pose = endPose(path);
+	let most = 0;
+	for (let atS = 0; atS <= path.durationS; atS += PASS_STEP_S) {
+		poseAt(path, atS, pose);
+		most = Math.max(most, mostMg(vehicle, pose, [nodeNedM]));
+	}
+	return most;
+}
+
+function drawGuest(bay: BayLife, path: Path): Vehicle {
 	const { rng } = bay;
+	const pose = endPose(path);
 	const mix = bay.life.vehicles;
 	let drawn: Vehicle | null = null;
 	for (let tries = 0; tries < 12; tries++) {
 		const sizeMg = rng.logNormal(mix.medianMg, mix.sigma, mix.lowMg, mix.highMg);
 		const build = rng.chance(mix.vanShare) ? 'van' : 'car';
 		drawn = vehicleOfSize(rng, build, bay.earthUnit, sizeMg, pose, bay.nodeNedM);
+		const { mostPassMg } = mix;
+		if (mostPassMg !== undefined && passMg(drawn, path, bay.nodeNedM) > mostPassMg) continue;
 		if (mostMg(drawn, pose, bay.besideNedM) <= mix.mostEchoMg) return drawn;
 	}
 	// Only where the bay's own node lies in a dead zone of every draw.
 	const echoMg = mostMg(drawn!, pose, bay.besideNedM);
-	return scaleVehicle(drawn!, mix.mostEchoMg / echoMg);
+	return scaleVehicle(drawn!, Math.min(1, mix.mostEchoMg / echoMg));
 }
 
 function drawVisit(bay: BayLife, fromMs: number, stayS: number): Visit {
@@ -97,7 +115,7 @@ function drawVisit(bay: BayLife, fromMs: number, stayS: number): Visit {
 	const mix = life.vehicles;
 	const parking = drawParking(rng, mix.askewM);
 	const path = parkingPath(bay.bay, bay.lane, parking);
-	const vehicle = drawGuest(bay, endPose(path));
+	const vehicle = drawGuest(bay, path);
 	const driveMs = Math.ceil(path.durationS * 1000);
 	const toMs = Math.round(fromMs + stayS * 1000);
 	return {
