@@ -53,6 +53,11 @@ describe('a visit, since no pulse cures it', () => {
 	});
 });
 
+test('a pair with a vehicle over it says nothing of the gain', () => {
+	const pairs: PairAtReference[] = [{ atMs: 1000, offsetMg: [0, 0, 0], fieldMg: null }];
+	expect(visitNeed(pairs, [0, 0, 450], SETTINGS)).toEqual([]);
+});
+
 describe('settings', () => {
 	test('every default lies within its own range and gives its reason', () => {
 		for (const { defaultValue, min, max, reason } of Object.values(DRIFT_PARAMS)) {

@@ -42,7 +42,8 @@ export function refreshNeed(facts: FilmFacts, settings: DriftSettings): RefreshN
 export interface PairAtReference {
 	atMs: number;
 	offsetMg: Vec3;
-	fieldMg: Vec3;
+	/** Null where a vehicle stood on or beside the bay: then the pair tells of the bridge alone (method 5). */
+	fieldMg: Vec3 | null;
 }
 
 export type VisitReason = 'offset_unsteady' | 'gain_off';
@@ -71,7 +72,8 @@ export function visitNeed(
 	const recent = jumps(pairs, settings.visitOffsetMg).filter(
 		({ atMs }) => atMs > last.atMs - settings.visitOffsetDays * DAY_MS
 	);
-	const gain = Math.abs(magnitude(last.fieldMg) / magnitude(referenceMg) - 1);
+	const fieldMg = pairs.findLast((pair) => pair.fieldMg !== null)?.fieldMg ?? referenceMg;
+	const gain = Math.abs(magnitude(fieldMg) / magnitude(referenceMg) - 1);
 	const reasons: VisitReason[] = [];
 	if (recent.length >= 2) reasons.push('offset_unsteady');
 	if (gain >= settings.visitGain) reasons.push('gain_off');

@@ -93,7 +93,10 @@ function pairsAtReference({ reference, pairs, tempcoPerC, slope }: NodeDrift): P
 		return {
 			atMs,
 			offsetMg: subtract(offsetMg, scale(offset, tempC - referenceC)),
-			fieldMg: fieldAtReference(fieldMg, tempcoPerC, tempC, referenceC)
+			fieldMg:
+				atMs === pairs.vacant?.atMs
+					? fieldAtReference(fieldMg, tempcoPerC, tempC, referenceC)
+					: null
 		};
 	});
 }
