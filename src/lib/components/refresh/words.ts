@@ -19,6 +19,7 @@ const WAITS: Readonly<Record<string, string>> = {
 	paused: 'its bulk order to go on',
 	withdrawn: 'the node to be in service',
 	never_heard: 'the node to be heard for the first time',
+	storm: 'the nodes that fell silent together to be heard',
 	silent: 'the silent node to be heard',
 	bay_taken: 'an empty bay',
 	bay_not_known: 'the bay to be known as free',

@@ -1,5 +1,6 @@
 import type { Sql } from '$lib/server/store/queries/bulk';
 import * as commands from '$lib/server/store/queries/commands';
+import { stormNodeIds } from '$lib/server/store/queries/notices';
 import { sealCommand } from '$lib/wire/frames';
 import { downTopic } from '$lib/wire/topics';
 import type { Registry } from './registry';
@@ -24,9 +25,17 @@ export class CommandSender {
 	async send(sql: Sql, nowMs: number): Promise<number> {
 		const open = await commands.open(sql, nowMs);
 		this.#forgetClosed(open);
+		const stormy = await this.#stormy(sql, open);
 		let sent = 0;
-		for (const command of open) if (await this.#sendOne(sql, command, nowMs)) sent += 1;
+		for (const command of open)
+			if (!stormy.has(command.nodeId) && (await this.#sendOne(sql, command, nowMs))) sent += 1;
 		return sent;
+	}
+
+	/** Of many that fell silent together nobody hears: what is meant for them waits until they do. */
+	async #stormy(sql: Sql, open: readonly commands.CommandRow[]): Promise<Set<number>> {
+		const siteIds = open.flatMap(({ nodeId }) => this.#registry.byId(nodeId)?.config.siteId ?? []);
+		return await stormNodeIds(sql, [...new Set(siteIds)]);
 	}
 
 	async #sendOne(sql: Sql, command: commands.CommandRow, nowMs: number): Promise<boolean> {

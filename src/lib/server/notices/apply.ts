@@ -3,6 +3,7 @@ import type { Sql } from '$lib/server/store/queries/bulk';
 import * as wishes from '$lib/server/store/queries/mail-wishes';
 import * as notices from '$lib/server/store/queries/notices';
 import { deadlineOf } from './deadline';
+import { rankOf } from './kinds';
 import { toBeTold, type Recipient } from './people';
 import type { OpenNotice, Step } from './reconcile';
 
@@ -16,6 +17,7 @@ export interface Ground {
 
 type Stored = OpenNotice & Pick<notices.OpenRow, 'deadlineMs' | 'stage' | 'takenBy'>;
 type Opening = Extract<Step, { do: 'open' }>;
+type Reopening = Extract<Step, { do: 'reopen' }>;
 type Changing = Extract<Step, { do: 'change' }>;
 type Closing = Extract<Step, { do: 'close' }>;
 
@@ -36,15 +38,21 @@ export async function apply(
 	open: ReadonlyMap<number, Stored>
 ): Promise<Applied> {
 	const opening = steps.filter((step): step is Opening => step.do === 'open');
+	const reopening = steps.filter((step): step is Reopening => step.do === 'reopen');
 	const changing = steps.filter((step): step is Changing => step.do === 'change');
 	const closing = steps.filter((step): step is Closing => step.do === 'close');
 	const wanted = [
 		...(await applyOpenings(sql, ground, opening)),
+		...(await applyReturns(sql, ground, reopening)),
 		...(await applyChanges(sql, ground, changing, open)),
 		...(await applyEnds(sql, ground, closing))
 	];
 	await wishes.add(sql, wanted, ground.nowMs);
-	return { opened: opening.length, closed: closing.length, wishes: wanted.length };
+	return {
+		opened: opening.length + reopening.length,
+		closed: closing.length,
+		wishes: wanted.length
+	};
 }
 
 /** Of one kind everybody's due time is worked out once, however many notices. */
@@ -89,6 +97,52 @@ async function applyOpenings(
 				what: 'opened' as const
 			}))
 	);
+}
+
+/**
+ * Somebody who knows of it is not mailed again, unless they were told that it is over or it is worse now. The
+ * time that it was over does not count against who has to take it.
+ */
+async function applyReturns(
+	sql: Sql,
+	ground: Ground,
+	steps: readonly Reopening[]
+): Promise<wishes.NewWish[]> {
+	const told = tellers(ground);
+	const known = await wishes.lastTold(
+		sql,
+		steps.map(({ healed }) => healed.id)
+	);
+	const wanted: wishes.NewWish[] = [];
+	for (const { subject, healed, kind, kinds } of steps) {
+		const worse = rankOf(kind) < rankOf(healed.kind);
+		const fresh = deadlineOf(kind, ground.nowMs, ground.zone);
+		await notices.reopen(sql, healed.id, {
+			...{ kind, kinds: kinds.join(), awaitsProof: kinds.includes('refresh_due') },
+			...{ sinceMs: subject.sinceMs, facts: JSON.stringify(subject.facts) },
+			deadlineMs: Math.min(fresh, healed.deadlineMs + ground.nowMs - healed.closedAtMs)
+		});
+		const know = (personId: number) =>
+			!worse &&
+			known.some(
+				(one) => one.noticeId === healed.id && one.personId === personId && one.what !== 'closed'
+			);
+		for (const { person, dueMs } of told(kind))
+			if (!know(person.id) && subject.about !== `mail:${person.id}`)
+				wanted.push({
+					...{ personId: person.id, siteId: subject.siteId, noticeId: healed.id, dueMs },
+					what: 'opened'
+				});
+	}
+	await notices.enter(
+		sql,
+		steps.map(({ healed, kinds }) => ({
+			...{ noticeId: healed.id, what: 'reopened' as const },
+			detail: `${healed.times + 1}:${kinds.join()}`
+		})),
+		ground.nowMs
+	);
+	return wanted;
 }
 
 async function applyChanges(

@@ -8,6 +8,7 @@ import * as notices from '$lib/server/store/queries/notices';
 import { transaction } from '$lib/server/store/transaction';
 import { apply, type Applied } from './apply';
 import type { DriftFacts } from './drift-facts';
+import { healedLately } from './healed';
 import { kindsOf } from './kinds';
 import type { Recipient } from './people';
 import { reconcile } from './reconcile';
@@ -105,6 +106,7 @@ async function judge(sql: Sql, look: Look, site: queries.SiteToLook): Promise<Ap
 					.map(({ nodeId, endedAtMs }) => [`node:${nodeId}`, endedAtMs])
 			),
 			gone: new Set([...gone].map((id) => `node:${id}`)),
+			healed: await healedLately(sql, site.id, nowMs),
 			folded
 		}
 	);

@@ -3,6 +3,7 @@ import * as outbox from '$lib/server/store/queries/outbox';
 import * as notices from '$lib/server/store/queries/notices';
 import { transaction } from '$lib/server/store/transaction';
 import { apply, type Applied } from './apply';
+import { healedLately } from './healed';
 import { kindsOf } from './kinds';
 import type { Recipient } from './people';
 import { reconcile, type Subject } from './reconcile';
@@ -29,7 +30,10 @@ export async function lookAtMail(
 			...row,
 			...{ kinds: kindsOf(row.kinds), awaitsProof: false }
 		}));
-		const nothing = { provedAtMs: new Map(), gone: new Set<string>(), folded: new Set<string>() };
+		const nothing = {
+			...{ provedAtMs: new Map(), gone: new Set<string>(), folded: new Set<string>() },
+			healed: await healedLately(sql, null, nowMs)
+		};
 		const steps = reconcile(open, subjects, nothing);
 		const ground = { siteId: null, zone: 'UTC', people, nowMs };
 		return await apply(sql, ground, steps, new Map(open.map((row) => [row.id, row])));

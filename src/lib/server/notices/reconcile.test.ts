@@ -9,6 +9,7 @@ import { reconcile, type Known, type OpenNotice, type Subject } from './reconcil
 
 const known = (more: Partial<Known> = {}): Known => ({
 	...{ provedAtMs: new Map(), gone: new Set<string>(), folded: new Set<string>() },
+	healed: new Map(),
 	...more
 });
 const subject = (about: string, ...kinds: NoticeKind[]): Subject => ({
@@ -56,6 +57,12 @@ describe('one open notice a node (issue 6)', () => {
 			{ do: 'close', how: 'removed' }
 		]);
 	});
+	test('what is back within a day is the same notice again, not a new one', () => {
+		const healed = { id: 9, kind: 'silent', times: 2, closedAtMs: 500, deadlineMs: 900 } as const;
+		expect(
+			reconcile([], [subject('node:7', 'silent')], known({ healed: new Map([['node:7', healed]]) }))
+		).toMatchObject([{ do: 'reopen', kind: 'silent', healed: { id: 9, times: 2 } }]);
+	});
 	test('what is told together with others is folded', () => {
 		const folded = known({ folded: new Set(['node:7']) });
 		expect(reconcile([open('node:7', 'silent')], [], folded)).toMatchObject([
@@ -94,7 +101,7 @@ describe('one open notice a node (issue 6)', () => {
 function play(before: ReadonlyMap<string, OpenNotice>, subjects: Subject[]) {
 	const notices = new Map(before);
 	for (const step of reconcile([...before.values()], subjects, known())) {
-		if (step.do === 'open')
+		if (step.do === 'open' || step.do === 'reopen')
 			notices.set(step.subject.about, open(step.subject.about, ...step.kinds));
 		else if (step.do === 'close') notices.delete(step.notice.about);
 		else

@@ -26,8 +26,19 @@ export interface OpenNotice {
 
 export type End = 'healed' | 'proved' | 'removed' | 'folded';
 
+/** A notice that closed by itself a short while ago. */
+export interface Healed {
+	id: number;
+	kind: NoticeKind;
+	times: number;
+	closedAtMs: number;
+	deadlineMs: number;
+}
+
 export type Step =
 	| { do: 'open'; subject: Subject; kind: NoticeKind; kinds: NoticeKind[] }
+	/** It is back: the same notice goes on, so that one that comes and goes is told once. */
+	| { do: 'reopen'; subject: Subject; healed: Healed; kind: NoticeKind; kinds: NoticeKind[] }
 	| {
 			do: 'change';
 			notice: OpenNotice;
@@ -49,6 +60,8 @@ export interface Known {
 	gone: ReadonlySet<string>;
 	/** Subjects told together with others now. */
 	folded: ReadonlySet<string>;
+	/** By subject, the notice of it that healed within the last day. */
+	healed: ReadonlyMap<string, Healed>;
 }
 
 /**
@@ -71,7 +84,13 @@ export function reconcile(
 	for (const subject of present.values()) {
 		const kinds = ranked(subject.kinds);
 		const kind = kinds[0];
-		if (kind !== undefined) steps.push({ do: 'open', subject, kind, kinds });
+		if (kind === undefined) continue;
+		const healed = known.healed.get(subject.about);
+		steps.push(
+			healed === undefined
+				? { do: 'open', subject, kind, kinds }
+				: { do: 'reopen', subject, healed, kind, kinds }
+		);
 	}
 	return steps;
 }

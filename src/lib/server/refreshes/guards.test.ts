@@ -13,6 +13,7 @@ const free: GuardFacts = {
 	paused: false,
 	withdrawn: false,
 	heardBoot: 3,
+	storm: false,
 	silent: false,
 	bay: 'vacant',
 	baySinceMs: NOW - HOUR,
@@ -37,6 +38,7 @@ describe('guards (method 7, waiting)', () => {
 		['paused', { paused: true }],
 		['withdrawn', { withdrawn: true }],
 		['never_heard', { heardBoot: null }],
+		['storm', { storm: true }],
 		['silent', { silent: true }],
 		['bay_taken', { bay: 'occupied' }],
 		['bay_not_known', { bay: 'unknown' }],
@@ -53,7 +55,7 @@ describe('guards (method 7, waiting)', () => {
 	});
 	test('every guard has a test above and words', () => {
 		expect(Object.keys(GUARD_WORDS).sort()).toEqual([...GUARDS].sort());
-		expect(GUARDS).toHaveLength(13);
+		expect(GUARDS).toHaveLength(14);
 	});
 	test('an approver may let it run outside quiet hours', () => {
 		expect(holding({ ...free, localMinute: 700, anyHour: true }, NOW, P)).toEqual([]);

@@ -6,6 +6,7 @@ export const GUARDS = [
 	'paused',
 	'withdrawn',
 	'never_heard',
+	'storm',
 	'silent',
 	'bay_taken',
 	'bay_not_known',
@@ -23,6 +24,7 @@ export const GUARD_WORDS: Readonly<Record<Guard, string>> = {
 	paused: 'the bulk order is paused',
 	withdrawn: 'the node is out of service',
 	never_heard: 'the node has never been heard',
+	storm: 'many nodes fell silent together: commands to them wait',
 	silent: 'the node is silent',
 	bay_taken: 'the bay is taken',
 	bay_not_known: 'whether the bay is free is not known',
@@ -40,6 +42,8 @@ export interface GuardFacts {
 	paused: boolean;
 	withdrawn: boolean;
 	heardBoot: number | null;
+	/** It is one of many that are told together as not heard. */
+	storm: boolean;
 	silent: boolean;
 	bay: 'vacant' | 'occupied' | 'unknown';
 	/** Since when the bay has its state. */
@@ -65,6 +69,7 @@ const HOLDS: Readonly<Record<Guard, Rule>> = {
 	paused: ({ paused }) => paused,
 	withdrawn: ({ withdrawn }) => withdrawn,
 	never_heard: ({ heardBoot }) => heardBoot === null,
+	storm: ({ storm }) => storm,
 	silent: ({ silent }) => silent,
 	bay_taken: ({ bay }) => bay === 'occupied',
 	bay_not_known: ({ bay }) => bay === 'unknown',

@@ -4,6 +4,7 @@ import { STARTED_ANEW } from '$lib/server/store/queries/commands';
 import { readProfile } from '$lib/server/store/queries/profiles';
 import * as facts from '$lib/server/store/queries/refresh-facts';
 import type { OpenRefresh } from '$lib/server/store/queries/refresh-facts';
+import { stormNodeIds } from '$lib/server/store/queries/notices';
 import * as stored from '$lib/server/store/queries/refresh-settings';
 import * as refreshes from '$lib/server/store/queries/refreshes';
 import { transaction } from '$lib/server/store/transaction';
@@ -54,10 +55,11 @@ export class RefreshWorker {
 		const underWay = new Map<number, number>();
 		for (const r of all)
 			if (r.state === 'sent') underWay.set(r.siteId, (underWay.get(r.siteId) ?? 0) + 1);
+		const stormy = await stormNodeIds(pool, [...new Set(all.map(({ siteId }) => siteId))]);
 		let steps = 0;
 		for (const r of [...all, ...(await facts.lateObeyed(pool, nowMs - LATE_MS))]) {
 			try {
-				steps += await this.#carryOn(r, { settings, underWay, nowMs });
+				steps += await this.#carryOn(r, { settings, underWay, stormy, nowMs });
 			} catch (error) {
 				this.#log.warn({ refresh: r.id, message: (error as Error).message }, 'looked at again');
 			}
@@ -152,6 +154,8 @@ export class RefreshWorker {
 interface Look {
 	settings: ReadonlyMap<number, RefreshSettings>;
 	underWay: Map<number, number>;
+	/** Nodes told together as not heard. */
+	stormy: ReadonlySet<number>;
 	nowMs: number;
 }
 interface Next {
@@ -188,6 +192,7 @@ function guardFacts(r: OpenRefresh, s: RefreshSettings, look: Look): GuardFacts 
 		paused: r.bulkState === 'paused',
 		withdrawn: r.withdrawnAtMs !== null || r.nodeBayId !== r.bayId,
 		heardBoot: r.heardBoot,
+		storm: look.stormy.has(r.nodeId),
 		silent: r.bayCondition === 'silent',
 		bay: r.bayState,
 		baySinceMs: r.baySinceMs,

@@ -10,7 +10,7 @@ import { drawText } from './text';
 
 const NOW = Date.parse('2026-12-01T10:00Z');
 const row: NoticeRow = {
-	...{ id: 1, kind: 'refresh_due', kinds: 'refresh_due,drifting', awaitsProof: 1 },
+	...{ id: 1, kind: 'refresh_due', kinds: 'refresh_due,drifting', awaitsProof: 1, times: 1 },
 	...{
 		sinceMs: NOW - 3_600_000,
 		openedAtMs: NOW,

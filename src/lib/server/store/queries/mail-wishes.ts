@@ -111,6 +111,18 @@ export async function thread(
 	return rows.map(({ messageId }) => messageId);
 }
 
+/** Who was mailed of these notices, and the last thing that they were told. */
+export async function lastTold(sql: Sql, noticeIds: readonly number[]) {
+	if (noticeIds.length === 0) return [];
+	return await select<{ noticeId: number; personId: number; what: WishWhat }>(
+		sql,
+		`SELECT w.notice_id AS noticeId, w.person_id AS personId, w.what FROM mail_wish w JOIN (
+			SELECT MAX(id) AS id FROM mail_wish WHERE notice_id IN (?) AND message_id IS NOT NULL
+			GROUP BY notice_id, person_id) last ON last.id = w.id`,
+		[noticeIds]
+	);
+}
+
 /** Who was told of each notice, or is going to be, and when; first words only. */
 export async function toldOf(sql: Sql, noticeIds: readonly number[]) {
 	if (noticeIds.length === 0) return [];

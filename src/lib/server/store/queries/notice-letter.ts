@@ -7,6 +7,7 @@ export interface NoticeRow {
 	kind: (typeof NOTICE_KINDS)[number];
 	kinds: string;
 	awaitsProof: number;
+	times: number;
 	sinceMs: number;
 	openedAtMs: number;
 	deadlineMs: number;
@@ -42,7 +43,7 @@ export interface NoticeRow {
 	quietToMin: number | null;
 }
 
-const ROWS = `SELECT n.id, n.kind, n.kinds, n.awaits_proof AS awaitsProof, n.since_ms AS sinceMs,
+const ROWS = `SELECT n.id, n.kind, n.kinds, n.awaits_proof AS awaitsProof, n.times, n.since_ms AS sinceMs,
 	n.opened_at_ms AS openedAtMs, n.deadline_ms AS deadlineMs, n.stage, n.facts, n.taken_by AS takenBy,
 	n.taken_at_ms AS takenAtMs, t.name AS takerName, t.initials AS takerInitials,
 	n.snoozed_until_ms AS snoozedUntilMs, n.closed_at_ms AS closedAtMs, n.closed_how AS closedHow,

@@ -151,6 +151,36 @@ export async function close(
 	);
 }
 
+/** Those of a site that closed by themselves since an instant, oldest first. */
+export async function closedByItself(sql: Sql, siteId: number | null, sinceMs: number) {
+	return await select<{
+		about: string;
+		id: number;
+		kind: Kind;
+		times: number;
+		closedAtMs: number;
+		deadlineMs: number;
+	}>(
+		sql,
+		`SELECT about, id, kind, times, closed_at_ms AS closedAtMs, deadline_ms AS deadlineMs FROM notice
+		 WHERE site_id <=> ? AND closed_at_ms > ? AND closed_how IN ('healed', 'folded') ORDER BY closed_at_ms`,
+		[siteId, sinceMs]
+	);
+}
+
+export async function reopen(
+	sql: Sql,
+	id: number,
+	to: Pick<NewNotice, 'kind' | 'kinds' | 'awaitsProof' | 'sinceMs' | 'deadlineMs' | 'facts'>
+): Promise<void> {
+	await run(
+		sql,
+		`UPDATE notice SET subject = about, closed_at_ms = NULL, closed_how = NULL, times = times + 1, kind = ?,
+			kinds = ?, awaits_proof = ?, since_ms = ?, deadline_ms = ?, facts = ? WHERE id = ?`,
+		[to.kind, to.kinds, to.awaitsProof, to.sinceMs, to.deadlineMs, to.facts, id]
+	);
+}
+
 export async function hold(
 	sql: Sql,
 	ids: readonly number[],
@@ -185,7 +215,8 @@ export async function escalate(
 }
 
 /** Nodes told together as silent now: commands to them wait. */
-export async function stormNodeIds(sql: Sql, siteId: number): Promise<Set<number>> {
+export async function stormNodeIds(sql: Sql, siteIds: readonly number[]): Promise<Set<number>> {
+	if (siteIds.length === 0) return new Set();
 	const rows = await select<{ id: number }>(
 		sql,
 		`SELECT n.id FROM notice t
@@ -193,10 +224,10 @@ export async function stormNodeIds(sql: Sql, siteId: number): Promise<Set<number
 		 JOIN bay b ON b.id = n.bay_id
 		 JOIN zone z ON z.id = b.zone_id
 		 JOIN bay_state s ON s.bay_id = b.id AND FIND_IN_SET('silent', CONCAT(s.condition, ',', s.also))
-		 WHERE t.site_id = ? AND t.closed_at_ms IS NULL AND t.kind IN ('silent', 'site_late') AND t.node_id IS NULL
+		 WHERE t.site_id IN (?) AND t.closed_at_ms IS NULL AND t.kind IN ('silent', 'site_late') AND t.node_id IS NULL
 			AND (t.kind = 'site_late' OR t.about IN (CONCAT('storm:', t.site_id, ':site:'),
 				CONCAT('storm:', t.site_id, ':gateway:', n.gateway), CONCAT('storm:', t.site_id, ':zone:', z.code)))`,
-		[siteId]
+		[siteIds]
 	);
 	return new Set(rows.map(({ id }) => id));
 }

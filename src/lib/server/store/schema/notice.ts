@@ -51,6 +51,8 @@ export const notice = mysqlTable(
 		kinds: varchar('kinds', { length: 200 }).notNull(),
 		/** A film refresh was due: only a proof closes it. */
 		awaitsProof: boolean('awaits_proof').notNull().default(false),
+		/** How often it has opened: what comes back within a day is the same notice again. */
+		times: smallint('times').notNull().default(1),
 		/** When what it tells of began. */
 		sinceMs: atMs('since_ms').notNull(),
 		openedAtMs: atMs('opened_at_ms').notNull(),
@@ -75,6 +77,7 @@ export const notice = mysqlTable(
 
 export const NOTICE_ACTS = [
 	'opened',
+	'reopened',
 	'kind',
 	'told',
 	'taken',

@@ -1,0 +1,2 @@
+ALTER TABLE `notice_entry` MODIFY COLUMN `what` enum('opened','reopened','kind','told','taken','handed','given_back','snoozed','comment','escalated','awaits_proof','closed') NOT NULL;--> statement-breakpoint
+ALTER TABLE `notice` ADD `times` smallint DEFAULT 1 NOT NULL;
