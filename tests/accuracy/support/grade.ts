@@ -5,6 +5,7 @@ import type { Stay } from '../../../simulator/truth';
 import { apartAt, apartWindows, staysOf } from './apart';
 import type { Detected, Look } from './detect';
 import { explain } from './explain';
+import { oracleTime, truthOf } from './oracle';
 
 type EventType = 'arrival' | 'departure';
 
@@ -36,6 +37,8 @@ export interface Score {
 	apart: Record<string, number>;
 	misses: Miss[];
 	time: TimeCount;
+	/** The same for one who knows the truth at each row heard and nothing between: the bound of `time`. */
+	oracle: TimeCount;
 	nodeWeeks: number;
 }
 
@@ -51,6 +54,7 @@ export const noScore = (): Score => ({
 	apart: {},
 	misses: [],
 	time: { rightMs: 0, wrongMs: 0, unknownMs: 0 },
+	oracle: { rightMs: 0, wrongMs: 0, unknownMs: 0 },
 	nodeWeeks: 0
 });
 
@@ -108,19 +112,16 @@ type SaidState = BayTimes['said'][number];
 
 /** Adds the share of time in the right state; a bay reported apart as a whole is left out. */
 function timeBay(generated: Generated, bayIndex: number, said: SaidState[], score: Score): void {
-	const { fromMs, judgedFromMs, toMs, stays } = generated.truth;
+	const { judgedFromMs, toMs } = generated.truth;
 	if (apartAt(apartWindows(generated, bayIndex), toMs) !== null) return;
-	const truth = [
-		{ atMs: fromMs, state: 'vacant' as const },
-		...staysOf(stays, bayIndex).flatMap((stay) => [
-			{ atMs: stay.fromMs, state: 'occupied' as const },
-			{ atMs: stay.toMs, state: 'vacant' as const }
-		])
-	];
-	const count = bayTime({ truth, said }, judgedFromMs, toMs);
-	score.time.rightMs += count.rightMs;
-	score.time.wrongMs += count.wrongMs;
-	score.time.unknownMs += count.unknownMs;
+	const truth = truthOf(generated, bayIndex);
+	addTime(score.time, bayTime({ truth, said }, judgedFromMs, toMs));
+}
+
+function addTime(sum: TimeCount, { rightMs, wrongMs, unknownMs }: TimeCount): void {
+	sum.rightMs += rightMs;
+	sum.wrongMs += wrongMs;
+	sum.unknownMs += unknownMs;
 }
 
 /** Grades any detector's changes and states, bay by bay, by method 9. */
@@ -148,16 +149,20 @@ function changesOf(detected: Detected, bayIndex: number): SaidChange[] {
 	);
 }
 
-/** Grades our own detection. */
-export const grade = (generated: Generated, detected: Detected): Score =>
-	gradeSaid(
+/** Grades our own detection, beside the bound of its time. */
+export function grade(generated: Generated, detected: Detected): Score {
+	const score = gradeSaid(
 		generated,
 		(bayIndex) => changesOf(detected, bayIndex),
-		(bayIndex) =>
-			detected.entries
-				.filter((entry) => entry.bayIndex === bayIndex)
-				.map(({ atMs, state }) => ({ atMs, state }))
+		(bayIndex) => statesOf(detected, bayIndex)
 	);
+	return { ...score, oracle: oracleTime(generated) };
+}
+
+export const statesOf = (detected: Detected, bayIndex: number): SaidState[] =>
+	detected.entries
+		.filter((entry) => entry.bayIndex === bayIndex)
+		.map(({ atMs, state }) => ({ atMs, state }));
 
 /** Adds up runs. */
 export function addScores(scores: readonly Score[]): Score {
@@ -168,9 +173,8 @@ export function addScores(scores: readonly Score[]): Score {
 		sum.strictHits += score.strictHits;
 		sum.falses += score.falses;
 		sum.misses.push(...score.misses);
-		sum.time.rightMs += score.time.rightMs;
-		sum.time.wrongMs += score.time.wrongMs;
-		sum.time.unknownMs += score.time.unknownMs;
+		addTime(sum.time, score.time);
+		addTime(sum.oracle, score.oracle);
 		sum.nodeWeeks += score.nodeWeeks;
 		for (const [why, n] of Object.entries(score.apart)) {
 			sum.apart[why] = (sum.apart[why] ?? 0) + n;

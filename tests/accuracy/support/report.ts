@@ -1,4 +1,5 @@
 import { calibration, type Judged } from '$lib/accuracy/calibration';
+import type { TimeCount } from '$lib/accuracy/time-share';
 import { wilson } from '$lib/numeric/wilson';
 import { PUBLISHED } from '../published/run';
 import { addScores, figuresOf, type Score } from './grade';
@@ -16,11 +17,17 @@ function limits(hits: number, n: number): string {
 	return w === null ? '' : `[${w.low.toFixed(4)}, ${w.high.toFixed(4)}]`;
 }
 
-/** Share of all time in the right state; not known counts as wrong. */
-export function rightShare({ time: { rightMs, wrongMs, unknownMs } }: Score): number {
+function shareOf({ rightMs, wrongMs, unknownMs }: TimeCount): number {
 	const all = rightMs + wrongMs + unknownMs;
 	return all === 0 ? 1 : rightMs / all;
 }
+
+/** Share of all time in the right state; not known counts as wrong. */
+export const rightShare = ({ time }: Score): number => shareOf(time);
+
+/** The most that the rows heard allow (oracle.ts); published methods are not held against it. */
+const bound = ({ oracle }: Score): string =>
+	oracle.rightMs === 0 ? '' : ` of ${percent(shareOf(oracle))} that could be known`;
 
 export function scoreLine(name: string, score: Score): string {
 	const { precision, recall, f1 } = figuresOf(score);
@@ -35,7 +42,7 @@ export function scoreLine(name: string, score: Score): string {
 		`missed ${truths - hits}`,
 		`false ${falses}`,
 		`(${(falses / score.nodeWeeks).toFixed(3)} a node and week)`,
-		`right ${percent(rightShare(score))}`,
+		`right ${percent(rightShare(score))}${bound(score)}`,
 		...(apart.length > 0 ? [`apart: ${apart.join(', ')}`] : [])
 	].join('  ');
 }
@@ -116,6 +123,7 @@ export function jsonLine(name: string, seeds: readonly number[], score: Score): 
 		false: score.falses,
 		falsePerNodeWeek: score.falses / score.nodeWeeks,
 		right: rightShare(score),
+		rightBound: shareOf(score.oracle),
 		apart: score.apart
 	});
 }
