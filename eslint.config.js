@@ -145,7 +145,7 @@ export default ts.config(
 		}
 	},
 	...pureRooms,
-	{ files: ['src/lib/ui/**'], rules: restrict(onlyRooms(['ui']), NO_DRIZZLE, NO_ROUTES) },
+	{ files: ['src/lib/ui/**'], rules: restrict(onlyRooms(['ui', 'format']), NO_DRIZZLE, NO_ROUTES) },
 	{
 		files: ['src/lib/components/**'],
 		ignores: ['**/*.test.ts'],

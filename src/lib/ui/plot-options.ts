@@ -1,3 +1,4 @@
+import { words } from '$lib/format/messages';
 import type uPlot from 'uplot';
 import type { Curve, PlotEvent, Threshold } from './plot-types';
 
@@ -229,9 +230,10 @@ function timeLabels(ticks: readonly number[], stepS: number, timezone: string): 
 
 const kept = new Map<string, Intl.DateTimeFormat>();
 function formatter(name: string, timeZone: string, options: Intl.DateTimeFormatOptions) {
-	const key = `${name} ${timeZone}`;
+	const { locale } = words();
+	const key = `${name} ${timeZone} ${locale}`;
 	const format =
-		kept.get(key) ?? new Intl.DateTimeFormat('en-GB', { timeZone, hourCycle: 'h23', ...options });
+		kept.get(key) ?? new Intl.DateTimeFormat(locale, { timeZone, hourCycle: 'h23', ...options });
 	kept.set(key, format);
 	return format;
 }

@@ -6,11 +6,6 @@ import { toScreen, type View } from './view';
 
 /** Which nodes have an arrow: none, those past the drifting limit, every one that was judged. */
 export type ArrowChoice = 'none' | 'past' | 'all';
-export const CHOICE_WORDS: Readonly<Record<ArrowChoice, string>> = {
-	past: 'past limit',
-	all: 'all',
-	none: 'none'
-};
 export const nextChoice = (now: ArrowChoice): ArrowChoice =>
 	now === 'past' ? 'all' : now === 'all' ? 'none' : 'past';
 

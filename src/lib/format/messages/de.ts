@@ -78,6 +78,7 @@ export const de: Messages = {
 		never: 'nie'
 	},
 	notMeasured: 'nicht gemessen',
+	decimalSign: ',',
 	live: {
 		signedOut: 'abgemeldet: die Anzeige steht still',
 		noAnswer: (time, length) => `keine Antwort von Lodekeep seit ${time} (${length})`,
@@ -227,7 +228,25 @@ export const de: Messages = {
 		noBayCure: 'Stellplätze kommen über die API hinzu, als GeoJSON.',
 		gone: (code) => `Einen Stellplatz ${code} gibt es hier nicht (mehr).`,
 		keyPlan: 'Übersicht: der gezeigte Teil des Standorts',
-		onScreen: (scale) => `${scale} am Bildschirm`
+		onScreen: (scale) => `${scale} am Bildschirm`,
+		doubtfulBays: (n) => `${n} zweifelhaft`,
+		baysOf: (site) => `Stellplätze von ${site}`,
+		toScale: (n) => `Plan im Maßstab 1 : ${n}`,
+		printed: (n, paper) =>
+			`Maßstab 1 : ${n} auf ${paper}, gedruckt mit 100 %. Die Belegung ist eine Schätzung: keine Sicherheitseinrichtung und nie das einzige Mittel, das eine Schranke, einen Poller oder ein Tor am Bewegen hindert.`,
+		driftScale: (mg) => `Drift des Felds, ${mg} mG`,
+		driftNonePast: 'Drift des Felds: kein Knoten über seiner Grenze',
+		driftNone: 'Drift des Felds: noch kein Knoten beurteilt',
+		driftAsking: 'Drift des Felds: die Tafel dieses Standorts wird gefragt …',
+		driftLevel: 'waagrechter Teil; der senkrechte steht daneben',
+		driftLength: 'nur Länge: Richtungen nicht eingetragen',
+		driftPartly: (n) => `nur Länge, wo die Richtung nicht eingetragen ist (${n})`,
+		driftArrows: (which) => `Driftpfeile: ${which}`,
+		drift: (which) => `Drift: ${which}`,
+		arrowChoice: { past: 'über der Grenze', all: 'alle', none: 'keine' },
+		oldOf: (site) => `${site}, alt`,
+		wasThen: (what) => `war ${what}`,
+		wereThen: (sum) => `war: ${sum}`
 	},
 	near: {
 		title: 'Die nächsten',
@@ -267,6 +286,33 @@ export const de: Messages = {
 		need: 'Bedarf',
 		condition: 'Befund',
 		node: 'Knoten'
+	},
+	ui: {
+		close: 'Schließen',
+		leave: 'Lassen',
+		back: 'Zurück',
+		undo: 'Rückgängig',
+		caution: 'Vorsicht.',
+		filter: 'Filter',
+		columns: 'Spalten',
+		rows: (n) => (n === 1 ? '1 Zeile' : `${n} Zeilen`),
+		rowsOf: (shown, all) => `${shown} von ${all} Zeilen`,
+		noRow: 'Keine Zeile passt zum Filter.',
+		notes: 'Notizen',
+		north: (deg) => `Norden, ${deg}° von oben`,
+		northLetter: 'N',
+		plotKeys: (title, unit) =>
+			`${title}, ${unit}. Die Pfeile nach links und rechts lesen die Werte vor; Ziehen oder die Felder für die Zeit wählen den Ausschnitt.`,
+		noReading: 'keine Messung',
+		answered: (status) => `Lodekeep antwortete ${status}.`
+	},
+	find: {
+		what: 'Ein Kürzel, die Seriennummer eines Knotens oder ein Teil davon, über alle Ihre Standorte.',
+		label: 'Kürzel oder Seriennummer',
+		nothing: (asked) => `Nichts heißt „${asked}“.`,
+		found: (n) => `${n} gefunden; Pfeile wählen, Eingabe öffnet`,
+		list: 'Gefunden',
+		noBay: 'kein Platz'
 	},
 	desk: {
 		language: 'Sprache',

@@ -82,6 +82,8 @@ export const en = {
 		never: 'never'
 	},
 	notMeasured: 'not measured',
+	/** Between whole and tenths of a number. */
+	decimalSign: '.',
 	live: {
 		signedOut: 'signed out: what is shown stands still',
 		noAnswer: (time: string, length: string) => `no answer from Lodekeep since ${time} (${length})`,
@@ -235,7 +237,25 @@ export const en = {
 		noBayCure: 'Bays are added through the API, as GeoJSON.',
 		gone: (code: string) => `There is no bay ${code} here (any more).`,
 		keyPlan: 'Key plan: the part of the site that is shown',
-		onScreen: (scale: string) => `${scale} on screen`
+		onScreen: (scale: string) => `${scale} on screen`,
+		doubtfulBays: (n: number) => `${n} doubtful`,
+		baysOf: (site: string) => `Bays of ${site}`,
+		toScale: (n: number) => `Plan to the scale 1 : ${n}`,
+		printed: (n: number, paper: string) =>
+			`Scale 1 : ${n} on ${paper} printed at 100 %. Occupancy is an estimate: not a safety device, and never the only means that keeps a barrier, bollard or gate from moving.`,
+		driftScale: (mg: number) => `drift of field, ${mg} mG`,
+		driftNonePast: 'drift of field: no node past its limit',
+		driftNone: 'drift of field: no node judged yet',
+		driftAsking: 'drift of field: asking for the board of this site …',
+		driftLevel: 'level part; the vertical is written beside it',
+		driftLength: 'length only: headings not entered',
+		driftPartly: (n: number) => `length only where the heading is not entered (${n})`,
+		driftArrows: (which: string) => `Drift arrows: ${which}`,
+		drift: (which: string) => `Drift: ${which}`,
+		arrowChoice: { past: 'past limit', all: 'all', none: 'none' },
+		oldOf: (site: string) => `${site}, old`,
+		wasThen: (what: string) => `was ${what}`,
+		wereThen: (sum: string) => `was: ${sum}`
 	},
 	near: {
 		title: 'Nearest to me',
@@ -275,6 +295,33 @@ export const en = {
 		need: 'Need',
 		condition: 'Condition',
 		node: 'Node'
+	},
+	ui: {
+		close: 'Close',
+		leave: 'Leave it',
+		back: 'Back',
+		undo: 'Undo',
+		caution: 'Caution.',
+		filter: 'Filter',
+		columns: 'Columns',
+		rows: (n: number) => (n === 1 ? '1 row' : `${n} rows`),
+		rowsOf: (shown: number, all: number) => `${shown} of ${all} rows`,
+		noRow: 'No row matches the filter.',
+		notes: 'Notes',
+		north: (deg: number) => `North, ${deg}° from up`,
+		northLetter: 'N',
+		plotKeys: (title: string, unit: string) =>
+			`${title}, ${unit}. Left and right arrows read the values; drag or the range fields choose the time.`,
+		noReading: 'no reading',
+		answered: (status: number) => `Lodekeep answered ${status}.`
+	},
+	find: {
+		what: 'A bay code, a node’s serial, or part of one, over all your sites.',
+		label: 'Bay code or serial',
+		nothing: (asked: string) => `Nothing is called “${asked}”.`,
+		found: (n: number) => `${n} found; arrows choose, Enter opens`,
+		list: 'Found',
+		noBay: 'no bay'
 	},
 	desk: {
 		language: 'Language',

@@ -1,7 +1,7 @@
 import { en } from './en';
 
 /** The shape that every language fills: English's keys, with sentences and functions of its own. */
-type Widened<T> = T extends string
+export type Widened<T> = T extends string
 	? string
 	: T extends readonly string[]
 		? readonly string[]
@@ -34,3 +34,10 @@ export const named = (table: object, value: string): string | undefined => {
 		: undefined;
 	return typeof found === 'string' ? found : undefined;
 };
+
+/**
+ * The words of one area of the product, both languages in one module beside this one: an area's sheets
+ * load them, the plan does not. `both` is for the tests.
+ */
+export const area = <T extends object, G extends Widened<T>>(en: T & Widened<T>, de: G) =>
+	Object.assign((): Widened<T> => (words().locale === 'de-DE' ? de : en), { both: { en, de } });
