@@ -12,24 +12,36 @@ interface Wanted {
 	timezone: string;
 	group: string;
 	write: (value: number) => string;
-	unit: string;
-	onrange: (fromS: number, toS: number) => void;
+	onrange?: ((fromS: number, toS: number) => void) | undefined;
 	oncursor: (index: number | null) => void;
 }
 
 export interface PlotInks {
+	paper: string;
 	ink: string;
 	faint: string;
 	hair: string;
 	hatch: string;
 }
 /** Ink on white. */
-export const PRINT_INKS: PlotInks = { ink: '#000', faint: '#333', hair: '#aaa', hatch: '#777' };
+export const PRINT_INKS: PlotInks = {
+	paper: '#fff',
+	ink: '#000',
+	faint: '#333',
+	hair: '#aaa',
+	hatch: '#777'
+};
 
 /** The inks of the theme in force. */
 export function inksOf(style: CSSStyleDeclaration): PlotInks {
 	const ink = (name: string) => style.getPropertyValue(`--${name}`).trim();
-	return { ink: ink('ink'), faint: ink('ink-2'), hair: ink('hair'), hatch: ink('hatch') };
+	return {
+		paper: ink('paper'),
+		ink: ink('ink'),
+		faint: ink('ink-2'),
+		hair: ink('hair'),
+		hatch: ink('hatch')
+	};
 }
 
 const LETTER = "11px 'JetBrains Mono', monospace";
@@ -83,19 +95,20 @@ export function plotOptions(wanted: Wanted): {
 			{
 				...axis(inks),
 				size: AXIS_PX,
-				space: 26,
+				// Also a plot of 130 px has three values to read by.
+				space: 18,
 				values: (_plot, ticks) => ticks.map((v) => wanted.write(v))
 			}
 		],
 		cursor: {
 			sync: { key: wanted.group, setSeries: false },
-			drag: { x: true, y: false, setScale: false },
+			drag: { x: wanted.onrange !== undefined, y: false, setScale: false },
 			points: { size: 6, fill: inks.ink }
 		},
 		hooks: {
-			drawClear: [(plot) => drawEvents(plot, wanted.events, inks.faint)],
-			draw: [(plot) => drawThresholds(plot, wanted.thresholds, inks.ink)],
-			setSelect: [(plot) => selected(plot, wanted.onrange)],
+			drawClear: [(plot) => drawEvents(plot, wanted.events, inks)],
+			draw: [(plot) => drawThresholds(plot, wanted.thresholds, inks)],
+			setSelect: [(plot) => selected(plot, wanted.onrange ?? (() => undefined))],
 			setCursor: [(plot) => wanted.oncursor(plot.cursor.idx ?? null)]
 		}
 	};
@@ -126,11 +139,11 @@ function room(
 	return [low - pad, high + pad];
 }
 
-function drawThresholds(plot: uPlot, thresholds: readonly Threshold[], ink: string): void {
+function drawThresholds(plot: uPlot, thresholds: readonly Threshold[], inks: PlotInks): void {
 	const { ctx } = plot;
 	const { left, width } = plot.bbox;
 	ctx.save();
-	ctx.strokeStyle = ctx.fillStyle = ink;
+	ctx.strokeStyle = ctx.fillStyle = inks.ink;
 	ctx.lineWidth = devicePixelRatio;
 	ctx.font = `${11 * devicePixelRatio}px 'JetBrains Mono', monospace`;
 	ctx.textAlign = 'right';
@@ -145,16 +158,26 @@ function drawThresholds(plot: uPlot, thresholds: readonly Threshold[], ink: stri
 		ctx.moveTo(left, y);
 		ctx.lineTo(left + width, y);
 		ctx.stroke();
-		ctx.fillText(text, left + width - 4, y + (under ? 12 : -4) * devicePixelRatio);
+		// Lettering stands on paper: a curve that runs through it would make it unreadable.
+		const [wide, textY] = [ctx.measureText(text).width, y + (under ? 12 : -4) * devicePixelRatio];
+		ctx.fillStyle = inks.paper;
+		ctx.fillRect(
+			left + width - 6 - wide,
+			textY - 9.5 * devicePixelRatio,
+			wide + 4,
+			12 * devicePixelRatio
+		);
+		ctx.fillStyle = inks.ink;
+		ctx.fillText(text, left + width - 4, textY);
 	}
 	ctx.restore();
 }
 
-function drawEvents(plot: uPlot, events: readonly PlotEvent[], ink: string): void {
+function drawEvents(plot: uPlot, events: readonly PlotEvent[], inks: PlotInks): void {
 	const { ctx } = plot;
 	const { left, top, width, height } = plot.bbox;
 	ctx.save();
-	ctx.strokeStyle = ctx.fillStyle = ink;
+	ctx.strokeStyle = ctx.fillStyle = inks.faint;
 	ctx.lineWidth = devicePixelRatio * 0.8;
 	ctx.setLineDash([2 * devicePixelRatio, 2 * devicePixelRatio]);
 	ctx.font = `${10 * devicePixelRatio}px 'JetBrains Mono', monospace`;

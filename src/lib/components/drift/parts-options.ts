@@ -10,6 +10,8 @@ interface Wanted {
 	stack: Stack;
 	timezone: string;
 	ratio: number;
+	/** Plots of one group share their cursor. */
+	group: string;
 	oncursor: (index: number | null) => void;
 }
 
@@ -18,7 +20,7 @@ const AXIS_PX = 58;
 const bare = (mg: number) => milligauss(mg).replace(' mG', '');
 
 /** uPlot options and data of the stack: a band from each part's edge to the edge before it, and the total. */
-export function partsOptions({ inks, size, stack, timezone, ratio, oncursor }: Wanted): {
+export function partsOptions({ inks, size, stack, timezone, ratio, group, oncursor }: Wanted): {
 	options: uPlot.Options;
 	data: uPlot.AlignedData;
 } {
@@ -71,9 +73,13 @@ export function partsOptions({ inks, size, stack, timezone, ratio, oncursor }: W
 					values: (_plot, ticks, _axis, _space, stepS) =>
 						ticks.map((tick) => (stepS >= 86_400 ? day : hour).format(tick * 1000))
 				},
-				{ ...axis, size: AXIS_PX, space: 26, values: (_plot, ticks) => ticks.map(bare) }
+				{ ...axis, size: AXIS_PX, space: 18, values: (_plot, ticks) => ticks.map(bare) }
 			],
-			cursor: { drag: { x: false, y: false }, points: { show: false } },
+			cursor: {
+				sync: { key: group, setSeries: false },
+				drag: { x: false, y: false },
+				points: { show: false }
+			},
 			hooks: { setCursor: [(plot) => oncursor(plot.cursor.idx ?? null)] }
 		},
 		data: [[...stack.timesS], ...columns] as uPlot.AlignedData

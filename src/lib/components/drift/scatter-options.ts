@@ -78,7 +78,7 @@ export function scatterOptions(
 				{
 					...axis,
 					size: 58,
-					space: 26,
+					space: 18,
 					values: (_p, ticks) => ticks.map((v) => milligauss(v).replace(' mG', ''))
 				}
 			],

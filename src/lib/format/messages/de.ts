@@ -301,8 +301,11 @@ export const de: Messages = {
 		notes: 'Notizen',
 		north: (deg) => `Norden, ${deg}° von oben`,
 		northLetter: 'N',
+		plotArrows: (title, unit) =>
+			`${title}, ${unit}. Die Pfeile nach links und rechts lesen die Werte vor.`,
+		plotBack: 'Voriger Ausschnitt',
 		plotKeys: (title, unit) =>
-			`${title}, ${unit}. Die Pfeile nach links und rechts lesen die Werte vor; Ziehen oder die Felder für die Zeit wählen den Ausschnitt.`,
+			`${title}, ${unit}. Die Pfeile nach links und rechts lesen die Werte vor; + und − zoomen, Escape geht zurück; Ziehen oder die Felder für die Zeit wählen den Ausschnitt.`,
 		noReading: 'keine Messung',
 		answered: (status) => `Lodekeep antwortete ${status}.`
 	},

@@ -310,8 +310,11 @@ export const en = {
 		notes: 'Notes',
 		north: (deg: number) => `North, ${deg}° from up`,
 		northLetter: 'N',
+		plotArrows: (title: string, unit: string) =>
+			`${title}, ${unit}. Left and right arrows read the values.`,
+		plotBack: 'The span before',
 		plotKeys: (title: string, unit: string) =>
-			`${title}, ${unit}. Left and right arrows read the values; drag or the range fields choose the time.`,
+			`${title}, ${unit}. Left and right arrows read the values; + and − zoom, Escape goes back; drag or the range fields choose the time.`,
 		noReading: 'no reading',
 		answered: (status: number) => `Lodekeep answered ${status}.`
 	},
