@@ -1,0 +1,82 @@
+import { area, type Widened } from './index';
+
+/** Closing bays, and the sheet of closures. */
+const en = {
+	title: (site: string) => `Close bays of ${site}`,
+	what: 'What',
+	description:
+		'Closed bays are neither free nor taken, out of drift and notices, still recording. At the end the quiet field is held against the reference.',
+	noBay: 'Name at least one bay.',
+	notHere: (codes: string) => `Not a bay here: ${codes}.`,
+	bothTimes: 'Both times are needed.',
+	endFirst: 'The end must lie after the beginning.',
+	noReason: 'A reason is needed: people read it on the plan.',
+	zone: (name: string) => `zone ${name}`,
+	closed: (what: string, until: string) => `Closed: ${what}, until ${until}.`,
+	question: (what: string, from: string, until: string, reason: string) =>
+		`Close ${what} from ${from} until ${until}: ${reason}?`,
+	byCode: 'bays by code',
+	bays: 'Bays',
+	baysHint: 'Codes with spaces or commas between',
+	from: 'From',
+	fromHint: (zone: string) => `local time, ${zone}`,
+	until: 'Until',
+	untilHint: 'local time',
+	reason: 'Reason',
+	reasonHint: 'People read it on the plan',
+	closeThem: 'Close them',
+	close: 'Close …',
+	heading: (site: string) => `Closures of ${site}`,
+	caption: 'Closures',
+	bay: 'Bay',
+	stage: 'Stage',
+	now: 'Now',
+	stages: { lifted: 'ended early', coming: 'to come', running: 'closed now', over: 'over' },
+	opened: (code: string) => `${code} is open again; its quiet field is held against the reference.`,
+	open: 'Open again',
+	none: 'No bay is closed.',
+	noneCure: 'Bays and zones are closed from the plan.',
+	note: 'At the end the quiet field is held against the reference: within 10 mG the bay is believed again, otherwise it is doubtful, ‘after works’. After works or new steel, a new reference only with the bay seen empty.'
+};
+const de: Widened<typeof en> = {
+	title: (site) => `Stellplätze von ${site} sperren`,
+	what: 'Was',
+	description:
+		'Gesperrte Stellplätze sind weder frei noch belegt, zählen nicht für Drift und Meldungen und zeichnen weiter auf. Am Ende wird das Ruhefeld mit dem Bezug verglichen.',
+	noBay: 'Nennen Sie mindestens einen Stellplatz.',
+	notHere: (codes) => `Hier kein Stellplatz: ${codes}.`,
+	bothTimes: 'Es braucht beide Zeiten.',
+	endFirst: 'Das Ende muss nach dem Anfang liegen.',
+	noReason: 'Es braucht einen Grund: man liest ihn auf dem Plan.',
+	zone: (name) => `Zone ${name}`,
+	closed: (what, until) => `Gesperrt: ${what}, bis ${until}.`,
+	question: (what, from, until, reason) => `${what} von ${from} bis ${until} sperren: ${reason}?`,
+	byCode: 'Stellplätze nach Kürzel',
+	bays: 'Stellplätze',
+	baysHint: 'Kürzel, durch Leerzeichen oder Komma getrennt',
+	from: 'Von',
+	fromHint: (zone) => `Ortszeit, ${zone}`,
+	until: 'Bis',
+	untilHint: 'Ortszeit',
+	reason: 'Grund',
+	reasonHint: 'Man liest ihn auf dem Plan',
+	closeThem: 'Sperren',
+	close: 'Sperren …',
+	heading: (site) => `Sperrungen von ${site}`,
+	caption: 'Sperrungen',
+	bay: 'Platz',
+	stage: 'Stand',
+	now: 'Jetzt',
+	stages: {
+		lifted: 'früher beendet',
+		coming: 'kommt noch',
+		running: 'jetzt gesperrt',
+		over: 'vorbei'
+	},
+	opened: (code) => `${code} ist wieder offen; sein Ruhefeld wird mit dem Bezug verglichen.`,
+	open: 'Wieder öffnen',
+	none: 'Kein Stellplatz ist gesperrt.',
+	noneCure: 'Stellplätze und Zonen werden vom Plan aus gesperrt.',
+	note: 'Am Ende wird das Ruhefeld mit dem Bezug verglichen: Bis 10 mG gilt der Stellplatz wieder als glaubhaft, sonst als zweifelhaft, ‚nach Arbeiten‘. Nach Arbeiten oder neuem Stahl einen neuen Bezug nur, wenn jemand den Platz leer sieht.'
+};
+export const closureWords = area(en, de);
