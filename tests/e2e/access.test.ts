@@ -33,7 +33,7 @@ const SHEETS = [
 	'/desk',
 	'/password',
 	'/sign-out',
-	'/primer'
+	'/desk/primer'
 ];
 const PUBLIC = ['/sign-in', '/reset', '/invitation?ticket=none', '/offline'];
 const WCAG = ['wcag2a', 'wcag2aa', 'wcag21a', 'wcag21aa', 'wcag22aa', 'best-practice'];

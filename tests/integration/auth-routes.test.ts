@@ -239,10 +239,10 @@ describe('pages', () => {
 /** What is open without signing in: sign-in and passwords, the shell without a connection, the wall. */
 const PUBLIC = [
 	'/acknowledge',
+	'/desk/primer',
 	'/invitation',
 	'/offline',
 	'/password',
-	'/primer',
 	'/reset',
 	'/sign-in',
 	'/sign-out',

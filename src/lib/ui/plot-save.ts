@@ -17,12 +17,14 @@ export const asCsv = ({ head, rows }: PlotTable): string =>
 	[head, ...rows].map((row) => `${row.map(field).join(',')}\r\n`).join('');
 
 /** 'Unexplained x of B07' → 'unexplained-x-of-b07'. */
-export const fileStem = (title: string): string =>
-	title
+export function fileStem(title: string): string {
+	const stem = title
 		.normalize('NFKD')
 		.toLowerCase()
 		.replace(/[^a-z0-9]+/g, '-')
-		.replace(/^-|-$/g, '') || 'plot';
+		.replace(/^-|-$/g, '');
+	return stem === '' ? 'plot' : stem;
+}
 
 export function saveFile(name: string, type: string, content: string | Blob): void {
 	const link = document.createElement('a');

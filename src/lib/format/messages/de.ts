@@ -79,6 +79,7 @@ export const de: Messages = {
 	},
 	notMeasured: 'nicht gemessen',
 	decimalSign: ',',
+	listSign: '; ',
 	live: {
 		signedOut: 'abgemeldet: die Anzeige steht still',
 		noAnswer: (time, length) => `keine Antwort von Lodekeep seit ${time} (${length})`,
@@ -107,6 +108,8 @@ export const de: Messages = {
 		'Sites register': 'Verzeichnis der Standorte'
 	},
 	frame: {
+		ofAllSites: 'Blätter aller Standorte',
+		ofThisSite: 'Blätter dieses Standorts',
 		skip: 'Zum Blatt springen',
 		sheets: 'Blätter',
 		main: 'Hauptleiste',

@@ -84,6 +84,8 @@ export const en = {
 	notMeasured: 'not measured',
 	/** Between whole and tenths of a number. */
 	decimalSign: '.',
+	/** Between figures of a list. */
+	listSign: ', ',
 	live: {
 		signedOut: 'signed out: what is shown stands still',
 		noAnswer: (time: string, length: string) => `no answer from Lodekeep since ${time} (${length})`,
@@ -115,6 +117,8 @@ export const en = {
 		'Sites register': 'Sites register'
 	},
 	frame: {
+		ofAllSites: 'Sheets of all sites',
+		ofThisSite: 'Sheets of this site',
 		skip: 'Skip to the sheet',
 		sheets: 'Sheets',
 		main: 'Main',
