@@ -1,4 +1,6 @@
 import { milligauss } from '$lib/format/field';
+import { named } from '$lib/format/messages';
+import { dossierWords } from '$lib/format/messages/dossier';
 import { moment } from '$lib/format/time';
 import { duration } from '$lib/format/duration';
 import { eventWord, plain, stateWord, type State } from '$lib/format/words';
@@ -12,80 +14,76 @@ export interface TimelineItem {
 	detail: Record<string, string | number | boolean | null>;
 }
 
-const SETTLED: Record<string, string> = {
-	seen_vacant: 'seen free',
-	told_vacant: 'told free',
-	seen_occupied: 'seen taken'
-};
-const ACTS: Record<string, string> = {
-	act_place: 'node placed',
-	act_accept: 'reference accepted',
-	act_withdraw: 'node withdrawn',
-	act_undo_settle: 'settling undone',
-	act_lift: 'closure ended early',
-	act_parameters: 'settings of the node changed',
-	act_accept_boot: 'boot counter accepted anew',
-	act_ask: 'node asked'
-};
-const OUTCOMES = ['done', 'refused', 'failed'];
-
 /** One line of the timeline in words. */
 export function timelineSentence(item: TimelineItem, timezone: string, nowMs: number): string {
 	const { what, detail } = item;
+	const said = dossierWords().time;
 	const local = (value: unknown) => moment(Number(value), timezone, nowMs);
 	if (what.startsWith('act_')) return actSentence(item, timezone, nowMs);
 	if (what.startsWith('command_')) {
 		const outcome =
-			detail['outcome'] === null ? 'no answer yet' : (OUTCOMES[Number(detail['outcome'])] ?? '');
+			detail['outcome'] === null ? said.noAnswer : (said.outcomes[Number(detail['outcome'])] ?? '');
 		const why = detail['reason'] === null ? '' : `, ${String(detail['reason'])}`;
-		return `command ‘${what.slice('command_'.length)}’ (${plain(String(detail['cause']))}): ${outcome}${why}`;
+		const name = what.slice('command_'.length);
+		return said.command(name, valueText(detail['cause']), outcome) + why;
 	}
 	if (what.startsWith('pulse_')) return pulseSentence(item);
 	switch (what) {
 		case 'reference':
-			return `quiet field learned from ${detail['readings']} readings, noise ${milligauss(Number(detail['sigmaMg']))}${detail['accepted'] === true ? (detail['provisional'] === true ? ', accepted by rule' : ', accepted') : ', not accepted yet'}`;
+			return `${said.learned(String(detail['readings']), milligauss(Number(detail['sigmaMg'])))}, ${detail['accepted'] === true ? (detail['provisional'] === true ? said.byRule : said.accepted) : said.notAccepted}`;
 		case 'boot':
-			return `node booted (${detail['cause'] ?? 'cause not said'}), firmware ${detail['firmware'] ?? 'not said'}`;
+			return said.boot(textOf(detail['cause']), textOf(detail['firmware']));
 		case 'closure_end':
-			return `closure over: ${plain(String(detail['finding']))}`;
+			return said.closureOver(valueText(detail['finding']));
 		case 'request':
-			return `somebody sent for: ${String(detail['reason'])}`;
+			return said.request(String(detail['reason']));
 		case 'request_end':
-			return `seen to: ${String(detail['outcome'])}`;
+			return said.seenTo(String(detail['outcome']));
 		case 'voided':
-			return `taken back: what was said as no. ${detail['voids']} did not happen`;
+			return said.voided(String(detail['voids']));
 		default: {
-			const late = detail['late'] === true ? ', found late' : '';
+			const late = detail['late'] === true ? `, ${said.late}` : '';
 			const about =
 				Number(detail['uncertaintyS']) >= 60
 					? ` ± ${duration(Number(detail['uncertaintyS']) * 1000)}`
 					: '';
-			return `${eventWord(what)}: ${stateWord(detail['state'] as State)} from ${local(detail['at'])}${about}${late}`;
+			const head = said.event(
+				eventWord(what),
+				stateWord(detail['state'] as State),
+				local(detail['at'])
+			);
+			return head + about + late;
 		}
 	}
 }
 
+/** A cause or a refusal as the API says it, in words. */
+const valueText = (value: unknown) =>
+	named(dossierWords().time.values, String(value)) ?? plain(String(value));
+const textOf = (value: TimelineItem['detail'][string] | undefined) =>
+	value == null ? null : String(value);
+
 function actSentence({ what, detail }: TimelineItem, timezone: string, nowMs: number): string {
+	const said = dossierWords().time;
 	const args = readArgs(detail['args']);
 	const outcome = detail['outcome'];
 	const tail =
-		outcome === null ? ', waiting' : outcome === 'done' ? '' : `, ${plain(String(outcome))}`;
-	if (what === 'act_settle') return `settled: ${SETTLED[String(args['as'])] ?? ''}${tail}`;
+		outcome === null ? `, ${said.waiting}` : outcome === 'done' ? '' : `, ${valueText(outcome)}`;
+	if (what === 'act_settle')
+		return said.settledAs(named(said.settled, String(args['as'])) ?? '') + tail;
 	if (what === 'act_close')
-		return `closed until ${moment(Number(args['toMs']), timezone, nowMs)}: ${String(args['reason'])}${tail}`;
-	return `${ACTS[what] ?? plain(what)}${tail}`;
+		return (
+			said.closed(moment(Number(args['toMs']), timezone, nowMs), String(args['reason'])) + tail
+		);
+	return (named(said.acts, what) ?? plain(what)) + tail;
 }
 
 function pulseSentence({ what, detail }: TimelineItem): string {
-	const name =
-		what === 'pulse_pair'
-			? 'SET/RESET pair'
-			: what === 'pulse_ack'
-				? 'pulse on command'
-				: 'power-on SET';
-	if (detail['accepted'] === true) return `${name}, taken into use`;
-	if (detail['accepted'] === false) return `${name}, not used: ${plain(String(detail['refusal']))}`;
-	return `${name}, not judged yet`;
+	const said = dossierWords().time;
+	const name = named(said.pulse, what) ?? said.pulse.pulse_power;
+	if (detail['accepted'] === true) return `${name}, ${said.used}`;
+	if (detail['accepted'] === false) return `${name}, ${said.notUsed(valueText(detail['refusal']))}`;
+	return `${name}, ${said.notJudged}`;
 }
 
 function readArgs(text: unknown): Record<string, unknown> {
