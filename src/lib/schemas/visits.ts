@@ -2,6 +2,9 @@ import { z } from 'zod';
 import { spec } from './v1/spec';
 import { CHECKS, PARTS, VISIT_OUTCOMES } from './visit-kinds';
 
+/** Stops of a walk: more than a day's work. */
+export const WALK_STOPS = 60;
+
 const everyday = ['operator', 'maintenance', 'admin'] as const;
 const fitters = ['maintenance', 'admin'] as const;
 const id = z.int().positive();
@@ -61,7 +64,7 @@ export const DESK_VISIT_ROUTES = {
 		summary: 'Take requests into a walk of your own',
 		scope: null,
 		roles: fitters,
-		body: z.strictObject({ requests: z.array(id).min(1).max(200) }),
+		body: z.strictObject({ requests: z.array(id).min(1).max(WALK_STOPS) }),
 		status: 201
 	}),
 	walk: spec({

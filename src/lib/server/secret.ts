@@ -2,7 +2,14 @@ import { createCipheriv, createDecipheriv, hkdfSync, randomBytes } from 'node:cr
 
 /** What a sealed value is for; each purpose has a key of its own. */
 export type Purpose =
-	'node key' | 'outbox' | 'idempotency' | 'webhook secret' | 'session' | 'check' | 'mail link';
+	| 'node key'
+	| 'outbox'
+	| 'idempotency'
+	| 'webhook secret'
+	| 'session'
+	| 'check'
+	| 'mail link'
+	| 'waiting';
 
 export type Opened =
 	| { ok: true; bytes: Buffer; /** Sealed under the former secret. */ previous: boolean }

@@ -26,6 +26,10 @@ const answer = (status: Answer['status'], body: unknown, extra: Extra = {}): Ans
 	secret: extra.secret ?? false
 });
 
+/** Bytes of a type of their own, kept by no cache. */
+export const file = (bytes: Buffer, contentType: string): Answer =>
+	answer(200, bytes, { headers: { 'content-type': contentType } });
+
 export const ok = (body: unknown, extra?: Extra): Answer => answer(200, body, extra);
 export const noContent = (): Answer => answer(204, undefined);
 /** Done in part: the pipeline has not taken it yet. */

@@ -88,7 +88,7 @@ function create(config: Config): Instance {
 	const sender = startSender({ db: store.db, secret, log, config });
 	const ownerless = watchOwnerless({ db: store.db, secret, log, wake: sender.wake });
 	const notices = startNotices({ store, secret, log, config, wake: sender.wake });
-	const upkeep = startUpkeep(databaseUrl, log);
+	const upkeep = startUpkeep({ databaseUrl, dataDir: config.dataDir }, log);
 	const supervisor = startSupervisor({ config, store, secret, log });
 	return {
 		config,

@@ -113,6 +113,15 @@ export async function respond(place: Place, answer: Answer | Problem): Promise<R
 			headers: { ...place.fields, ...answer.headers, 'cache-control': 'no-store' }
 		});
 	}
+	if (Buffer.isBuffer(answer.body)) {
+		return bytesResponse(answer.body, answer.status, {
+			...place.fields,
+			...answer.headers,
+			'cache-control': 'private, no-store',
+			'content-disposition': 'inline',
+			vary: vary(place)
+		});
+	}
 	const plain = Buffer.from(JSON.stringify(answer.body));
 	return isRead(place) && !answer.secret
 		? await read(place, answer, plain)

@@ -1,5 +1,6 @@
-import { run, select, type Sql } from '$lib/server/store/queries/bulk';
+import type { Sql } from '$lib/server/store/queries/bulk';
 import type { RefreshRow } from '$lib/server/store/queries/refreshes';
+import * as requests from '$lib/server/store/queries/visit-requests';
 
 const personOf = (actor: string | null): number | null =>
 	actor?.startsWith('person:') === true ? Number(actor.slice('person:'.length)) : null;
@@ -11,16 +12,9 @@ export async function sendSomeone(
 	why: string,
 	atMs: number
 ): Promise<void> {
-	const there = await select<{ id: number }>(
-		sql,
-		'SELECT id FROM visit_request WHERE bay_id = ? AND ended_at_ms IS NULL FOR UPDATE',
-		[row.bayId]
-	);
-	if (there.length > 0) return;
-	const askedBy = personOf(row.approvedBy) ?? personOf(row.askedBy);
-	await run(
-		sql,
-		'INSERT INTO visit_request (site_id, bay_id, node_id, reason, asked_by, asked_at_ms) VALUES (?, ?, ?, ?, (SELECT id FROM person WHERE id = ?), ?)',
-		[row.siteId, row.bayId, row.nodeId, `film refresh: ${why}`.slice(0, 400), askedBy, atMs]
-	);
+	await requests.ask(sql, {
+		...{ siteId: row.siteId, bayId: row.bayId, nodeId: row.nodeId, atMs },
+		...{ cause: 'not_cured', detail: why, reason: `film refresh: ${why}` },
+		askedBy: personOf(row.approvedBy) ?? personOf(row.askedBy)
+	});
 }
