@@ -17,7 +17,7 @@ export default defineConfig({
 					include: ['src/**/*.test.ts', 'simulator/**/*.test.ts']
 				}
 			},
-			...(['integration', 'accuracy', 'faults', 'e2e'] as const).map((name) => ({
+			...(['integration', 'accuracy', 'faults', 'e2e', 'long'] as const).map((name) => ({
 				extends: true as const,
 				test: {
 					name,

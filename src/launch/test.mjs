@@ -19,9 +19,12 @@ const SHARES_S = {
 	integration: 210,
 	accuracy: 90,
 	e2e: 270,
-	faults: 90
+	faults: 90,
+	/** Only by name: axe as every role, in both themes and languages. */
+	long: 1200
 };
 const SUITES = ['unit', 'integration', 'accuracy', 'e2e', 'faults'];
+const BY_NAME = ['long'];
 /** A suite that hangs is ended after this many of its shares; the long matrix has its own. */
 const PATIENCE = process.env.LODEKEEP_LONG === '1' ? 60 : 4;
 const TEST_PACKAGES = {
@@ -183,7 +186,7 @@ try {
 	});
 	if (isWanted('checks')) await timed('checks', checks);
 	let isBuilt = false;
-	for (const name of SUITES.filter(isWanted))
+	for (const name of [...SUITES.filter(isWanted), ...BY_NAME.filter((n) => wanted.includes(n))])
 		await timed(name, async () => {
 			if (name !== 'unit' && name !== 'accuracy' && !isBuilt) await build();
 			isBuilt ||= name !== 'unit' && name !== 'accuracy';
