@@ -19,6 +19,8 @@ export interface NoticeView {
 	stage: number;
 	also: string[];
 	awaitsProof: boolean;
+	/** How often it has opened. */
+	times: number;
 	cause: string | null;
 	holder: { name: string; initials: string; mine: boolean } | null;
 	snoozedUntilMs: number | null;
@@ -43,6 +45,8 @@ export interface EndedView {
 	timezone: string;
 	closedAtMs: number;
 	how: string;
+	/** It ended without anybody. */
+	healed: boolean;
 }
 
 export interface NoticeSheetView {

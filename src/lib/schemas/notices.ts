@@ -35,8 +35,13 @@ export const noticeFacts = z.object({
 	/** What the mail server said, and of how many mails. */
 	reply: z.string().optional(),
 	address: z.string().optional(),
-	/** Drift by cause where known. */
+	/** What moved it as drift names it, unless only what is always taken out; and how far. */
 	cause: z.string().optional(),
+	causeMg: z.number().optional(),
+	/** Why a film refresh is due (refreshes/settings.ts). */
+	reasons: z.array(z.string()).optional(),
+	/** Limits of this node: drifting, film refresh due. */
+	limitsMg: z.array(z.number()).optional(),
 	unexplainedMg: z.number().optional(),
 	rateMgPerDay: z.number().optional(),
 	daysLeftLo: z.number().optional(),

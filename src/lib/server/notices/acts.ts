@@ -1,3 +1,4 @@
+import { noticesWords } from '$lib/format/messages/notices';
 import { instantOf } from '$lib/format/time';
 import { SNOOZE_MAX_DAYS, type NoticeAct } from '$lib/schemas/notices';
 import type { Store } from '$lib/server/store/connect';
@@ -36,7 +37,7 @@ export async function act(store: Store, by: ActBy, nowMs: number): Promise<ActDo
 			const people = (await mailPeople.all(sql)).map(recipientOf);
 			const me = people.find(({ id }) => id === by.personId);
 			if (me === undefined || me.role === 'integrator')
-				return refuse('Ask somebody of maintenance: your role does not hold notices.');
+				return refuse(noticesWords().refused.integrator);
 			const open = await notices.openByIds(sql, by.act.ids);
 			const rows = open.filter(
 				({ siteId }) =>
@@ -131,9 +132,9 @@ async function tellOthers(
 
 async function handOn(sql: Sql, doing: Doing, toId: number): Promise<number | string> {
 	const to = doing.people.find(({ id }) => id === toId);
-	if (to === undefined) return 'This person is not here any more.';
+	if (to === undefined) return noticesWords().refused.gone;
 	const outside = doing.rows.some(({ siteId }) => !mayHold(to, siteId));
-	if (outside) return `${to.name} does not have all of these sites, or may not hold notices.`;
+	if (outside) return noticesWords().refused.outside(to.name);
 	return await hold(sql, doing, to);
 }
 
@@ -148,11 +149,11 @@ async function giveBack(sql: Sql, doing: Doing): Promise<number> {
 
 async function snooze(sql: Sql, doing: Doing, until: string): Promise<number | string> {
 	const { me, rows, by, nowMs } = doing;
-	if (me.role === 'operator') return 'Snoozing is for maintenance: ask them, or take it yourself.';
+	if (me.role === 'operator') return noticesWords().refused.operatorSnooze;
 	const untilMs = instantOf(until, by.zone);
-	if (untilMs === null || untilMs <= nowMs) return 'Say a time that is still to come.';
+	if (untilMs === null || untilMs <= nowMs) return noticesWords().refused.past;
 	if (untilMs > nowMs + SNOOZE_MAX_DAYS * DAY_MS)
-		return `A notice sleeps for ${SNOOZE_MAX_DAYS} days at the most.`;
+		return noticesWords().refused.tooLong(SNOOZE_MAX_DAYS);
 	await notices.snooze(
 		sql,
 		rows.map(({ id }) => id),

@@ -2,6 +2,7 @@ import { compose } from '$lib/server/outbox/letter/letter';
 import { factsOf, type Item } from '$lib/server/outbox/letter/item';
 import { driftPlot } from '$lib/server/outbox/letter/drift-plot';
 import { drawHtml } from '$lib/server/outbox/letter/html';
+import { MARK_CID, markPng } from '$lib/server/outbox/letter/mark';
 import { drawText } from '$lib/server/outbox/letter/text';
 import { enqueueMail, newMessageId } from '$lib/server/outbox/enqueue';
 import { ACKNOWLEDGE_DAYS, makeToken } from '$lib/server/outbox/link-token';
@@ -13,6 +14,9 @@ import * as wishes from '$lib/server/store/queries/mail-wishes';
 import { unexplained } from '$lib/server/store/queries/notice-drift';
 import * as letters from '$lib/server/store/queries/notice-letter';
 import { transaction, type Tx } from '$lib/server/store/transaction';
+import { speaking } from '$lib/server/auth/language';
+import { isLanguage } from '$lib/format/messages';
+import { mailWords } from '$lib/format/messages/mail';
 import { LIMITS_MG } from './drift-facts';
 import { concerns, recipientOf, type Recipient } from './people';
 
@@ -100,36 +104,26 @@ function itemsOf(due: readonly wishes.WishRow[], rows: readonly letters.NoticeRo
 	});
 }
 
+/** Written in the reader's language and zone. */
 async function mailOf(
-	{ secret, origin }: ComposeParts,
+	parts: ComposeParts,
 	{ db, sql }: Tx,
 	{ to, items }: { to: Recipient; items: readonly Item[] },
 	nowMs: number
 ): Promise<string> {
-	const [first] = items.map(({ row }) => row);
 	const messageId = newMessageId();
-	const token = makeToken(secret, { does: 'unsubscribe', personId: to.id });
-	const unsubscribeUrl = `${origin}/unsubscribe?token=${token}`;
-	const plot = items.length === 1 && first !== undefined ? await plotOf(sql, first, nowMs) : null;
-	const plotCid = `drift-${first?.id ?? 0}@lodekeep`;
-	const letter = compose({
-		...{ to, items, nowMs, origin, unsubscribeUrl },
-		site: siteOf(first),
-		zone: to.timezone ?? first?.timezone ?? 'UTC',
-		acknowledgeUrl: acknowledgeUrl(secret, origin, to, items, nowMs),
-		plotCid: plot === null ? null : plotCid
-	});
+	const token = makeToken(parts.secret, { does: 'unsubscribe', personId: to.id });
+	const unsubscribeUrl = `${parts.origin}/unsubscribe?token=${token}`;
+	const language = isLanguage(to.language) ? to.language : 'en';
+	const drawn = await speaking(
+		language,
+		async () => await draw(parts, sql, { to, items, unsubscribeUrl }, nowMs)
+	);
 	return await enqueueMail(
 		db,
-		secret,
+		parts.secret,
 		{
-			...{ to: to.email, subject: letter.subject, messageId, personId: to.id, unsubscribeUrl },
-			...{ text: drawText(letter), html: drawHtml(letter) },
-			...(plot === null
-				? {}
-				: {
-						inline: [{ cid: plotCid, name: 'drift.png', pngBase64: plot.toString('base64') }]
-					}),
+			...{ to: to.email, messageId, personId: to.id, unsubscribeUrl, ...drawn },
 			references: await wishes.thread(sql, to.id, {
 				nodeIds: items.flatMap(({ row }) => row.nodeId ?? []),
 				noticeIds: items.map(({ row }) => row.id)
@@ -138,6 +132,35 @@ async function mailOf(
 		},
 		nowMs
 	);
+}
+
+/** Subject, text and HTML with the pictures that it shows. */
+async function draw(
+	{ secret, origin }: ComposeParts,
+	sql: Sql,
+	of: { to: Recipient; items: readonly Item[]; unsubscribeUrl: string },
+	nowMs: number
+) {
+	const { to, items, unsubscribeUrl } = of;
+	const [first] = items;
+	const plot = items.length === 1 && first !== undefined ? await plotOf(sql, first, nowMs) : null;
+	const plotCid = `drift-${first?.row.id ?? 0}@lodekeep`;
+	const mark = await markPng();
+	const letter = compose({
+		...{ to, items, nowMs, origin, unsubscribeUrl },
+		site: siteOf(first?.row),
+		zone: to.timezone ?? first?.zone ?? 'UTC',
+		acknowledgeUrl: acknowledgeUrl(secret, origin, to, items, nowMs),
+		plotCid: plot === null ? null : plotCid,
+		markCid: mark === null ? null : MARK_CID
+	});
+	const inline = [
+		...(mark === null ? [] : [{ cid: MARK_CID, name: 'lodekeep.png', pngBase64: mark }]),
+		...(plot === null
+			? []
+			: [{ cid: plotCid, name: 'drift.png', pngBase64: plot.toString('base64') }])
+	];
+	return { subject: letter.subject, text: drawText(letter), html: drawHtml(letter), inline };
 }
 
 const siteOf = (row: letters.NoticeRow | undefined) =>
@@ -163,8 +186,9 @@ function acknowledgeUrl(
 
 const PLOTTED = /drifting|refresh_due|inverted|refresh_not_cured/;
 
-async function plotOf(sql: Sql, row: letters.NoticeRow, nowMs: number): Promise<Buffer | null> {
+async function plotOf(sql: Sql, { row, facts }: Item, nowMs: number): Promise<Buffer | null> {
 	if (row.nodeId === null || !PLOTTED.test(row.kinds)) return null;
 	const hours = await unexplained(sql, [row.nodeId], nowMs - PLOT_DAYS * DAY_MS);
-	return driftPlot(hours.get(row.nodeId) ?? [], [LIMITS_MG.drifting, LIMITS_MG.due], nowMs);
+	const limitsMg = facts.limitsMg ?? [LIMITS_MG.drifting, LIMITS_MG.due];
+	return driftPlot(hours.get(row.nodeId) ?? [], limitsMg, nowMs, mailWords().plotNow);
 }

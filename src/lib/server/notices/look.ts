@@ -88,7 +88,7 @@ async function judge(sql: Sql, look: Look, site: queries.SiteToLook): Promise<Ap
 		extra: {
 			refused,
 			notCured: new Set(notCured.map(({ nodeId }) => nodeId)),
-			drift: await look.drift.of(sql, drifting(nodes), nowMs)
+			drift: await look.drift.of(sql, site.id, drifting(nodes), nowMs)
 		},
 		lateSinceMs: lateSinceMs(heard, site, look),
 		stormsOpen: new Set(rows.flatMap(({ about }) => stormKey(about, site.id))),

@@ -1,4 +1,5 @@
 import { fail } from '@sveltejs/kit';
+import { noticesWords } from '$lib/format/messages/notices';
 import { noticeAct } from '$lib/schemas/notices';
 import { instance } from '$lib/server/api/instance';
 import { requirePage } from '$lib/server/auth/require-page';
@@ -28,9 +29,9 @@ export async function actOnNotices(locals: App.Locals, request: Request, site: s
 	const fields = { ...Object.fromEntries(data), ids: data.getAll('ids').map(String) };
 	const form = noticeAct.safeParse(fields);
 	if (!form.success)
-		return fail(400, { trouble: form.error.issues[0]?.message ?? 'Something is missing.' });
+		return fail(400, { trouble: form.error.issues[0]?.message ?? noticesWords().refused.missing });
 	const personId = personIdOf(found.reach);
-	if (personId === null) return fail(403, { trouble: 'Only a person does this.' });
+	if (personId === null) return fail(403, { trouble: noticesWords().refused.noPerson });
 	const app = instance();
 	const given = data.get('zone');
 	const zone = typeof given === 'string' ? given : (found.site?.timezone ?? 'UTC');

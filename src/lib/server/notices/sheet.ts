@@ -1,4 +1,11 @@
-import { daysLeft, HOW_WORDS, noticeWords, stormSentence } from '$lib/format/notice-words';
+import {
+	daysLeft,
+	driftLine,
+	howWords,
+	noticeWords,
+	stormSentence
+} from '$lib/format/notice-words';
+import { noticesWords } from '$lib/format/messages/notices';
 import { moment } from '$lib/format/time';
 import { plain } from '$lib/format/words';
 import type { NoticeFacts } from '$lib/schemas/notices';
@@ -93,13 +100,13 @@ function viewOf(row: letters.NoticeRow, { told, entries, me, nowMs }: More): Not
 		also: kindsOf(row.kinds)
 			.filter((kind) => kind !== row.kind)
 			.map((kind) => noticeWords(kind).word),
-		awaitsProof: row.awaitsProof === 1,
+		...{ awaitsProof: row.awaitsProof === 1, times: row.times },
 		cause: causeOf(facts),
 		holder:
 			row.takenBy === null
 				? null
 				: {
-						...{ name: row.takerName ?? 'a person', initials: row.takerInitials ?? '' },
+						...{ name: row.takerName ?? noticesWords().aPerson, initials: row.takerInitials ?? '' },
 						mine: row.takenBy === me
 					},
 		snoozedUntilMs: (row.snoozedUntilMs ?? 0) > nowMs ? row.snoozedUntilMs : null,
@@ -121,7 +128,7 @@ function whatOf(row: letters.NoticeRow, facts: NoticeFacts, nowMs: number): stri
 	if (row.bay !== null) return row.bay;
 	if (row.kind === 'silent')
 		return stormSentence(moment(row.sinceMs, row.timezone ?? 'UTC', nowMs), facts);
-	if (row.kind === 'mail_failing') return facts.address ?? 'an address';
+	if (row.kind === 'mail_failing') return facts.address ?? noticesWords().anAddress;
 	return row.siteName ?? 'Lodekeep';
 }
 
@@ -133,12 +140,9 @@ function hrefOf(row: letters.NoticeRow): string | null {
 
 function causeOf(facts: NoticeFacts): string | null {
 	if (facts.reply !== undefined) return facts.reply;
-	if (facts.refusedWhy !== undefined) return `frames refused: ${plain(facts.refusedWhy)}`;
-	if (facts.unexplainedMg !== undefined) {
-		const rate = facts.rateMgPerDay === undefined ? '' : `, ${facts.rateMgPerDay} mG a day more`;
-		return `${facts.unexplainedMg} mG unexplained${rate}`;
-	}
-	return facts.batteryMv === undefined ? null : `cell ${facts.batteryMv} mV`;
+	const said = noticesWords();
+	if (facts.refusedWhy !== undefined) return said.framesRefused(plain(facts.refusedWhy));
+	return driftLine(facts) ?? (facts.batteryMv === undefined ? null : said.cell(facts.batteryMv));
 }
 
 const list = (kinds: string): string =>
@@ -147,18 +151,22 @@ const list = (kinds: string): string =>
 		.join(', ');
 
 function entryWords({ what, detail }: letters.EntryRow, zone: string, nowMs: number): string {
+	const said = noticesWords().entry;
 	const words: Record<string, () => string> = {
-		opened: () => `opened: ${list(detail)}`,
-		kind: () => `now: ${list(detail)}`,
-		awaits_proof: () => 'the condition has ended; it waits for the proof of a film refresh',
-		taken: () => `${detail} took it`,
-		handed: () => `handed on to ${detail}`,
-		given_back: () => 'given back',
-		snoozed: () => `asleep until ${moment(Number(detail), zone, nowMs)}`,
+		opened: () => said.opened(list(detail)),
+		reopened: () => {
+			const [times = '', kinds = ''] = detail.split(':');
+			return said.reopened(times, list(kinds));
+		},
+		kind: () => said.kind(list(detail)),
+		awaits_proof: () => said.awaitsProof,
+		taken: () => said.taken(detail),
+		handed: () => said.handed(detail),
+		given_back: () => said.givenBack,
+		snoozed: () => said.snoozed(moment(Number(detail), zone, nowMs)),
 		comment: () => detail,
-		escalated: () =>
-			detail === 'deputy' ? 'nobody took it: to the deputy' : 'nobody took it: to the admins',
-		closed: () => `closed: ${HOW_WORDS[detail] ?? detail}`
+		escalated: () => (detail === 'deputy' ? said.deputy : said.admins),
+		closed: () => said.closed(howWords(detail))
 	};
 	return words[what]?.() ?? plain(what);
 }
@@ -170,5 +178,6 @@ const endedView = (row: letters.NoticeRow, nowMs: number): EndedView => ({
 		timezone: row.timezone ?? 'UTC',
 		closedAtMs: row.closedAtMs ?? nowMs
 	},
-	how: HOW_WORDS[row.closedHow ?? 'healed'] ?? ''
+	how: howWords(row.closedHow ?? 'healed'),
+	healed: row.closedHow === 'healed'
 });

@@ -21,7 +21,8 @@ const DAY_MS = 86_400_000;
 export function driftPlot(
 	points: readonly DriftPoint[],
 	limitsMg: readonly number[],
-	nowMs: number
+	nowMs: number,
+	nowWord = 'now'
 ): Buffer | null {
 	const [first, last] = [points[0], points.at(-1)];
 	if (first === undefined || last === undefined || points.length < 2) return null;
@@ -36,6 +37,7 @@ export function driftPlot(
 		label(pen, `${limit} mG`, y(limit));
 	}
 	label(pen, '0 mG', y(0));
+	pen.text(nowWord, PLOT.width - RIGHT - textWidth(nowWord) + 4, PLOT.height - BOTTOM + 14, INK_2);
 	dayMarks(pen, spanMs / DAY_MS, x, first.atMs, nowMs);
 	curve(pen, points, x, y);
 	return encodePng(pen.raster);
@@ -59,7 +61,6 @@ function dayMarks(
 	nowMs: number
 ): void {
 	const stepDays = days <= 8 ? 1 : 7;
-	pen.text('now', PLOT.width - RIGHT - textWidth('now') + 4, PLOT.height - BOTTOM + 14, INK_2);
 	for (let back = stepDays; nowMs - back * DAY_MS >= fromMs; back += stepDays) {
 		const at = x(nowMs - back * DAY_MS);
 		pen.line([at, PLOT.height - BOTTOM], [at, PLOT.height - BOTTOM - 8], INK_2, 2);

@@ -10,6 +10,9 @@ const FONT = "font-family:'JetBrains Mono',ui-monospace,Menlo,Consolas,monospace
 const BODY = `${FONT};font-size:14px;line-height:21px;color:${INK}`;
 const SMALL = `${FONT};font-size:12px;line-height:18px;color:${INK_2}`;
 
+/** static/mark/mail-header.png holds twice as many pixels. */
+const MARK = { width: 220, height: 48 };
+
 const ESCAPES: Record<string, string> = {
 	'&': '&amp;',
 	'<': '&lt;',
@@ -38,12 +41,13 @@ export function drawHtml(letter: Letter): string {
 		actions(letter)
 	].join('\n');
 	return `<!doctype html>
-<html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width">
+<html lang="${letter.lang}"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width">
 <meta name="color-scheme" content="light"><title>${safe(letter.subject)}</title></head>
 <body style="margin:0;padding:0;background:${PAPER}">
 <table role="presentation" cellpadding="0" cellspacing="0" border="0" width="100%" style="background:${PAPER}"><tr><td align="center" style="padding:16px 8px">
 <table role="presentation" cellpadding="0" cellspacing="0" border="0" width="600" style="width:100%;max-width:600px;border:2px solid ${INK};border-collapse:collapse">
-<tr><td style="padding:24px 24px 20px">
+<tr><td style="padding:14px 24px 0">${head(letter)}</td></tr>
+<tr><td style="padding:12px 24px 20px">
 ${inside}
 </td></tr>
 <tr><td style="border-top:2px solid ${INK}">${block(letter)}</td></tr>
@@ -53,6 +57,12 @@ ${inside}
 </body></html>
 `;
 }
+
+/** Our mark in its own hand, shown at half its size; in letters where pictures are not shown. */
+const head = ({ markCid }: Letter): string =>
+	markCid === null
+		? `<span style="${BODY};font-weight:600">Lodekeep</span>`
+		: `<img src="cid:${safe(markCid)}" width="${MARK.width}" height="${MARK.height}" alt="Lodekeep" style="display:block;border:0;${BODY};font-weight:600">`;
 
 const lines = ({ lines: all }: Letter): string =>
 	table(

@@ -1,5 +1,15 @@
+import {
+	daysLeft,
+	driftLine,
+	howWords,
+	noticeWords,
+	stormSentence
+} from '$lib/format/notice-words';
+import { named } from '$lib/format/messages';
+import { mailWords } from '$lib/format/messages/mail';
+import { noticesWords } from '$lib/format/messages/notices';
 import { moment, zoneName } from '$lib/format/time';
-import { daysLeft, HOW_WORDS, noticeWords, stormSentence } from '$lib/format/notice-words';
+import { plain } from '$lib/format/words';
 import { noticeFacts, type NoticeFacts } from '$lib/schemas/notices';
 import type { NoticeRow } from '$lib/server/store/queries/notice-letter';
 
@@ -30,56 +40,56 @@ export function factsOf(row: Pick<NoticeRow, 'facts'>): NoticeFacts {
 /** 'B07' for a node, else the site; a storm its sentence. */
 export function headOf({ row, facts, zone }: Item, nowMs: number): string {
 	const since = moment(row.sinceMs, zone, nowMs);
+	const site = row.siteName ?? '';
 	if (row.bay !== null) {
 		const left = daysLeft(facts.daysLeftLo, facts.daysLeftHi);
-		const word = noticeWords(row.kind).word;
-		return `${row.bay}, ${row.siteName ?? ''}: ${word}${left === null ? '' : `, ${left}`}`;
+		return `${row.bay}, ${site}: ${noticeWords(row.kind).word}${left === null ? '' : `, ${left}`}`;
 	}
-	if (row.kind === 'silent') return `${row.siteName ?? ''}: ${stormSentence(since, facts)}`;
-	if (row.kind === 'site_late') return `${row.siteName ?? ''}: site late since ${since}`;
-	if (row.kind === 'mail_failing') return `Mail failing: ${facts.address ?? ''}`;
-	return `${row.siteName ?? ''}: ${noticeWords(row.kind).word}`;
+	if (row.kind === 'silent') return `${site}: ${stormSentence(since, facts)}`;
+	if (row.kind === 'site_late') return mailWords().siteLate(site, since);
+	if (row.kind === 'mail_failing') return mailWords().mailFailing(facts.address ?? '');
+	return `${site}: ${noticeWords(row.kind).word}`;
 }
 
 /** What has happened to a notice that was told before; null for a new one. */
 export function newsOf({ what, detail, row }: Item): string | null {
-	if (what === 'taken') return `${detail} has it now.`;
-	if (what === 'closed') return `It is over: ${HOW_WORDS[detail] ?? detail}.`;
-	if (what === 'escalated')
-		return detail === 'deputy'
-			? 'Nobody has taken it in time. You are named as deputy.'
-			: 'Nobody has taken it in time, nor a deputy. It comes to the admins.';
-	if (what === 'worse') return `It was '${noticeWords(detail).word}' before.`;
-	return row.takerName === null ? null : `${row.takerName} has it.`;
+	const said = mailWords();
+	if (what === 'taken') return said.hasItNow(detail);
+	if (what === 'closed') return said.over(howWords(detail));
+	if (what === 'escalated') return detail === 'deputy' ? said.deputy : said.admins;
+	if (what === 'worse') return said.was(noticeWords(detail).word);
+	if (row.takerName !== null) return said.hasIt(row.takerName);
+	return row.times > 1 ? said.again(row.times) : null;
 }
 
 const clock = (min: number): string =>
 	`${String(Math.floor(min / 60)).padStart(2, '0')}:${String(min % 60).padStart(2, '0')}`;
 
-const PULSED = /inverted|refresh_due/;
+/** Kinds that a film refresh cures. */
+export const PULSED = /inverted|refresh_due/;
 
-function tonight({ row }: Item): string | null {
+/** Whether the site's rule will do it in the coming quiet hours. */
+function tonight({ row, facts }: Item): string | null {
+	const said = mailWords().tonight;
 	if (!PULSED.test(row.kinds)) return null;
-	if (row.scheduleOn !== 1) return 'no rule will do it: it waits for a person';
-	const hours = `${clock(row.quietFromMin ?? 0)} to ${clock(row.quietToMin ?? 0)}`;
-	return `a rule may do it, ${hours} at the site, if the bay is free (${(row.scheduleReasons ?? '').replaceAll('_', ' ').replaceAll(',', ', ')})`;
+	if (row.refreshState === 'asked') return said.asked;
+	if (row.refreshState !== null) return said.underWay;
+	if (row.scheduleOn !== 1) return said.off;
+	const taken = (row.scheduleReasons ?? '').split(',');
+	const reasons = facts.reasons ?? [row.kinds.includes('inverted') ? 'inverted' : 'strong_field'];
+	if (!reasons.some((reason) => taken.includes(reason))) return said.notFor;
+	return said.will(clock(row.quietFromMin ?? 0), clock(row.quietToMin ?? 0));
 }
 
 function causeOf({ row, facts }: Item): string | null {
-	if (facts.cause !== undefined) return facts.cause;
-	if (row.kinds.includes('inverted')) return 'the film has flipped: a strong field came near';
-	if (/refresh_due|drifting/.test(row.kinds))
-		return 'not temperature, not the geomagnetic field, not the bridge: most likely film loss, until a pulse measures it';
-	if (row.kind === 'rejected_frames')
-		return `frames refused: ${facts.refusedWhy?.replaceAll('_', ' ') ?? ''}`;
-	if (row.kind === 'mail_failing') return `the mail server says: ${facts.reply ?? ''}`;
-	return null;
-}
-
-function rateOf({ facts }: Item): string | null {
-	if (facts.unexplainedMg === undefined) return null;
-	const rate = facts.rateMgPerDay === undefined ? '' : `, ${facts.rateMgPerDay} mG a day more`;
-	return `${facts.unexplainedMg} mG unexplained${rate}`;
+	const said = mailWords();
+	if (row.kinds.includes('inverted')) return said.cause.inverted;
+	if (/refresh_due|drifting/.test(row.kinds)) {
+		const cause = named(said.cause, facts.cause ?? 'unexplained') ?? said.cause.unexplained;
+		return facts.causeMg === undefined ? cause : said.causeMg(cause, facts.causeMg);
+	}
+	if (row.kind === 'rejected_frames') return said.framesRefused(plain(facts.refusedWhy ?? ''));
+	return row.kind === 'mail_failing' ? said.serverSays(facts.reply ?? '') : null;
 }
 
 /** '52.10234, 11.62345' of the bay's middle, else of the site. */
@@ -105,26 +115,25 @@ function ringOf(geometry: string | null): [number, number][] | null {
 /** Enough to act on without signing in. */
 export function linesOf(item: Item, nowMs: number): Line[] {
 	const { row, facts, zone } = item;
-	const words = noticeWords(row.kind);
+	const { next, otherwise, bring } = noticeWords(row.kind);
+	const said = mailWords();
+	const { label } = said;
 	const at = (ms: number) => moment(ms, zone, nowMs);
+	const left = daysLeft(facts.daysLeftLo, facts.daysLeftHi);
+	const same = noticesWords().sameProfile;
 	const lines: (Line | null)[] = [
 		whereOf(row),
 		placeLine(row),
-		line('Since', `${at(row.sinceMs)} (${zoneName(nowMs, zone)})`),
-		line('Cause', causeOf(item)),
-		line('Drift', rateOf(item)),
-		line('Bays', row.bay === null && facts.bays !== undefined ? baysOf(facts) : null),
-		line('Cell', facts.batteryMv === undefined ? null : `${facts.batteryMv} mV`),
-		line('Next', words.next),
-		line('If nobody acts', consequenceOf(item)),
-		line('Tonight', tonight(item)),
-		line(
-			'Bring',
-			words.bring === null
-				? null
-				: words.bring.replace('the same profile', row.profile ?? 'the same profile')
-		),
-		line('Take it by', at(row.deadlineMs))
+		line(label.since, `${at(row.sinceMs)}, ${zoneName(nowMs, zone)}`),
+		line(label.cause, causeOf(item)),
+		line(label.drift, driftLine(facts)),
+		line(label.bays, row.bay === null && facts.bays !== undefined ? baysOf(facts) : null),
+		line(label.cell, facts.batteryMv === undefined ? null : `${facts.batteryMv} mV`),
+		line(label.next, next),
+		line(label.otherwise, said.consequence(otherwise, left)),
+		line(label.tonight, tonight(item)),
+		line(label.bring, bring?.replace(same, row.profile ?? same) ?? null),
+		line(label.takeBy, at(row.deadlineMs))
 	];
 	return lines.filter((one) => one !== null);
 }
@@ -133,26 +142,25 @@ const line = (label: string, value: string | null): Line | null =>
 	value === null || value === '' ? null : { label, value };
 
 function whereOf(row: NoticeRow): Line | null {
-	if (row.bay === null) return line('Where', row.siteName);
-	const zone = row.zoneName === null ? '' : `, zone ${row.zoneName}`;
-	return line('Where', `bay ${row.bay}${zone}, ${row.siteName ?? ''}; node ${row.serial ?? ''}`);
+	const said = mailWords();
+	if (row.bay === null) return line(said.label.where, row.siteName);
+	const where = said.where(row.bay, row.zoneName, row.siteName ?? '', row.serial ?? '');
+	return line(said.label.where, where);
 }
 
 function placeLine(row: NoticeRow): Line | null {
 	const place = placeOf(row);
 	if (place === null) return null;
 	const text = place.map((deg) => deg.toFixed(5));
-	return { label: 'Position', value: text.join(', '), href: `geo:${text.join(',')}` };
+	return {
+		label: mailWords().label.position,
+		value: text.join(', '),
+		href: `geo:${text.join(',')}`
+	};
 }
 
 function baysOf(facts: NoticeFacts): string {
 	const bays = facts.bays ?? [];
 	const more = (facts.count ?? bays.length) - bays.length;
-	return `${bays.join(', ')}${more > 0 ? ` and ${more} more` : ''}`;
-}
-
-function consequenceOf({ row, facts }: Item): string {
-	const left = daysLeft(facts.daysLeftLo, facts.daysLeftHi);
-	const { otherwise } = noticeWords(row.kind);
-	return left === null ? otherwise : `${otherwise}: ${left}`;
+	return `${bays.join(', ')}${more > 0 ? ` ${mailWords().and(more)}` : ''}`;
 }

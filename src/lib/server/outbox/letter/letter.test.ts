@@ -1,5 +1,6 @@
 import { inflateSync } from 'node:zlib';
 import { expect, test } from 'vitest';
+import { speaking } from '$lib/server/auth/language';
 import type { NoticeRow } from '$lib/server/store/queries/notice-letter';
 import { driftPlot, PLOT } from './drift-plot';
 import { drawHtml } from './html';
@@ -28,7 +29,8 @@ const row: NoticeRow = {
 		latDeg: 52.1,
 		lonDeg: 11.6
 	},
-	...{ siteDemo: 0, scheduleOn: 0, scheduleReasons: null, quietFromMin: 60, quietToMin: 300 }
+	...{ siteDemo: 0, scheduleOn: 0, scheduleReasons: null, quietFromMin: 60, quietToMin: 300 },
+	refreshState: null
 };
 const item = (more: Partial<NoticeRow> = {}): Item => ({
 	row: { ...row, ...more },
@@ -38,6 +40,7 @@ const item = (more: Partial<NoticeRow> = {}): Item => ({
 const wanted = (items: Item[]): LetterWanted => ({
 	...{ to: { name: 'Mads' }, site: { slug: 'tallow-yard', name: 'Tallow <Yard>' }, items },
 	...{ zone: 'UTC', nowMs: NOW, origin: 'https://keep.example', plotCid: 'p@lodekeep' },
+	markCid: 'm@lodekeep',
 	...{ acknowledgeUrl: 'https://keep.example/acknowledge?token=a', unsubscribeUrl: 'https://u' }
 });
 
@@ -62,11 +65,42 @@ test('it says enough to act on without signing in', () => {
 	expect(visit).toContain('a spare node of amr-18-16384');
 });
 
+test('in German the same mail is German, in subject, text and HTML', async () => {
+	const letter = await speaking('de', async () => await Promise.resolve(compose(wanted([item()]))));
+	expect(letter.subject).toBe('B07, Tallow <Yard>: Filmauffrischung fällig, noch 3 bis 6 Tage');
+	const text = drawText(letter);
+	expect(text).toContain('17 mG nicht erklärt, täglich 3,9 mG mehr');
+	expect(text).toContain('Wo  ');
+	expect(drawHtml(letter)).toContain('<html lang="de">');
+});
+
+test('whether a rule will do it tonight follows its hours, its reasons and what is under way', () => {
+	const said = (more: Partial<NoticeRow>, reasons = ['unexplained']) => {
+		const one = item({ scheduleOn: 1, scheduleReasons: 'unexplained', ...more });
+		const { lines } = compose(wanted([{ ...one, facts: { ...one.facts, reasons } }]));
+		return lines.find(({ label }) => label === 'Tonight')?.value;
+	};
+	expect(said({})).toContain('a rule will do it, 01:00 to 05:00');
+	expect(said({}, ['strong_field'])).toContain('not for this cause');
+	expect(said({ scheduleOn: 0 })).toContain('no rule will do it');
+	expect(said({ refreshState: 'asked' })).toContain('waits for somebody to approve');
+	expect(said({ refreshState: 'waiting' })).toBe('a film refresh is under way');
+});
+
+test('drift’s own cause is named; what came back says so', () => {
+	const one = item();
+	const { lines } = compose(wanted([{ ...one, facts: { cause: 'tilt', causeMg: 12 } }]));
+	expect(lines.find(({ label }) => label === 'Cause')?.value).toBe(
+		'consistent with a tilt of the node (12 mG)'
+	);
+	expect(compose(wanted([item({ times: 3 })])).news).toBe('It is back: this is time 3 of it.');
+});
+
 test('names are escaped in HTML, and nothing is loaded from outside', () => {
 	const html = drawHtml(compose(wanted([item()])));
 	expect(html).toContain('Tallow &lt;Yard&gt;');
 	expect(html).not.toContain('<Yard>');
-	expect(html.match(/src="([^"]*)"/g)).toEqual(['src="cid:p@lodekeep"']);
+	expect(html.match(/src="([^"]*)"/g)).toEqual(['src="cid:m@lodekeep"', 'src="cid:p@lodekeep"']);
 	expect(html).not.toMatch(/<(script|style|link)\b/);
 });
 

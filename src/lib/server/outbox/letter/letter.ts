@@ -1,7 +1,7 @@
 import { moment, zoneName } from '$lib/format/time';
 import { noticeWords } from '$lib/format/notice-words';
-import { count } from '$lib/format/words';
-import { headOf, linesOf, newsOf, type Item, type Line } from './item';
+import { mailWords } from '$lib/format/messages/mail';
+import { PULSED, headOf, linesOf, newsOf, type Item, type Line } from './item';
 
 /** Beyond these a mail says how many more there are: the sheet holds them all. */
 const LISTED = 30;
@@ -23,10 +23,15 @@ export interface LetterWanted {
 	unsubscribeUrl: string;
 	/** A plot goes with it under this name. */
 	plotCid: string | null;
+	/** Our mark at its head; null: in letters. */
+	markCid: string | null;
 }
 
 /** What a mail says, before it is drawn as HTML or as text. */
 export interface Letter {
+	/** 'en' or 'de', for the reader's program. */
+	lang: string;
+	markCid: string | null;
 	subject: string;
 	heading: string;
 	/** Under the heading: what has happened to it. */
@@ -46,26 +51,27 @@ export interface Letter {
 export function compose(wanted: LetterWanted): Letter {
 	const [first] = wanted.items;
 	const one = wanted.items.length === 1 && first !== undefined ? first : null;
-	const subject = subjectOf(wanted).slice(0, SUBJECT_MOST);
+	const said = mailWords();
 	return {
-		subject,
+		...{ lang: said.lang, markCid: wanted.markCid },
+		subject: subjectOf(wanted).slice(0, SUBJECT_MOST),
 		heading: one === null ? headingOfMany(wanted) : headOf(one, wanted.nowMs),
 		news: one === null ? newsOfMany(wanted.items) : newsOf(one),
 		lines: one === null ? [] : linesOf(one, wanted.nowMs),
 		groups: one === null ? groupsOf(wanted) : [],
 		more:
 			one === null && wanted.items.length > LISTED
-				? `and ${wanted.items.length - LISTED} more: see the sheet`
+				? said.andMore(wanted.items.length - LISTED)
 				: null,
 		plot:
 			wanted.plotCid === null || one === null ? null : { cid: wanted.plotCid, alt: plotWords(one) },
 		actions: actionsOf(wanted, one),
 		foot: footOf(wanted),
 		block: [
-			{ label: 'Site', value: wanted.site?.name ?? 'all of Lodekeep' },
-			{ label: 'Sheet', value: 'notices, by mail' },
+			{ label: said.label.site, value: wanted.site?.name ?? said.allOfLodekeep },
+			{ label: said.label.sheet, value: said.sheetName },
 			{
-				label: 'As of',
+				label: said.label.asOf,
 				value: `${moment(wanted.nowMs, wanted.zone, 0)} ${zoneName(wanted.nowMs, wanted.zone)}`
 			}
 		]
@@ -77,17 +83,18 @@ function subjectOf({ items, site, nowMs }: LetterWanted): string {
 	if (first === undefined) return 'Lodekeep';
 	const again = items.every(({ what }) => what === 'taken' || what === 'closed');
 	const urged = items.some(({ what }) => what === 'escalated');
-	const before = again ? 'Re: ' : urged ? 'Nobody has it: ' : '';
+	const said = mailWords();
+	const before = again ? said.reply : urged ? said.nobodyHasIt : '';
 	if (items.length === 1) return before + headOf(first, nowMs);
 	const word = noticeWords(first.row.kind).word;
 	const bays = items.flatMap(({ row }) => (row.kind === first.row.kind ? (row.bay ?? []) : []));
 	const named = bays.slice(0, NAMED_IN_SUBJECT).join(', ');
-	const at = named === '' ? '' : ` at ${named}${bays.length > NAMED_IN_SUBJECT ? ' …' : ''}`;
-	return `${before}${site?.name ?? 'Lodekeep'}: ${count(items.length, 'notice')}, ${word}${at}`;
+	const at = named === '' ? '' : said.at(`${named}${bays.length > NAMED_IN_SUBJECT ? ' …' : ''}`);
+	return `${before}${said.notices(site?.name ?? 'Lodekeep', items.length)}, ${word}${at}`;
 }
 
 const headingOfMany = ({ items, site }: LetterWanted): string =>
-	`${site?.name ?? 'Lodekeep'}: ${count(items.length, 'notice')}`;
+	mailWords().notices(site?.name ?? 'Lodekeep', items.length);
 
 function newsOfMany(items: readonly Item[]): string | null {
 	const news = new Set(items.map((item) => newsOf(item)));
@@ -105,34 +112,38 @@ function groupsOf({ items, nowMs }: LetterWanted): Letter['groups'] {
 		rows: own.map((item) => [
 			item.row.bay ?? headOf(item, nowMs),
 			item.row.bay === null ? '' : (item.row.zoneName ?? ''),
-			`since ${moment(item.row.sinceMs, item.zone, nowMs)}`,
-			`take by ${moment(item.row.deadlineMs, item.zone, nowMs)}`
+			mailWords().since(moment(item.row.sinceMs, item.zone, nowMs)),
+			mailWords().takeBy(moment(item.row.deadlineMs, item.zone, nowMs))
 		])
 	}));
 }
 
-function plotWords({ facts }: Item): string {
-	const now = facts.unexplainedMg === undefined ? '' : `, now ${facts.unexplainedMg} mG`;
-	return `Unexplained drift over the last days${now}, against its limits`;
-}
+const plotWords = ({ facts }: Item): string => mailWords().plot(facts.unexplainedMg ?? null);
 
 function actionsOf(wanted: LetterWanted, one: Item | null): Letter['actions'] {
 	const { origin, site, acknowledgeUrl } = wanted;
 	const path = site === null ? '/notices' : `/sites/${site.slug}/notices`;
-	const actions = [{ text: 'Open the sheet', href: `${origin}${path}`, main: true }];
+	const said = mailWords();
+	const actions = [{ text: said.openSheet, href: `${origin}${path}`, main: true }];
+	if (site !== null && wanted.items.some(({ row }) => PULSED.test(row.kinds)))
+		actions.push({
+			text: said.openRefreshes,
+			href: `${origin}/sites/${site.slug}/refreshes`,
+			main: false
+		});
 	if (one !== null && one.row.bay !== null && site !== null)
 		actions.push({
-			text: `Dossier of ${one.row.bay}`,
+			text: said.dossier(one.row.bay),
 			href: `${origin}/sites/${site.slug}/bays/${encodeURIComponent(one.row.bay)}`,
 			main: false
 		});
-	const takes = one === null ? 'I take them' : 'I take it';
+	const takes = one === null ? said.takeMany : said.takeOne;
 	if (acknowledgeUrl !== null) actions.unshift({ text: takes, href: acknowledgeUrl, main: true });
 	return actions;
 }
 
 const footOf = ({ to, origin, unsubscribeUrl }: LetterWanted): Letter['foot'] => [
-	{ text: `To ${to.name}, who has this site.` },
-	{ text: 'What is mailed, and when', href: `${origin}/mail-settings` },
-	{ text: 'No more mail of notices', href: unsubscribeUrl }
+	{ text: mailWords().to(to.name) },
+	{ text: mailWords().settings, href: `${origin}/mail-settings` },
+	{ text: mailWords().noMore, href: unsubscribeUrl }
 ];

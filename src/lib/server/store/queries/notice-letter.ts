@@ -41,6 +41,8 @@ export interface NoticeRow {
 	scheduleReasons: string | null;
 	quietFromMin: number | null;
 	quietToMin: number | null;
+	/** Of the film refresh that is open for the node; null = none. */
+	refreshState: string | null;
 }
 
 const ROWS = `SELECT n.id, n.kind, n.kinds, n.awaits_proof AS awaitsProof, n.times, n.since_ms AS sinceMs,
@@ -50,14 +52,16 @@ const ROWS = `SELECT n.id, n.kind, n.kinds, n.awaits_proof AS awaitsProof, n.tim
 	n.node_id AS nodeId, d.serial, d.profile_code AS profile, b.code AS bay, b.personal, b.geometry,
 	z.code AS zone, z.name AS zoneName, s.id AS siteId, s.slug AS site, s.name AS siteName, s.timezone,
 	s.lat_deg AS latDeg, s.lon_deg AS lonDeg, s.demo AS siteDemo, r.schedule_on AS scheduleOn,
-	r.schedule_reasons AS scheduleReasons, s.quiet_from_min AS quietFromMin, s.quiet_to_min AS quietToMin
+	r.schedule_reasons AS scheduleReasons, s.quiet_from_min AS quietFromMin, s.quiet_to_min AS quietToMin,
+	o.state AS refreshState
 	FROM notice n
 	LEFT JOIN site s ON s.id = n.site_id
 	LEFT JOIN node d ON d.id = n.node_id
 	LEFT JOIN bay b ON b.id = n.bay_id
 	LEFT JOIN zone z ON z.id = b.zone_id
 	LEFT JOIN person t ON t.id = n.taken_by
-	LEFT JOIN refresh_settings r ON r.site_id = s.id`;
+	LEFT JOIN refresh_settings r ON r.site_id = s.id
+	LEFT JOIN refresh o ON o.open_node_id = n.node_id`;
 
 export async function byIds(sql: Sql, ids: readonly number[]): Promise<NoticeRow[]> {
 	if (ids.length === 0) return [];
