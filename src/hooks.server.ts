@@ -1,6 +1,7 @@
 import { randomUUID } from 'node:crypto';
 import { SvelteKitAuth } from '@auth/sveltekit';
 import { redirect, type Handle, type HandleServerError, type ServerInit } from '@sveltejs/kit';
+import { errorWords } from '$lib/format/messages/error';
 import { building } from '$app/environment';
 import { preflight } from '$lib/server/api/cors';
 import { isDatabaseAway } from '$lib/server/api/database-away';
@@ -163,5 +164,5 @@ export const handleError: HandleServerError = ({ error, event, status, message }
 	// The path of a wall link is its secret.
 	const path = event.url.pathname.replace(/^\/wall\/[^/]+/, '/wall/…');
 	if (!building) instance().log.error({ reference, path, stack }, 'unexpected');
-	return { message: 'Something broke here.', reference };
+	return { message: errorWords().broke, reference };
 };

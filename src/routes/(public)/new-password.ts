@@ -1,3 +1,4 @@
+import { publicWords } from '$lib/format/messages/public';
 import { z } from 'zod';
 
 /** The form of a new password, typed twice. */
@@ -8,12 +9,16 @@ export const newPassword = z
 		again: z.string().max(1000)
 	})
 	.refine((form) => form.password === form.again, {
-		message: 'The two passwords differ.',
+		error: () => publicWords().trouble.differ,
 		path: ['again']
 	});
 
 export const troubleOf = (error: z.ZodError): string =>
-	error.issues[0]?.message ?? 'Something is missing.';
+	error.issues[0]?.message ?? publicWords().trouble.missing;
 /** Why a password was not taken, as a sentence. */
-export const passwordSentence = (why: string): string =>
-	`The password must have ${why}.`.replace('must have not', 'must not be');
+export function passwordSentence(why: string): string {
+	const said = publicWords().trouble;
+	const [figure] = /\d+/.exec(why) ?? [];
+	if (figure === undefined) return why.startsWith('not') ? said.own : said.different;
+	return why.startsWith('at most') ? said.most(figure) : said.least(figure);
+}

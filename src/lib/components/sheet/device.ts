@@ -1,22 +1,17 @@
 import { dev } from '$app/environment';
 
-/** What this browser can do for opening without a connection, in words. */
+/** What this browser can do for opening without a connection. */
 export interface DeviceState {
 	/** Installing and opening without a connection are possible here. */
 	ready: boolean;
-	/** What is missing, as a sentence; null when nothing is. */
-	missing: string | null;
+	/** null when nothing is missing; `worker`: it has no service worker (a private window?). */
+	missing: 'https' | 'worker' | null;
 }
 
 export function deviceState(): DeviceState {
 	if (typeof window === 'undefined') return { ready: false, missing: null };
-	if (!window.isSecureContext)
-		return {
-			ready: false,
-			missing: `This page came over http from ${location.host}. Installing Lodekeep and opening it without a connection need https there (TLS_CERT and TLS_KEY, or a proxy that ends TLS).`
-		};
-	if (!('serviceWorker' in navigator))
-		return { ready: false, missing: 'This browser has no service worker (a private window?).' };
+	if (!window.isSecureContext) return { ready: false, missing: 'https' };
+	if (!('serviceWorker' in navigator)) return { ready: false, missing: 'worker' };
 	return { ready: true, missing: null };
 }
 

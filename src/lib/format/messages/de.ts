@@ -66,7 +66,8 @@ export const de: Messages = {
 		site: ['Standort', 'Standorte'],
 		vehicle: ['Fahrzeug', 'Fahrzeuge'],
 		doubt: ['Zweifel', 'Zweifel'],
-		node: ['Knoten', 'Knoten']
+		node: ['Knoten', 'Knoten'],
+		person: ['Person', 'Personen']
 	},
 	duration: {
 		second: 's',

@@ -70,7 +70,8 @@ export const en = {
 		site: ['site', 'sites'],
 		vehicle: ['vehicle', 'vehicles'],
 		doubt: ['doubt', 'doubts'],
-		node: ['node', 'nodes']
+		node: ['node', 'nodes'],
+		person: ['person', 'people']
 	},
 	duration: {
 		second: 's',

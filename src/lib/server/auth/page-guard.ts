@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { error } from '@sveltejs/kit';
 import type { Role } from '$lib/schemas/roles';
 import type { Reach } from './reach';
@@ -8,9 +9,9 @@ export function requireRole(
 	roles: readonly Role[]
 ): Reach & { role: Role } {
 	const { reach } = locals;
-	if (reach?.role == null) error(401, 'Sign in first.');
+	if (reach?.role == null) error(401, errorWords().signIn);
 	if (reach.mustChangePassword || !roles.includes(reach.role)) {
-		error(403, 'Ask an admin if you need it.');
+		error(403, errorWords().askAdmin);
 	}
 	return { ...reach, role: reach.role };
 }

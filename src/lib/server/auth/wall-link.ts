@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { error, type RequestEvent } from '@sveltejs/kit';
 import { instance } from '$lib/server/api/instance';
 import { POLICIES } from '$lib/server/api/rate-limit';
@@ -26,8 +27,8 @@ export async function requireWall(
 		: null;
 	if (found !== null) return found;
 	const verdict = app.limiter.take(clientAddress(event), POLICIES.stranger, nowMs);
-	if (!verdict.allowed) error(429, 'Too many attempts. Try again in a minute.');
-	error(404, 'This wall link is not known, or it was revoked, or its time is over.');
+	if (!verdict.allowed) error(429, errorWords().attempts);
+	error(404, errorWords().noWall);
 }
 
 /** Nothing of a link's address is kept or sent on. */

@@ -1,3 +1,4 @@
+import { connectionsWords } from '$lib/format/messages/connections';
 import { SCOPES, SCOPES_OF_ROLE } from '$lib/schemas/roles';
 import { instance } from '$lib/server/api/instance';
 import { makeKey } from '$lib/server/auth/make-key';
@@ -29,10 +30,15 @@ export const load: PageServerLoad = async ({ locals }) => {
 	};
 };
 
+const trouble = () => connectionsWords().trouble;
 const wanted = z.object({
-	name: z.string().trim().min(1, 'A name is needed.').max(120),
-	scopes: z.array(z.enum(SCOPES)).min(1, 'Choose at least one scope.'),
-	sites: z.union([z.literal('all'), z.array(z.string()).min(1, 'Choose at least one site.')]),
+	name: z
+		.string()
+		.trim()
+		.min(1, { error: () => trouble().name })
+		.max(120),
+	scopes: z.array(z.enum(SCOPES)).min(1, { error: () => trouble().scope }),
+	sites: z.union([z.literal('all'), z.array(z.string()).min(1, { error: () => trouble().site })]),
 	origins: z.string().max(2000),
 	expires: z.union([z.literal(''), z.iso.date()])
 });
@@ -49,11 +55,11 @@ export const actions: Actions = {
 			expires: data.get('expires') ?? ''
 		});
 		if (!form.success)
-			return fail(400, { trouble: form.error.issues[0]?.message ?? 'Incomplete.' });
+			return fail(400, { trouble: form.error.issues[0]?.message ?? trouble().incomplete });
 		// A key can do no more than its maker.
 		const given = SCOPES_OF_ROLE[reach.role];
 		const beyond = form.data.scopes.find((scope) => !given.includes(scope));
-		if (beyond !== undefined) return fail(403, { trouble: `You cannot give ‘${beyond}’.` });
+		if (beyond !== undefined) return fail(403, { trouble: trouble().beyond(beyond) });
 		const app = instance();
 		const sites = await listed(app.store.db, 'all');
 		const chosen = form.data.sites;
@@ -64,7 +70,7 @@ export const actions: Actions = {
 						const site = sites.find((s) => s.slug === slug);
 						return site === undefined || !reaches(reach, site.id);
 					});
-		if (out) return fail(403, { trouble: 'You cannot give sites that are not yours.' });
+		if (out) return fail(403, { trouble: trouble().notYours });
 		const made = await makeKey(app.store.db, {
 			name: form.data.name,
 			scopes: form.data.scopes,
@@ -87,7 +93,7 @@ export const actions: Actions = {
 		const id = Number((await request.formData()).get('id'));
 		const app = instance();
 		const key = (await keys.list(app.store.db)).find((k) => k.id === id);
-		if (key === undefined || !visible(reach, key)) return fail(404, { trouble: 'No such key.' });
+		if (key === undefined || !visible(reach, key)) return fail(404, { trouble: trouble().noKey });
 		await keys.revoke(app.store.db, id, Date.now());
 		await audit.note(
 			app.store.db,

@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { isLanguage } from '$lib/format/messages';
 import { instance } from '$lib/server/api/instance';
 import { languageOf, setLanguage } from '$lib/server/auth/language';
@@ -12,7 +13,7 @@ export const actions: Actions = {
 	/** Kept with the person, and in this browser for the sheets before sign-in. */
 	language: async ({ locals, request, cookies }) => {
 		const personId = locals.reach === null ? null : personIdOf(locals.reach);
-		if (personId === null) error(401, 'Sign in first.');
+		if (personId === null) error(401, errorWords().signIn);
 		const wanted = (await request.formData()).get('language');
 		if (typeof wanted !== 'string' || !isLanguage(wanted))
 			return fail(400, { trouble: 'language: must be en or de.' });

@@ -1,3 +1,4 @@
+import { peopleWords } from '$lib/format/messages/people';
 import { ROLES } from '$lib/schemas/roles';
 import { instance } from '$lib/server/api/instance';
 import { invite, inviteAgain } from '$lib/server/auth/invite';
@@ -17,18 +18,23 @@ export const load: PageServerLoad = async ({ locals }) => {
 	return { people: all, allSites: sites, me: personIdOf(reach), nowMs: Date.now() };
 };
 
+const say = () => peopleWords().trouble;
 const sites = z.union([
 	z.literal('all'),
-	z.array(z.coerce.number().int().positive()).min(1, 'Choose at least one site, or all.')
+	z.array(z.coerce.number().int().positive()).min(1, { error: () => say().sites })
 ]);
 const reachForm = z.object({ role: z.enum(ROLES), sites });
 const inviteForm = reachForm.extend({
-	email: z.email('This is no e-mail address.').max(254),
-	name: z.string().trim().min(1, 'A name is needed.').max(120),
+	email: z.email({ error: () => say().email }).max(254),
+	name: z
+		.string()
+		.trim()
+		.min(1, { error: () => say().name })
+		.max(120),
 	initials: z
 		.string()
 		.trim()
-		.regex(/^\p{L}{1,4}$/u, 'Initials are 1 to 4 letters.')
+		.regex(/^\p{L}{1,4}$/u, { error: () => say().initials })
 });
 
 async function read(event: RequestEvent) {
@@ -41,7 +47,7 @@ async function read(event: RequestEvent) {
 	return { by, fields, id: Number(data.get('id')), me: personIdOf(by) };
 }
 const trouble = (text: string, form: string) => fail(400, { trouble: text, form });
-const issue = (error: z.ZodError) => error.issues[0]?.message ?? 'Something is missing.';
+const issue = (error: z.ZodError) => error.issues[0]?.message ?? say().missing;
 
 /** A change of somebody's reach, noted in the audit trail; whoever does it cannot shut himself out. */
 async function change(
@@ -50,7 +56,7 @@ async function change(
 	work: (db: people.Db, id: number) => Promise<void>
 ) {
 	const { by, id, me } = await read(event);
-	if (id === me) return trouble('Your own access is changed by another admin.', 'person');
+	if (id === me) return trouble(say().own, 'person');
 	const app = instance();
 	await app.store.db.transaction(async (tx) => {
 		const person = await people.byId(tx, id);
@@ -68,19 +74,19 @@ export const actions: Actions = {
 		const form = inviteForm.safeParse(fields);
 		if (!form.success) return trouble(issue(form.error), 'invite');
 		const made = await invite({ actor: by.actor, name: by.name }, form.data);
-		if (!made.ok) return trouble('Somebody with this address is here already.', 'invite');
+		if (!made.ok) return trouble(say().here, 'invite');
 		return { done: true, invited: form.data.email };
 	},
 	again: async (event) => {
 		const { by, id } = await read(event);
 		const sent = await inviteAgain({ actor: by.actor, name: by.name }, id);
-		return sent ? { done: true } : trouble('This invitation was taken up already.', 'person');
+		return sent ? { done: true } : trouble(say().takenUp, 'person');
 	},
 	reach: async (event) => {
 		const { by, fields, id, me } = await read(event);
 		const form = reachForm.safeParse(fields);
 		if (!form.success) return trouble(issue(form.error), 'person');
-		if (id === me) return trouble('Your own access is changed by another admin.', 'person');
+		if (id === me) return trouble(say().own, 'person');
 		const app = instance();
 		await app.store.db.transaction(async (tx) => {
 			await people.setReach(tx, id, form.data);

@@ -1,3 +1,4 @@
+import { wallsWords } from '$lib/format/messages/walls';
 import { instance } from '$lib/server/api/instance';
 import { requireRole } from '$lib/server/auth/page-guard';
 import { personIdOf, reaches, type Reach } from '$lib/server/auth/reach';
@@ -26,16 +27,24 @@ export const load: PageServerLoad = async ({ locals }) => {
 	};
 };
 
+const trouble = () => wallsWords().trouble;
 const wanted = z.object({
-	name: z.string().trim().min(1, 'Say where the screen hangs.').max(120),
-	sites: z.array(z.string()).min(1, 'Choose at least one site.').max(50),
+	name: z
+		.string()
+		.trim()
+		.min(1, { error: () => trouble().name })
+		.max(120),
+	sites: z
+		.array(z.string())
+		.min(1, { error: () => trouble().site })
+		.max(50),
 	turnS: z.coerce
-		.number({ error: 'Turning takes whole seconds, 10 to 3600, or 0 for none.' })
+		.number({ error: () => trouble().turn })
 		.int()
 		.refine((s) => s === 0 || (s >= 10 && s <= 3600), {
-			error: 'Turning takes whole seconds, 10 to 3600, or 0 for none.'
+			error: () => trouble().turn
 		}),
-	expires: z.union([z.literal(''), z.iso.date()], { error: 'The end must be a day.' })
+	expires: z.union([z.literal(''), z.iso.date()], { error: () => trouble().day })
 });
 
 export const actions: Actions = {
@@ -49,16 +58,16 @@ export const actions: Actions = {
 			expires: data.get('expires') ?? ''
 		});
 		if (!form.success)
-			return fail(400, { trouble: form.error.issues[0]?.message ?? 'Incomplete.' });
+			return fail(400, { trouble: form.error.issues[0]?.message ?? trouble().incomplete });
 		const app = instance();
 		const nowMs = Date.now();
 		const own = await listed(app.store.db, reach.sites);
 		const chosen = own.filter(({ slug }) => form.data.sites.includes(slug));
 		if (chosen.length !== new Set(form.data.sites).size)
-			return fail(403, { trouble: 'A wall shows only sites that are yours.' });
+			return fail(403, { trouble: trouble().notYours });
 		const expiresAtMs = form.data.expires === '' ? null : Date.parse(form.data.expires);
 		if (expiresAtMs !== null && expiresAtMs <= nowMs)
-			return fail(400, { trouble: 'The end must lie ahead.' });
+			return fail(400, { trouble: trouble().ahead });
 		const ticket = newTicket();
 		await links.create(
 			app.store.db,
@@ -86,7 +95,7 @@ export const actions: Actions = {
 		const app = instance();
 		const link = (await links.list(app.store.db)).find((one) => one.id === id);
 		if (link === undefined || !visible(reach, link))
-			return fail(404, { trouble: 'There is no such wall link.' });
+			return fail(404, { trouble: trouble().noLink });
 		const nowMs = Date.now();
 		await links.revoke(app.store.db, id, nowMs);
 		await audit.note(

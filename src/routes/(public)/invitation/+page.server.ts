@@ -1,3 +1,4 @@
+import { publicWords } from '$lib/format/messages/public';
 import { invitationHolder, takeTicket } from '$lib/server/auth/invite';
 import { fail, redirect } from '@sveltejs/kit';
 import { newPassword, passwordSentence, troubleOf } from '../new-password';
@@ -15,7 +16,7 @@ export const actions: Actions = {
 		if (!given.success) return fail(400, { trouble: troubleOf(given.error) });
 		const taken = await takeTicket(event, 'invitation', given.data);
 		if (taken.ok) redirect(303, '/');
-		if (taken.reason === 'ticket') return fail(410, { trouble: 'This link is used up or over.' });
+		if (taken.reason === 'ticket') return fail(410, { trouble: publicWords().usedUp });
 		return fail(400, { trouble: passwordSentence(taken.why) });
 	}
 };

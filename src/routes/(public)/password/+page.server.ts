@@ -1,4 +1,6 @@
 import { changePassword } from '$lib/server/auth/change-password';
+import { words } from '$lib/format/messages';
+import { publicWords } from '$lib/format/messages/public';
 import { duration } from '$lib/format/duration';
 import { fail, redirect } from '@sveltejs/kit';
 import { newPassword, passwordSentence, troubleOf } from '../new-password';
@@ -9,11 +11,7 @@ export const load: PageServerLoad = ({ locals }) => {
 	return { name: locals.reach.name, must: locals.reach.mustChangePassword };
 };
 
-const TROUBLES = {
-	signed_out: 'You are signed out.',
-	wrong: 'The present password is another one.',
-	same: 'The new password is the present one.'
-} as const;
+const TROUBLES = { signed_out: 'signedOut', wrong: 'wrong', same: 'same' } as const;
 
 export const actions: Actions = {
 	default: async (event) => {
@@ -28,10 +26,12 @@ export const actions: Actions = {
 		if (result.ok) redirect(303, '/');
 		if (result.reason === 'throttled') {
 			const wait = duration(result.retryAfterS * 1000);
-			return fail(429, { trouble: `Too many attempts. Try again in ${wait}.` });
+			return fail(429, { trouble: words().signIn.throttled(wait) });
 		}
 		const trouble =
-			result.reason === 'password' ? passwordSentence(result.why) : TROUBLES[result.reason];
+			result.reason === 'password'
+				? passwordSentence(result.why)
+				: publicWords().trouble[TROUBLES[result.reason]];
 		return fail(400, { trouble });
 	}
 };

@@ -1,3 +1,4 @@
+import { publicWords } from '$lib/format/messages/public';
 import { invitationHolder, takeTicket } from '$lib/server/auth/invite';
 import { askReset } from '$lib/server/auth/reset';
 import { fail, redirect } from '@sveltejs/kit';
@@ -12,7 +13,7 @@ export const load: PageServerLoad = async ({ url, setHeaders }) => {
 	return { ticket, holder: await invitationHolder(ticket, 'reset') };
 };
 
-const address = z.object({ email: z.email('This is no e-mail address.').max(254) });
+const address = z.object({ email: z.email({ error: () => publicWords().trouble.email }).max(254) });
 
 export const actions: Actions = {
 	ask: async (event) => {
@@ -26,8 +27,7 @@ export const actions: Actions = {
 		if (!given.success) return fail(400, { trouble: troubleOf(given.error), asked: false });
 		const taken = await takeTicket(event, 'reset', given.data);
 		if (taken.ok) redirect(303, '/');
-		const trouble =
-			taken.reason === 'ticket' ? 'This link is used up or over.' : passwordSentence(taken.why);
+		const trouble = taken.reason === 'ticket' ? publicWords().usedUp : passwordSentence(taken.why);
 		return fail(taken.reason === 'ticket' ? 410 : 400, { trouble, asked: false });
 	}
 };

@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { error } from '@sveltejs/kit';
 import type { LayoutServerLoad } from './$types';
 
@@ -5,6 +6,6 @@ import type { LayoutServerLoad } from './$types';
 export const load: LayoutServerLoad = async ({ params, parent }) => {
 	const { sites } = await parent();
 	const site = sites.find(({ slug }) => slug === params.site);
-	if (site === undefined) error(404, 'This site is not there, or not among your sites.');
+	if (site === undefined) error(404, errorWords().noSite);
 	return { site };
 };

@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { wholeList } from '$lib/components/live/bay-poll';
 import { instance } from '$lib/server/api/instance';
 import { ringOf } from '$lib/server/api/outline';
@@ -18,8 +19,7 @@ export const load: PageServerLoad = async ({ locals, params, depends, fetch }) =
 	const site = (await listed(db, reach?.sites ?? new Set())).find(
 		({ slug }) => slug === params.site
 	);
-	if (reach === null || site === undefined)
-		error(404, 'This site is not there, or not among your sites.');
+	if (reach === null || site === undefined) error(404, errorWords().noSite);
 	const [drawn, first] = await Promise.all([outlines(db, site.id), wholeList(site.slug, fetch)]);
 	return {
 		zones: drawn.zones,

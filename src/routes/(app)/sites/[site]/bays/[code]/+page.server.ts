@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { ask, AskError } from '$lib/components/live/ask';
 import type { BayDetail } from '$lib/components/node/types';
 import { error } from '@sveltejs/kit';
@@ -9,7 +10,7 @@ export const load: PageServerLoad = async ({ params, fetch }) => {
 		return { bay: (await ask<BayDetail>(path, {}, fetch)).body };
 	} catch (problem) {
 		if (problem instanceof AskError && problem.status === 404)
-			error(404, `There is no bay ${params.code} here, or not among your sites.`);
+			error(404, errorWords().noBay(params.code));
 		throw problem;
 	}
 };
