@@ -6,6 +6,7 @@ import { spec } from './v1/spec';
 
 const everyone = ['operator', 'maintenance', 'integrator', 'admin'] as const;
 const everyday = ['operator', 'maintenance', 'admin'] as const;
+const fitters = ['maintenance', 'admin'] as const;
 const reason = z.string().trim().min(1).max(400);
 
 /** Rules of the routes that only the application's own pages ask; no key reaches them (scope null). */
@@ -35,14 +36,14 @@ export const DESK_ROUTES = {
 	take: spec({
 		summary: 'Take a request or hand it back',
 		scope: null,
-		roles: everyday,
+		roles: fitters,
 		body: z.strictObject({ hold: z.boolean() }),
 		status: 204
 	}),
 	end: spec({
 		summary: 'End a request with what was done',
 		scope: null,
-		roles: everyday,
+		roles: fitters,
 		body: z.strictObject({ outcome: reason }),
 		status: 204
 	}),

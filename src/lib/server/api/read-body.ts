@@ -55,7 +55,7 @@ function isEmpty({ body, headers }: Request): boolean {
 }
 
 /** null when it is longer than `limit`, or longer than the server as a whole reads. */
-async function readBytes(request: Request, limit: number): Promise<Buffer | null> {
+export async function readBytes(request: Request, limit: number): Promise<Buffer | null> {
 	const chunks: Uint8Array[] = [];
 	let length = 0;
 	const reader = request.body?.getReader();

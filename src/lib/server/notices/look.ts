@@ -5,7 +5,10 @@ import * as changes from '$lib/server/store/queries/changes';
 import * as live from '$lib/server/store/queries/live';
 import * as queries from '$lib/server/store/queries/notice-look';
 import * as notices from '$lib/server/store/queries/notices';
+import * as visits from '$lib/server/store/queries/visits';
 import { transaction } from '$lib/server/store/transaction';
+import { askByRule } from '$lib/server/visits/ask-by-rule';
+import { VISIT_PARAMS } from '$lib/server/visits/params';
 import { apply, type Applied } from './apply';
 import type { DriftFacts } from './drift-facts';
 import { healedLately } from './healed';
@@ -94,11 +97,12 @@ async function judge(sql: Sql, look: Look, site: queries.SiteToLook): Promise<Ap
 		stormsOpen: new Set(rows.flatMap(({ about }) => stormKey(about, site.id))),
 		open: new Set(rows.map(({ about }) => about))
 	});
+	const seenTo = await visits.seenToSince(sql, site.id, nowMs - VISIT_PARAMS.restMs);
 	const nodeIds = rows.flatMap(({ nodeId }) => nodeId ?? []);
 	const gone = await queries.gone(sql, nodeIds);
 	const steps = reconcile(
 		rows.map((row) => ({ ...row, kinds: kindsOf(row.kinds), awaitsProof: row.awaitsProof === 1 })),
-		subjects,
+		subjects.filter((subject) => !rests(subject, rows, seenTo)),
 		{
 			provedAtMs: new Map(
 				proofs
@@ -117,8 +121,18 @@ async function judge(sql: Sql, look: Look, site: queries.SiteToLook): Promise<Ap
 			{ ...row, kinds: kindsOf(row.kinds), awaitsProof: row.awaitsProof === 1 }
 		])
 	);
-	return await apply(sql, ground, steps, open);
+	const applied = await apply(sql, ground, steps, open);
+	await askByRule(sql, site.id, nowMs);
+	return applied;
 }
+
+/** Where somebody has just been, what still shows is given time before it is told anew. */
+const rests = (
+	{ nodeId, about }: { nodeId: number | null; about: string },
+	open: readonly { about: string }[],
+	seenTo: ReadonlySet<number>
+): boolean =>
+	nodeId !== null && seenTo.has(nodeId) && !open.some((notice) => notice.about === about);
 
 const DRIFTING = /drifting|refresh_due/;
 

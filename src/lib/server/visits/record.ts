@@ -49,7 +49,8 @@ export async function record(sql: Sql, r: Recording, nowMs: number): Promise<Rec
 	if (r.body.kind === 'outcome' && !added) {
 		const did = { visitId: r.visitId, outcome: r.body.code, note: r.body.text };
 		await close(sql, { stop, did, me: r.me, madeAtMs }, nowMs);
-		await settle(sql, open, did, nowMs);
+		const text = `visit ${did.visitId}: ${outcomeText(did.outcome, did.note)}`;
+		await settle(sql, open, { text, outcome: did.outcome }, nowMs);
 	}
 	return { ok: true, verdict: added ? 'added' : 'taken', again: false };
 }

@@ -39,14 +39,13 @@ export async function lockNotices(sql: Sql, bayId: number): Promise<notices.Open
 export async function settle(
 	sql: Sql,
 	open: readonly notices.OpenRow[],
-	did: { visitId: number; outcome: VisitOutcome; note: string },
+	did: { text: string; outcome: VisitOutcome },
 	nowMs: number
 ): Promise<number> {
-	const text = `visit ${did.visitId}: ${outcomeText(did.outcome, did.note)}`;
 	const over = endsRequest(did.outcome) ? open.filter(({ awaitsProof }) => awaitsProof === 0) : [];
 	await notices.enter(
 		sql,
-		open.map(({ id }) => ({ noticeId: id, what: 'comment' as const, detail: text })),
+		open.map(({ id }) => ({ noticeId: id, what: 'comment' as const, detail: did.text })),
 		nowMs
 	);
 	const ids = over.map(({ id }) => id);

@@ -1,4 +1,4 @@
-import { and, desc, eq, inArray, lt } from 'drizzle-orm';
+import { and, desc, eq, inArray, isNotNull, lt } from 'drizzle-orm';
 import {
 	act,
 	boot,
@@ -8,7 +8,8 @@ import {
 	node,
 	pulse,
 	reference,
-	visitRequest
+	visitRequest,
+	visitStop
 } from '../schema';
 import type { Db } from './people';
 
@@ -51,7 +52,7 @@ export async function timeline(
 }
 
 async function bayRows(db: Db, bayId: number, beforeMs: number, limit: number) {
-	const [events, acts, closures, requests] = await Promise.all([
+	const [events, acts, closures, requests, stops] = await Promise.all([
 		db
 			.select()
 			.from(event)
@@ -65,7 +66,19 @@ async function bayRows(db: Db, bayId: number, beforeMs: number, limit: number) {
 			.orderBy(desc(act.recordedAtMs))
 			.limit(limit),
 		db.select().from(closure).where(eq(closure.bayId, bayId)).limit(limit),
-		db.select().from(visitRequest).where(eq(visitRequest.bayId, bayId)).limit(limit)
+		db
+			.select()
+			.from(visitRequest)
+			.where(eq(visitRequest.bayId, bayId))
+			.orderBy(desc(visitRequest.askedAtMs))
+			.limit(limit),
+		db
+			.select({ stop: visitStop, requestId: visitRequest.id })
+			.from(visitStop)
+			.innerJoin(visitRequest, eq(visitRequest.id, visitStop.requestId))
+			.where(and(eq(visitRequest.bayId, bayId), isNotNull(visitStop.outcome)))
+			.orderBy(desc(visitStop.endedAtMs))
+			.limit(limit)
 	]);
 	return [
 		...events.map((e) => ({
@@ -100,20 +113,26 @@ async function bayRows(db: Db, bayId: number, beforeMs: number, limit: number) {
 				},
 				detail: { reason: r.reason }
 			},
-			...(r.endedAtMs === null
+			...(r.endedAtMs === null ||
+			stops.some(({ stop, requestId }) => requestId === r.id && stop.recordedAtMs === r.endedAtMs)
 				? []
 				: [
 						{
 							...{
 								atMs: r.endedAtMs,
 								what: 'request_end',
-								by: `person:${r.endedBy}`,
+								by: r.endedBy === null ? null : `person:${r.endedBy}`,
 								serial: null
 							},
 							detail: { outcome: r.outcome }
 						}
 					])
-		])
+		]),
+		...stops.map(({ stop }) => ({
+			...{ atMs: stop.endedAtMs ?? 0, what: 'visit', serial: null },
+			by: stop.endedBy === null ? null : `person:${stop.endedBy}`,
+			detail: { visit: stop.visitId, outcome: stop.outcome, note: stop.note }
+		}))
 	].filter((row) => row.atMs < beforeMs);
 }
 

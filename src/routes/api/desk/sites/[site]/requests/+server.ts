@@ -7,12 +7,14 @@ import { personIdOf } from '$lib/server/auth/reach';
 import { enqueueMail } from '$lib/server/outbox/enqueue';
 import { byCode } from '$lib/server/store/queries/bays';
 import { openRequests } from '$lib/server/store/queries/desk-looks';
-import * as requests from '$lib/server/store/queries/desk-requests';
+import { fitters } from '$lib/server/store/queries/desk-requests';
 import { ofBay } from '$lib/server/store/queries/nodes';
+import { ask } from '$lib/server/visits/ask';
 
+/** Integrators' plans ask too, and see nothing of it. */
 export const GET = siteRoute(DESK_ROUTES.requests, async ({ app, site, reach }) => {
 	const me = personIdOf(reach);
-	const rows = await openRequests(app.store.db, site.id);
+	const rows = reach.role === 'integrator' ? [] : await openRequests(app.store.db, site.id);
 	return ok({
 		items: rows.map((row) => ({
 			id: row.id,
@@ -27,28 +29,23 @@ export const GET = siteRoute(DESK_ROUTES.requests, async ({ app, site, reach }) 
 	});
 });
 
-/** One open request a bay; everybody who does maintenance there gets a mail. */
+/** One open request a bay, a person's wish is added to a rule's; maintenance there gets a mail. */
 export const POST = siteRoute(DESK_ROUTES.request, async (ctx) => {
 	const { app, site, reach, body, nowMs, event } = ctx;
 	const askedBy = personIdOf(reach);
 	if (askedBy === null) return problem(403, 'Only a person asks for somebody.');
-	const answer = await ctx.write(async ({ db }) => {
+	const answer = await ctx.write(async ({ db, sql }) => {
 		const bay = await byCode(db, site.id, body.bay);
 		if (bay === null) return problem(404, `There is no bay ${body.bay}.`);
-		if ((await requests.openOfBay(db, bay.id)) !== null) {
-			return problem(409, `Somebody is sent for already to ${body.bay}.`);
-		}
 		const node = await ofBay(db, bay.id);
-		const id = await requests.create(db, {
-			siteId: site.id,
-			bayId: bay.id,
-			nodeId: node?.id ?? null,
-			reason: body.reason,
-			askedBy,
-			askedAtMs: nowMs
-		});
-		const link = `${app.config.origin ?? event.url.origin}/sites/${site.slug}/bays/${body.bay}`;
-		for (const to of await requests.fitters(db, site.id)) {
+		const id = await ask(
+			sql,
+			{ siteId: site.id, bayId: bay.id, nodeId: node?.id ?? null, reason: body.reason, askedBy },
+			nowMs
+		);
+		if (id === null) return problem(409, `Somebody is sent for already to ${body.bay}.`);
+		const link = `${app.config.origin ?? event.url.origin}/sites/${site.slug}/visits`;
+		for (const to of await fitters(db, site.id)) {
 			await enqueueMail(
 				db,
 				app.secret,

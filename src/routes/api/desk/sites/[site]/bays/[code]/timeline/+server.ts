@@ -16,8 +16,12 @@ export const GET = siteRoute(
 		if (bay === null) return problem(404, 'There is no such bay.');
 		const rows = await timeline(app.store.db, bay.id, query.before ?? nowMs + 60_000, PAGE);
 		const name = await namesFor(app, reach, nowMs);
+		// Integrators see nothing of who was sent for and of visits.
+		const may = reach.role !== 'integrator';
 		return ok({
-			items: rows.map((row) => ({ ...row, by: name(row.by, row.atMs) })),
+			items: rows
+				.filter(({ what }) => may || !/^(request|visit)/.test(what))
+				.map((row) => ({ ...row, by: name(row.by, row.atMs) })),
 			next: rows.length < PAGE ? null : (rows.at(-1)?.atMs ?? null)
 		});
 	}
