@@ -212,3 +212,73 @@ test('snoozing is maintenance’s, has an end, and moves the deadline', async ()
 	);
 	expect(row!.deadline).toBeGreaterThanOrEqual(Date.parse('2026-12-10T10:00Z'));
 });
+
+test('a node that comes and goes is one notice that says how often, mailed once', async () => {
+	const nowMs = Date.parse('2026-12-08T10:00:00Z');
+	const there = async (at: number, silent: boolean) => {
+		await heardAt(at, 'A-02');
+		await room.rows(
+			`UPDATE node_fast f JOIN node n ON n.id = f.node_id JOIN bay b ON b.id = n.bay_id
+			 SET f.heard_at_ms = ? WHERE b.code = 'A-02'`,
+			[silent ? at - 20 * MIN : at]
+		);
+		await showCondition(room, 'A-02', { condition: silent ? 'silent' : 'in_service' }, at);
+		await room.look(at);
+	};
+	await there(nowMs, true);
+	const [first] = await openOf('A-02');
+	const mailed = async () =>
+		await room.rows<{ what: string }>(
+			'SELECT what FROM mail_wish WHERE notice_id = ? AND message_id IS NOT NULL',
+			[first!.id]
+		);
+	await room.compose(nowMs + 16 * MIN);
+	const told = (await mailed()).length;
+	expect(told).toBeGreaterThan(0);
+	for (let i = 1; i <= 3; i += 1) {
+		await there(nowMs + i * HOUR, false);
+		expect(await openOf('A-02')).toEqual([]);
+		await there(nowMs + i * HOUR + 30 * MIN, true);
+		expect(await openOf('A-02')).toMatchObject([{ id: first!.id, kind: 'silent' }]);
+		await room.compose(nowMs + i * HOUR + 50 * MIN);
+	}
+	expect(await mailed()).toHaveLength(told);
+	const [row] = await room.rows<{ times: number }>('SELECT times FROM notice WHERE id = ?', [
+		first!.id
+	]);
+	expect(row?.times).toBe(4);
+	// A day after it healed it is news again.
+	await there(nowMs + 4 * HOUR, false);
+	await there(nowMs + 29 * HOUR, true);
+	expect((await openOf('A-02'))[0]?.id).not.toBe(first!.id);
+});
+
+test('a person is written to in the language and at the hours of their own', async () => {
+	const nowMs = Date.parse('2026-12-15T10:00:00Z');
+	const { people } = room.seeded;
+	// What the tests before have left to be told is no matter here.
+	await room.rows('UPDATE mail_wish SET done_at_ms = 0 WHERE done_at_ms IS NULL');
+	await room.rows("UPDATE person SET language = 'de' WHERE id = ?", [people.maintenance]);
+	// 10:00 UTC is 23:00 there: quiet until 07:00, which is 18:00 UTC.
+	await room.rows(
+		"UPDATE person SET timezone = 'Pacific/Auckland' WHERE email = 'second@lodekeep.example'"
+	);
+	await heardAt(nowMs);
+	await showCondition(room, 'A-06', { condition: 'inverted' }, nowMs);
+	await room.look(nowMs);
+	const due = await room.rows<{ email: string; dueMs: number }>(
+		`SELECT p.email, w.due_ms AS dueMs FROM mail_wish w JOIN person p ON p.id = w.person_id
+		 JOIN notice n ON n.id = w.notice_id JOIN bay b ON b.id = n.bay_id WHERE b.code = 'A-06' ORDER BY p.email`
+	);
+	expect(due).toEqual([
+		{ email: 'maintenance@lodekeep.example', dueMs: nowMs },
+		{ email: 'second@lodekeep.example', dueMs: Date.parse('2026-12-15T18:00:00Z') }
+	]);
+	await room.compose(nowMs);
+	const sender = room.sender();
+	const mail = await room.box.next('maintenance@', 'A-06, Tallow Yard: Film umgeklappt');
+	await sender.close();
+	expect(mail.text).toContain('eine Filmauffrischung genehmigen');
+	expect(mail.html).toContain('<html lang="de">');
+	expect(mail.attachments.map(({ cid }) => cid)).toContain('mark@lodekeep');
+});

@@ -158,7 +158,7 @@ test('one recipient refused: the others get theirs, the reply is kept, the admin
 	).toEqual([{ how: 'healed' }]);
 });
 
-test('after 48 hours it is given up', async () => {
+test('after 48 hours it is given up, and a notice says so', async () => {
 	await put('old');
 	await room.rows('UPDATE outbox SET created_at_ms = created_at_ms - ? WHERE about = ?', [
 		49 * 3_600_000,
@@ -169,6 +169,61 @@ test('after 48 hours it is given up', async () => {
 	await until(async () => (await rowOf('old')).given !== null);
 	await sender.close();
 	expect(await rowOf('old')).toMatchObject({ sent: null, code: 451 });
+	// Nothing else reached this person since.
+	await room.rows("DELETE FROM outbox WHERE about <> 'old'");
+	await room.look(Date.now());
+	const notices = await room.rows<{ facts: string }>(
+		"SELECT facts FROM notice WHERE kind = 'mail_failing' AND closed_at_ms IS NULL AND about = ?",
+		[`mail:${room.seeded.people.maintenance}`]
+	);
+	expect(notices).toHaveLength(1);
+	expect(notices[0]?.facts).toContain('451 try later');
+});
+
+test('a mail server that dribbles is not waited for; one that is slow is, and gets each mail once', async () => {
+	const config = { smtpUrl: '', mailFrom: 'keep@lodekeep.example', mailCatcherPort: 0 };
+	const got: string[] = [];
+	/** Infinity: it takes the mail in and never answers. */
+	let waitMs = Infinity;
+	const slow = new SMTPServer({
+		disabledCommands: ['AUTH', 'STARTTLS'],
+		onData: (stream, _session, done) => {
+			const dribbles = waitMs === Infinity;
+			void simpleParser(stream).then((mail) => {
+				if (dribbles) return;
+				setTimeout(() => {
+					got.push(mail.subject ?? '');
+					done();
+				}, waitMs);
+			});
+		}
+	});
+	await new Promise<void>((go) => slow.listen(0, '127.0.0.1', go));
+	const smtpUrl = `smtp://127.0.0.1:${(slow.server.address() as AddressInfo).port}`;
+	const hasty = room.sender({ config: { ...config, smtpUrl }, oneMailMs: 300 });
+	await put('slow');
+	await until(async () => (await rowOf('slow')).error !== null);
+	await hasty.close();
+	expect(await rowOf('slow')).toMatchObject({
+		...{ sent: null, given: null, code: 0, error: 'the mail server took too long' }
+	});
+	waitMs = 700;
+	await hurry();
+	for (let i = 0; i < 4; i += 1) await put(`slow ${i}`);
+	const patient = [1, 2].map(() => room.sender({ config: { ...config, smtpUrl } }));
+	await until(async () => {
+		const left = await room.rows(
+			"SELECT id FROM outbox WHERE about LIKE 'slow%' AND sent_at_ms IS NULL"
+		);
+		return left.length === 0;
+	});
+	for (const sender of patient) await sender.close();
+	await new Promise<void>((go) => {
+		slow.close(() => {
+			go();
+		});
+	});
+	expect(got.sort()).toEqual(['slow', 'slow 0', 'slow 1', 'slow 2', 'slow 3']);
 });
 
 test('mail of the demo never leaves for the outside', async () => {
@@ -184,3 +239,37 @@ test('mail of the demo never leaves for the outside', async () => {
 	await sender.close();
 	expect(room.box.mails).toHaveLength(sent);
 });
+
+test('the database restarted while mail is out: each mail comes, none twice but under its own Message-ID', async () => {
+	let stopped = false;
+	const real = openDelivery({
+		...{ smtpUrl: room.box.url, mailFrom: 'keep@lodekeep.example', mailCatcherPort: 0 }
+	});
+	const ids = [await put('restart 0'), await put('restart 1'), await put('restart 2')];
+	const sender = room.sender({
+		leaseMs: 1_500,
+		delivery: {
+			deliver: async (mail) => {
+				await real.deliver(mail);
+				if (stopped) return;
+				stopped = true;
+				// Taken by the mail server, and the database is gone before that can be written down.
+				await room.database.kill();
+			},
+			close: () => undefined
+		}
+	});
+	await until(async () => await Promise.resolve(stopped));
+	await room.database.start();
+	await until(async () => {
+		const left = await room
+			.rows("SELECT id FROM outbox WHERE about LIKE 'restart%' AND sent_at_ms IS NULL")
+			.catch(() => null);
+		return left?.length === 0;
+	});
+	await sender.close();
+	real.close();
+	const got = room.box.mails.filter(({ subject }) => subject?.startsWith('restart') === true);
+	expect(new Set(got.map(({ messageId }) => messageId))).toEqual(new Set(ids));
+	expect(got.length).toBeGreaterThanOrEqual(3);
+}, 60_000);

@@ -53,6 +53,11 @@ describe('quiet hours (issue 6: 19:00 to 07:00 and weekends, in the person’s o
 		expect(due('drifting', at('2026-12-01T10:00Z'))).toBe(at('2026-12-02T06:00Z'));
 		expect(due('drifting', at('2026-12-01T10:00Z'), true)).toBe(at('2026-12-01T10:00Z'));
 	});
+	test('an hourly digest waits for the full hour', () => {
+		const hourly = { ...settings, paces: { ...settings.paces, drifting: 'hourly' as const } };
+		const at10 = { nowMs: at('2026-12-01T10:17Z'), zone: BERLIN, urged: false };
+		expect(dueMs(hourly, 'drifting', at10)).toBe(at('2026-12-01T11:00Z'));
+	});
 	test('who switched mail off gets none, escalations neither', () => {
 		const off = { ...settings, off: true };
 		expect(dueMs(off, 'site_late', { nowMs: 0, zone: 'UTC', urged: true })).toBeNull();

@@ -30,8 +30,12 @@ export interface SenderParts {
 	/** Tests and the bench watch and shorten. */
 	lookEveryMs?: number;
 	leaseMs?: number;
+	oneMailMs?: number;
+	now?: () => number;
 	delivery?: Delivery;
 }
+
+type RoundParts = Omit<SenderParts, 'config' | 'delivery' | 'lookEveryMs'>;
 
 /** Sends what waits in the outbox, at least once each, until closed. */
 export function startSender(parts: SenderParts): Sender {
@@ -51,7 +55,7 @@ export function startSender(parts: SenderParts): Sender {
 	};
 	const loop = async (): Promise<void> => {
 		while (!closed) {
-			const busy = await sendDue(parts, delivery).catch((error: unknown) => {
+			const busy = await sendRound(parts, delivery).catch((error: unknown) => {
 				parts.log.debug({ reason: replyOf(error).text }, 'outbox: the database is away');
 				return false;
 			});
@@ -71,9 +75,12 @@ export function startSender(parts: SenderParts): Sender {
 }
 
 /** One round; true when there may be more. */
-async function sendDue(parts: SenderParts, delivery: Delivery): Promise<boolean> {
+export async function sendRound(
+	parts: RoundParts,
+	delivery: Pick<Delivery, 'deliver'>
+): Promise<boolean> {
 	const rows = await outbox.claim(parts.db, 'mail', {
-		nowMs: Date.now(),
+		nowMs: (parts.now ?? Date.now)(),
 		leaseMs: parts.leaseMs ?? LEASE_MS,
 		limit: AT_ONCE
 	});
@@ -89,9 +96,13 @@ async function sendDue(parts: SenderParts, delivery: Delivery): Promise<boolean>
 	return rows.length === AT_ONCE;
 }
 
-async function sendOne(parts: SenderParts, delivery: Delivery, row: outbox.Claimed): Promise<void> {
+async function sendOne(
+	parts: RoundParts,
+	delivery: Pick<Delivery, 'deliver'>,
+	row: outbox.Claimed
+): Promise<void> {
 	const failure = await tryOne(parts, delivery, row);
-	const nowMs = Date.now();
+	const nowMs = (parts.now ?? Date.now)();
 	if (failure === null) {
 		await outbox.sent(parts.db, row.id, nowMs);
 		return;
@@ -107,8 +118,8 @@ async function sendOne(parts: SenderParts, delivery: Delivery, row: outbox.Claim
 
 /** null = the mail server has it. */
 async function tryOne(
-	parts: SenderParts,
-	delivery: Delivery,
+	parts: RoundParts,
+	delivery: Pick<Delivery, 'deliver'>,
 	row: outbox.Claimed
 ): Promise<Reply | null> {
 	const opened = parts.secret.open('outbox', 'mail', row.payloadSealed);
@@ -118,7 +129,7 @@ async function tryOne(
 	const late = new Promise<never>((_, fail) => {
 		timer = setTimeout(() => {
 			fail(new Error('the mail server took too long'));
-		}, ONE_MAIL_MS);
+		}, parts.oneMailMs ?? ONE_MAIL_MS);
 	});
 	try {
 		await Promise.race([delivery.deliver(parsed.data), late]);
