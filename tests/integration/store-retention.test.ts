@@ -25,6 +25,7 @@ beforeAll(async () => {
 	store = connect(server.url);
 	await seed();
 	await seedPersonal();
+	await seedLoop();
 	report = await keepHouse(server.url, nowMs);
 });
 
@@ -85,6 +86,47 @@ async function seedPersonal(): Promise<void> {
 	}
 }
 
+/** Notices and film refreshes of site 1 (events 60 days), one of each open for 200 days; one of the installation. */
+async function seedLoop(): Promise<void> {
+	const { db } = store;
+	await db.insert(t.person).values({
+		...{ id: 1, email: 'a@lodekeep.example', name: 'A', initials: 'A', role: 'admin' },
+		createdAtMs: 1
+	});
+	for (const [i, days] of [200, 61, 59, null].entries()) {
+		const endMs = days === null ? null : nowMs - days * DAY_MS;
+		const id = i + 1;
+		const about = `node:${id}`;
+		await db.insert(t.notice).values({
+			...{ id, siteId: 1, about, subject: endMs === null ? about : null, kind: 'silent' },
+			...{ kinds: 'silent', sinceMs: 1, openedAtMs: 1, deadlineMs: 1, facts: '{}' },
+			closedAtMs: endMs
+		});
+		await db.insert(t.noticeEntry).values({ noticeId: id, atMs: 1, what: 'opened' });
+		await db.insert(t.mailWish).values({
+			...{ personId: 1, siteId: 1, noticeId: id, what: 'opened', wishedAtMs: 1, dueMs: 1 },
+			doneAtMs: endMs ?? 1
+		});
+		await db.insert(t.refreshBulk).values({
+			...{ id, siteId: 1, what: 'zone a', reason: '', leftOut: '[]', askedBy: 'rule' },
+			...{ askedAtMs: 1, endedAtMs: endMs }
+		});
+		await db.insert(t.refresh).values({
+			...{ id, siteId: 1, nodeId: 1, bayId: 1, bulkId: id, origin: 'person', reason: '' },
+			...{ state: endMs === null ? 'asked' : 'proved', evidence: '{}', askedBy: 'rule' },
+			...{ askedAtMs: 1, endedAtMs: endMs }
+		});
+		await db.insert(t.refreshTransition).values({
+			...{ refreshId: id, siteId: 1, nodeId: 1, toState: 'asked', byActor: 'rule', why: '' },
+			atMs: 1
+		});
+	}
+	await db.insert(t.notice).values({
+		...{ id: 9, about: 'mail:1', kind: 'mail_failing', kinds: 'mail_failing', sinceMs: 1 },
+		...{ openedAtMs: 1, deadlineMs: 1, facts: '{}', closedAtMs: nowMs - 91 * DAY_MS }
+	});
+}
+
 async function agesLeft(table: string, where: string, column = 'at_ms'): Promise<number[]> {
 	const [rows] = await store.pool.query<RowDataPacket[]>(
 		`SELECT ${column} AS at FROM ${table} WHERE ${where} ORDER BY 1 DESC`
@@ -125,6 +167,21 @@ test('events of a personal bay go after a day, their ids in the log stay', async
 		'SELECT COUNT(*) AS n FROM `change` WHERE bay_id = 12'
 	);
 	expect(rows[0]?.['n']).toBe(5);
+});
+
+test('closed notices and ended film refreshes go with the events of their site, open ones stay', async () => {
+	const ids = async (table: string, column = 'id') => {
+		const [rows] = await store.pool.query<RowDataPacket[]>(
+			`SELECT ${column} AS id FROM ${table} ORDER BY 1`
+		);
+		return rows.map((row) => row['id'] as number);
+	};
+	expect(await ids('notice')).toEqual([3, 4]);
+	expect(await ids('notice_entry', 'notice_id')).toEqual([3, 4]);
+	expect(await ids('mail_wish', 'notice_id')).toEqual([3, 4]);
+	expect(await ids('refresh')).toEqual([3, 4]);
+	expect(await ids('refresh_transition', 'refresh_id')).toEqual([3, 4]);
+	expect(await ids('refresh_bulk')).toEqual([3, 4]);
 });
 
 test('a second round finds nothing to do', async () => {

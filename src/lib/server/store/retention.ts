@@ -2,6 +2,7 @@ import { createConnection, type Connection, type RowDataPacket } from 'mysql2/pr
 import { CONNECTION_OPTIONS, SESSION_SQL } from './connect';
 import { DAY_MS, dropPartitions, ensurePartitions } from './partitions';
 import { PERSONAL_KEPT_MS } from './queries/events';
+import { loopOf, mailOf } from './retention-loop';
 
 /** Rows a delete takes: small enough to be over before a batch of ingest waits for it. */
 const SLICE_ROWS = 5_000;
@@ -67,6 +68,8 @@ async function purgeSite(connection: Connection, site: SiteRow, nowMs: number): 
 	const readingsMs = nowMs - site.readingDays * DAY_MS;
 	const eventsMs = nowMs - site.eventDays * DAY_MS;
 	let deleted = await purgeLog(connection, site.id, eventsMs);
+	for (const [from, values] of loopOf(site.id, eventsMs))
+		deleted += await purge(connection, from, values);
 	for (const nodeId of await idsOf(connection, 'node WHERE site_id = ?', site.id)) {
 		deleted += await purge(connection, 'reading WHERE node_id = ? AND at_ms < ?', [
 			nodeId,
@@ -175,7 +178,10 @@ async function purgeOwn(connection: Connection, nowMs: number): Promise<number> 
 	const idempotency = before(KEPT_DAYS.idempotency);
 	const mail = before(KEPT_DAYS.sentMail);
 	const tickets = before(KEPT_DAYS.spentTicket);
+	let told = 0;
+	for (const [from, values] of mailOf(nowMs)) told += await purge(connection, from, values);
 	return (
+		told +
 		(await purge(connection, 'rejected WHERE at_ms < ?', rejected)) +
 		(await purge(connection, 'idempotency WHERE created_at_ms < ?', idempotency)) +
 		(await purge(connection, 'outbox WHERE sent_at_ms < ?', mail)) +
