@@ -1,4 +1,5 @@
 import type { Instance } from '$lib/server/api/instance';
+import { mailSheetWords } from '$lib/format/messages/mail-sheets';
 import { readToken } from '$lib/server/outbox/link-token';
 import { factsOf, headOf } from '$lib/server/outbox/letter/item';
 import * as mailPeople from '$lib/server/store/queries/mail-people';
@@ -9,19 +10,18 @@ import { saveSettings } from './settings';
 
 type App = Pick<Instance, 'store' | 'secret' | 'nudgeNotices'>;
 
-const WHY = {
-	not_ours: 'This link is not one of ours.',
-	expired: 'This link is over: it held for 14 days.'
-} as const;
-const NOBODY = 'The person this was mailed to is not here any more.';
+function whyNot(reason: 'not_ours' | 'expired'): string {
+	const said = mailSheetWords().take;
+	return reason === 'expired' ? said.expired : said.notOurs;
+}
 
 /** What the page behind 'I take it' shows before anything is done. */
 export async function acknowledgeView(app: App, token: string | null, nowMs: number) {
 	const read = readToken(app.secret, 'acknowledge', token, nowMs);
-	if (!read.ok) return { ok: false as const, why: WHY[read.reason] };
-	if (read.link.does !== 'acknowledge') return { ok: false as const, why: WHY.not_ours };
+	if (!read.ok) return { ok: false as const, why: whyNot(read.reason) };
+	if (read.link.does !== 'acknowledge') return { ok: false as const, why: whyNot('not_ours') };
 	const person = await mailPeople.byId(app.store.pool, read.link.personId);
-	if (person === null) return { ok: false as const, why: NOBODY };
+	if (person === null) return { ok: false as const, why: mailSheetWords().take.nobody };
 	const rows = await letters.byIds(app.store.pool, read.link.noticeIds);
 	return {
 		...{ ok: true as const, token: token ?? '', name: person.name },
@@ -32,7 +32,11 @@ export async function acknowledgeView(app: App, token: string | null, nowMs: num
 				nowMs
 			),
 			note:
-				row.closedAtMs !== null ? 'over' : row.takerName === null ? null : `${row.takerName} has it`
+				row.closedAtMs !== null
+					? mailSheetWords().take.over
+					: row.takerName === null
+						? null
+						: mailSheetWords().take.has(row.takerName)
 		}))
 	};
 }
@@ -46,8 +50,8 @@ export async function acknowledge(
 	nowMs: number
 ): Promise<Acknowledged> {
 	const read = readToken(app.secret, 'acknowledge', token, nowMs);
-	if (!read.ok) return { ok: false, why: WHY[read.reason] };
-	if (read.link.does !== 'acknowledge') return { ok: false, why: WHY.not_ours };
+	if (!read.ok) return { ok: false, why: whyNot(read.reason) };
+	if (read.link.does !== 'acknowledge') return { ok: false, why: whyNot('not_ours') };
 	const { personId, noticeIds } = read.link;
 	const done = await act(
 		app.store,

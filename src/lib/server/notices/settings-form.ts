@@ -1,9 +1,11 @@
 import { z } from 'zod';
+import { isLanguage } from '$lib/format/messages';
+import { mailSheetWords } from '$lib/format/messages/mail-sheets';
 import { NOTICE_KINDS, PACES, type MailSettings } from '$lib/schemas/notices';
 
 const clock = z
 	.string()
-	.regex(/^([01]\d|2[0-3]):[0-5]\d$/, 'A time is written as 07:00.')
+	.regex(/^([01]\d|2[0-3]):[0-5]\d$/, { error: () => mailSheetWords().settings.wrongTime })
 	.transform((text) => Number(text.slice(0, 2)) * 60 + Number(text.slice(3)));
 
 const ZONES = new Set(Intl.supportedValuesOf('timeZone'));
@@ -19,10 +21,17 @@ const form = z.object({
 	deputy: z
 		.string()
 		.transform((text) => (text === '' ? null : Number(text)))
-		.pipe(z.number('Choose a deputy from the list.').int().positive().nullable()),
-	timezone: z
-		.string()
-		.refine((zone) => zone === '' || zone === 'UTC' || ZONES.has(zone), 'This is no time zone.'),
+		.pipe(
+			z
+				.number({ error: () => mailSheetWords().settings.wrongDeputy })
+				.int()
+				.positive()
+				.nullable()
+		),
+	timezone: z.string().refine((zone) => zone === '' || zone === 'UTC' || ZONES.has(zone), {
+		error: () => mailSheetWords().settings.wrongZone
+	}),
+	language: z.string().refine(isLanguage, { error: () => mailSheetWords().settings.wrongLanguage }),
 	on: z.boolean()
 });
 
@@ -40,6 +49,7 @@ export function mailForm(data: FormData) {
 		...{ quietFrom: textOf(data, 'quietFrom'), quietTo: textOf(data, 'quietTo') },
 		...{ dailyAt: textOf(data, 'dailyAt'), quietWeekends: data.get('quietWeekends') === 'on' },
 		...{ deputy: textOf(data, 'deputy'), timezone: textOf(data, 'timezone') },
+		language: textOf(data, 'language'),
 		on: data.get('on') === 'on'
 	});
 }
@@ -47,6 +57,7 @@ export function mailForm(data: FormData) {
 export function settingsFrom(given: z.infer<typeof form>): {
 	settings: MailSettings;
 	timezone: string | null;
+	language: string;
 } {
 	return {
 		settings: {
@@ -56,6 +67,7 @@ export function settingsFrom(given: z.infer<typeof form>): {
 			...{ quietWeekends: given.quietWeekends, dailyAtMin: given.dailyAt },
 			...{ deputyId: given.deputy, off: !given.on }
 		},
-		timezone: given.timezone === '' ? null : given.timezone
+		timezone: given.timezone === '' ? null : given.timezone,
+		language: given.language
 	};
 }

@@ -41,9 +41,8 @@ export async function list(dataDir: string, limit = 100): Promise<CaughtMail[]> 
 /** One mail, or null when there is none of that id. */
 export async function read(dataDir: string, id: string): Promise<CaughtMailBody | null> {
 	const caughtAt = ID.exec(id)?.[1];
-	if (caughtAt === undefined) return null;
-	const bytes = await readFile(join(dirOf(dataDir), `${id}.eml`)).catch(() => null);
-	if (bytes === null) return null;
+	const bytes = await bytesOf(dataDir, id);
+	if (caughtAt === undefined || bytes === null) return null;
 	const mail = await simpleParser(bytes, { skipImageLinks: true });
 	return {
 		id,
@@ -58,6 +57,21 @@ export async function read(dataDir: string, id: string): Promise<CaughtMailBody 
 			value: line.slice(line.indexOf(':') + 1).trim()
 		}))
 	};
+}
+
+async function bytesOf(dataDir: string, id: string): Promise<Buffer | null> {
+	if (!ID.test(id)) return null;
+	return await readFile(join(dirOf(dataDir), `${id}.eml`)).catch(() => null);
+}
+
+/** The drawn part with its own pictures in it; links open beside the sheet. Null when there is none. */
+export async function readDrawn(dataDir: string, id: string): Promise<string | null> {
+	const bytes = await bytesOf(dataDir, id);
+	if (bytes === null) return null;
+	const { html } = await simpleParser(bytes);
+	return html === false || html === undefined
+		? null
+		: html.replace('<head>', '<head><base target="_blank">');
 }
 
 function addresses(value: AddressObject | AddressObject[] | undefined): string {

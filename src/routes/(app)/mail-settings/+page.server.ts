@@ -1,3 +1,4 @@
+import { mailSheetWords } from '$lib/format/messages/mail-sheets';
 import { mailForm, settingsFrom } from '$lib/server/notices/settings-form';
 import { saveSettings } from '$lib/server/notices/settings';
 import { mayHold, recipientOf } from '$lib/server/notices/people';
@@ -24,7 +25,7 @@ export const load: PageServerLoad = async ({ locals }) => {
 	const sites = await listed(instance().store.db, reach.sites);
 	return {
 		settings: me.settings,
-		...{ role: me.role, email: me.email, timezone: me.timezone },
+		...{ role: me.role, email: me.email, timezone: me.timezone, mailLanguage: me.language },
 		mySites: sites.map(({ id, name, timezone }) => ({ id, name, timezone })),
 		deputies: all
 			.filter(({ id, role }) => id !== me.id && role !== 'integrator')
@@ -40,12 +41,14 @@ export const actions: Actions = {
 		const { me, all } = await own(locals);
 		const form = mailForm(await request.formData());
 		if (!form.success)
-			return fail(400, { trouble: form.error.issues[0]?.message ?? 'Something is missing.' });
+			return fail(400, {
+				trouble: form.error.issues[0]?.message ?? mailSheetWords().settings.missing
+			});
 		const wanted = settingsFrom(form.data);
 		const deputy = wanted.settings.deputyId;
 		if (deputy !== null && !all.some(({ id }) => id === deputy && deputy !== me.id))
-			return fail(400, { trouble: 'The deputy is not here any more.' });
-		const person = { ...me, timezone: wanted.timezone };
+			return fail(400, { trouble: mailSheetWords().settings.deputyGone });
+		const person = { ...me, timezone: wanted.timezone, language: wanted.language };
 		await saveSettings(instance().store, person, wanted.settings, Date.now());
 		return { kept: true };
 	}
