@@ -1,5 +1,7 @@
 import { ask, send } from '$lib/components/live/ask';
 import { session } from '$lib/components/live/session.svelte';
+import { words } from '$lib/format/messages';
+import { parametersWords } from '$lib/format/messages/parameters';
 import { marginNotes } from '$lib/ui/margin-notes.svelte';
 import type { ParameterChange, ParameterSheet } from '$lib/schemas/desk-parameters';
 import { createQuery } from '@tanstack/svelte-query';
@@ -46,10 +48,10 @@ export function parametersOf(site: () => string, node: () => string | null) {
 		undo: async (change: ParameterChange): Promise<void> => {
 			try {
 				await send('POST', `${path()}/${change.id}/undo`, {});
-				marginNotes.add(`${parameterLabel(change.name)}: undone, from the next batch on.`);
+				marginNotes.add(parametersWords().undone(parameterLabel(change.name)));
 			} catch (error) {
 				session.heed(error);
-				marginNotes.add(error instanceof Error ? error.message : 'That did not work.', {
+				marginNotes.add(error instanceof Error ? error.message : words().signIn.failed, {
 					trouble: true
 				});
 			}

@@ -1,6 +1,7 @@
 import type uPlot from 'uplot';
 import type { PlotInks } from '$lib/ui/plot-options';
 import { milligauss } from '$lib/format/field';
+import { words } from '$lib/format/messages';
 import type { Stack } from './stack';
 import { toneFill, TONES } from './tones';
 
@@ -50,12 +51,12 @@ export function partsOptions({ inks, size, stack, timezone, ratio, group, oncurs
 		grid: { stroke: inks.hair, width: 0.5 },
 		ticks: { stroke: inks.hair, width: 1, size: 5 }
 	};
-	const day = new Intl.DateTimeFormat('en-GB', {
+	const day = new Intl.DateTimeFormat(words().locale, {
 		timeZone: timezone,
 		day: 'numeric',
 		month: 'short'
 	});
-	const hour = new Intl.DateTimeFormat('en-GB', {
+	const hour = new Intl.DateTimeFormat(words().locale, {
 		timeZone: timezone,
 		hour: '2-digit',
 		minute: '2-digit'

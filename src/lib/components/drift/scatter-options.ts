@@ -73,7 +73,7 @@ export function scatterOptions(
 				{
 					...axis,
 					space: 50,
-					values: (_p, ticks) => ticks.map((t) => celsius(t).replace(/(\.0)? °C/, ''))
+					values: (_p, ticks) => ticks.map((t) => celsius(t).replace(/([.,]0)? °C/, ''))
 				},
 				{
 					...axis,

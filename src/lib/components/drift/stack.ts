@@ -1,3 +1,4 @@
+import { driftWords } from '$lib/format/messages/drift';
 import { dot, magnitude, scale, type Vec3 } from '$lib/magnetics/vector';
 import type { NodeDriftView } from '$lib/schemas/desk-drift';
 
@@ -5,14 +6,14 @@ type Hour = Pick<NodeDriftView['hours'][number], 'at' | 'vectors'>;
 
 /** Parts in the order in which they are stacked: what is taken out first, what is not explained last. */
 export const PARTS = [
-	{ key: 'temperatureMg', label: 'temperature' },
-	{ key: 'geomagneticMg', label: 'geomagnetic' },
-	{ key: 'bridgeMg', label: 'bridge' },
-	{ key: 'filmMg', label: 'film' },
-	{ key: 'surroundingsMg', label: 'surroundings' },
-	{ key: 'unexplainedMg', label: 'unexplained' }
+	'temperatureMg',
+	'geomagneticMg',
+	'bridgeMg',
+	'filmMg',
+	'surroundingsMg',
+	'unexplainedMg'
 ] as const;
-export type PartKey = (typeof PARTS)[number]['key'];
+export type PartKey = (typeof PARTS)[number];
 
 export interface Stack {
 	timesS: number[];
@@ -38,7 +39,10 @@ export function stackOf(hours: readonly Hour[]): Stack | null {
 	const along = directionOf(judged.map(({ vectors }) => vectors.totalMg));
 	const stack: Stack = {
 		timesS: [],
-		parts: PARTS.map(({ key, label }) => ({ key, label, above: [], below: [] })),
+		parts: PARTS.map((key) => ({
+			...{ key, label: driftWords().parts[key] },
+			...{ above: [], below: [] }
+		})),
 		totalMg: []
 	};
 	let lastS: number | null = null;
