@@ -7,8 +7,8 @@ beforeAll(async () => (office = await Office.open()));
 afterAll(async () => await office.end());
 
 /** First screens of product.md, 'The people', as far as their sheets are built; sheets their index offers. */
-const EVERYDAY = ['Sites', 'Plan', 'Nodes', 'Closures', 'Sent for', 'Drift', 'Film refreshes'];
-const LATER = ['Parameters', 'How decided', 'Notices', 'Wall links'];
+const EVERYDAY = ['Sites', 'Plan', 'Nodes', 'Closures', 'Visits', 'Drift', 'Film refreshes'];
+const LATER = ['Parameters', 'How decided', 'Notices', 'Wall links', 'All notices'];
 const ROLES = [
 	['operator', '/sites/tallow-yard/plan', [...EVERYDAY, ...LATER]],
 	['maintenance', '/sites/tallow-yard/drift', [...EVERYDAY, ...LATER]],

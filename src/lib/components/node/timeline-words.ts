@@ -1,6 +1,7 @@
 import { milligauss } from '$lib/format/field';
 import { named } from '$lib/format/messages';
 import { dossierWords } from '$lib/format/messages/dossier';
+import { visitsWords } from '$lib/format/messages/visits';
 import { moment } from '$lib/format/time';
 import { duration } from '$lib/format/duration';
 import { eventWord, plain, stateWord, type State } from '$lib/format/words';
@@ -39,6 +40,8 @@ export function timelineSentence(item: TimelineItem, timezone: string, nowMs: nu
 			return said.request(String(detail['reason']));
 		case 'request_end':
 			return said.seenTo(String(detail['outcome']));
+		case 'visit':
+			return visitSentence(item);
 		case 'voided':
 			return said.voided(String(detail['voids']));
 		default: {
@@ -55,6 +58,14 @@ export function timelineSentence(item: TimelineItem, timezone: string, nowMs: nu
 			return head + about + late;
 		}
 	}
+}
+
+/** What came of a stop of a walk. */
+function visitSentence({ detail }: TimelineItem): string {
+	const { outcome, walk } = visitsWords();
+	const word = named(outcome, String(detail['outcome'])) ?? String(detail['outcome']);
+	const note = String(detail['note'] ?? '');
+	return walk.timeline(String(detail['visit']), note === '' ? word : `${word}: ${note}`);
 }
 
 /** A cause or a refusal as the API says it, in words. */

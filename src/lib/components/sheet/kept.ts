@@ -1,8 +1,9 @@
 import type { BayItem, BayOutline } from '$lib/components/plan/types';
+import type { WalkView } from '$lib/schemas/visit-view';
 
 /**
- * What this browser keeps of a person's sheets for opening without a connection: the last plan, and
- * nothing else. It lies in the browser's cache storage under the person's own name and goes at sign-out,
+ * What this browser keeps of a person's sheets for opening without a connection: the last plan, the walk at
+ * hand with the keys that seal what is recorded in it, and nothing else. It lies in the browser's cache storage under the person's own name and goes at sign-out,
  * on a 401 and when another person or role comes; after 72 h without an answer it is locked for good.
  */
 export const KEPT_PREFIX = 'lodekeep-kept-';
@@ -32,7 +33,12 @@ export type Opened =
 const storage = (): CacheStorage | null => ('caches' in globalThis ? globalThis.caches : null);
 
 const nameOf = (keeper: Keeper) => `${KEPT_PREFIX}${keeper.id}-${keeper.role}`;
-const KEYS = { contact: '/kept/contact', plan: '/kept/plan' } as const;
+const KEYS = {
+	contact: '/kept/contact',
+	plan: '/kept/plan',
+	walk: '/kept/walk',
+	sealing: '/kept/sealing'
+} as const;
 
 const read = async <T>(cache: Cache, key: string): Promise<T | null> => {
 	const found = await cache.match(key);
@@ -55,12 +61,39 @@ export async function claim(keeper: Keeper, nowMs: number): Promise<void> {
 
 /** Kept only under a claim that still stands: after a wipe nothing comes back by itself. */
 export async function keepPlan(keeper: Keeper, plan: KeptPlan): Promise<void> {
+	await keep(keeper, [
+		[KEYS.plan, plan],
+		[KEYS.contact, plan.keptAtMs]
+	]);
+}
+
+/** The walk as the server last gave it, with the keys of this person (base64) for what they record in it. */
+export async function keepWalk(
+	keeper: Keeper,
+	walk: WalkView,
+	sealing: readonly string[],
+	nowMs: number
+): Promise<void> {
+	await keep(keeper, [
+		[KEYS.walk, walk],
+		[KEYS.sealing, sealing],
+		[KEYS.contact, nowMs]
+	]);
+}
+
+/** A walk that is over is not opened any more. */
+export async function dropWalk(keeper: Keeper): Promise<void> {
+	const caches = storage();
+	if (caches === null || !(await caches.has(nameOf(keeper)))) return;
+	await (await caches.open(nameOf(keeper))).delete(KEYS.walk);
+}
+
+async function keep(keeper: Keeper, values: readonly (readonly [string, unknown])[]) {
 	const caches = storage();
 	const name = nameOf(keeper);
 	if (caches === null || !(await caches.has(name))) return;
 	const cache = await caches.open(name);
-	await write(cache, KEYS.plan, plan);
-	await write(cache, KEYS.contact, plan.keptAtMs);
+	for (const [key, value] of values) await write(cache, key, value);
 	// The claim may have been wiped while this was written.
 	if (wiped.has(name)) await caches.delete(name);
 }
@@ -91,9 +124,38 @@ export async function openKept(nowMs: number): Promise<Opened> {
 	const cache = await caches.open(name);
 	const contactAtMs = (await read<number>(cache, KEYS.contact)) ?? 0;
 	if (isLocked(contactAtMs, nowMs)) {
-		await cache.delete(KEYS.plan);
+		await lock(cache);
 		return { state: 'locked', contactAtMs };
 	}
 	const plan = await read<KeptPlan>(cache, KEYS.plan);
 	return plan === null ? { state: 'none' } : { state: 'plan', plan, contactAtMs };
+}
+
+export interface KeptWalk {
+	walk: WalkView;
+	sealing: string[];
+	keeper: Keeper;
+	contactAtMs: number;
+}
+
+/** The walk at hand without a connection; null when none is kept, or when it is locked. */
+export async function openKeptWalk(nowMs: number): Promise<KeptWalk | null> {
+	const caches = storage();
+	const name = (await caches?.keys())?.find((one) => one.startsWith(KEPT_PREFIX));
+	const [id, role] = name?.slice(KEPT_PREFIX.length).split('-') ?? [];
+	if (caches === null || name === undefined || id === undefined || role === undefined) return null;
+	const cache = await caches.open(name);
+	const contactAtMs = (await read<number>(cache, KEYS.contact)) ?? 0;
+	if (isLocked(contactAtMs, nowMs)) {
+		await lock(cache);
+		return null;
+	}
+	const walk = await read<WalkView>(cache, KEYS.walk);
+	const sealing = (await read<string[]>(cache, KEYS.sealing)) ?? [];
+	return walk === null ? null : { walk, sealing, keeper: { id: Number(id), role }, contactAtMs };
+}
+
+/** The contact stays, so that it can be said since when; recordings that wait stay sealed. */
+async function lock(cache: Cache): Promise<void> {
+	for (const key of [KEYS.plan, KEYS.walk, KEYS.sealing]) await cache.delete(key);
 }

@@ -53,9 +53,9 @@ export const SHEETS: readonly Sheet[] = [
 	},
 	{
 		number: '5',
-		name: 'Sent for',
+		name: 'Visits',
 		letter: 'v',
-		path: (site) => `/sites/${site}/sent-for`,
+		path: (site) => `/sites/${site}/visits`,
 		ofSite: true,
 		roles: ['operator', 'maintenance', 'admin']
 	},
@@ -81,6 +81,14 @@ export const SHEETS: readonly Sheet[] = [
 		letter: 't',
 		path: (site) => `/sites/${site}/notices`,
 		ofSite: true,
+		roles: ['operator', 'maintenance', 'admin']
+	},
+	{
+		number: '16',
+		name: 'All notices',
+		letter: 'l',
+		path: () => '/notices',
+		ofSite: false,
 		roles: ['operator', 'maintenance', 'admin']
 	},
 	{

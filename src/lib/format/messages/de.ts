@@ -95,7 +95,7 @@ export const de: Messages = {
 		Plan: 'Plan',
 		Nodes: 'Knoten',
 		Closures: 'Sperrungen',
-		'Sent for': 'Gerufen',
+		Visits: 'Einsätze',
 		Drift: 'Drift',
 		'Film refreshes': 'Filmauffrischungen',
 		Connections: 'Anbindungen',

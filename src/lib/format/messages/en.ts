@@ -104,7 +104,7 @@ export const en = {
 		Plan: 'Plan',
 		Nodes: 'Nodes',
 		Closures: 'Closures',
-		'Sent for': 'Sent for',
+		Visits: 'Visits',
 		Drift: 'Drift',
 		'Film refreshes': 'Film refreshes',
 		Connections: 'Connections',
