@@ -8,6 +8,7 @@ import {
 	LAYOUT
 } from './codec';
 import {
+	floats,
 	Fast,
 	newSlow,
 	type Before,
@@ -113,8 +114,8 @@ const step: Step = {
 };
 const echo: Echo = {
 	by: 12_345,
-	j: [0.1, 0.2, 0.3],
-	byJ: [0.1, 0.2, 0.3],
+	j: floats([0.1, 0.2, 0.3]),
+	byJ: floats([0.1, 0.2, 0.3]),
 	atMs: 1_795_593_001_923,
 	uncertaintyS: 31,
 	settledMs: 1_795_593_001_923,
@@ -167,6 +168,18 @@ function fullest(): Slow {
 			}))
 		},
 		arrival: before.arrival,
+		// Held in float32; a suspect is dropped when it is set (afterthought.ts).
+		parted: {
+			atMs: 1_795_593_001_923,
+			j: floats([0.1, 0.2, 0.3]),
+			arrival: {
+				step: floats([0.1, 0.2, 0.3]),
+				first: floats([0.1, 0.2, 0.3]),
+				atMs: 1_795_593_001_923
+			},
+			back: floats([0.1, 0.2, 0.3]),
+			entries: 12_345
+		},
 		// Only the newest step keeps what was before it (neighbours.ts, keepInLedger).
 		steps: [{ ...step, before: null }, { ...step, before: null }, { ...step, before: null }, step],
 		pending: { ...step, before: null },

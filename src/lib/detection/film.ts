@@ -37,6 +37,8 @@ export function takeInversion(n: Node, step: Step): boolean {
 const AT_ONCE_MS = 1200;
 /** The mirrored field must be this much nearer than the field as it is. */
 const NEARER = 0.25;
+/** An offset that has moved since its pair puts the mirror off by twice that: a step this much larger still shows it. */
+const FAR_NEARER = 0.1;
 /** Seen to turn at once, and back to within noise, a smaller axis shows its sign too. */
 const SURE_AXIS_MG = 8;
 const SURE_SIGMA = 2.5;
@@ -57,12 +59,18 @@ function invertedAxes(n: Node, step: Step): Triple | null {
 	const asItIs = Math.min(apart(level, old), apart(level, baseline));
 	const near = Math.max(2 * stillMg(n), params.invertedRatio * size3(old));
 	const loose = bestMirror(level, old, known, params.invertedAxisMg);
-	if (loose !== null && loose.offMg <= Math.min(near, NEARER * asItIs)) return loose.signs;
+	const limit = Math.max(Math.min(near, NEARER * asItIs), FAR_NEARER * asItIs);
+	const alone = loose !== null && (!step.burst || othersStill(n, step, loose.signs));
+	if (alone && loose.offMg <= limit) return loose.signs;
 	if (!step.burst) return null;
 	const sure = bestMirror(level, old, [old], SURE_AXIS_MG);
 	const exact = Math.max(SURE_LEAST_MG, SURE_SIGMA * sigmaMg(n));
 	return sure !== null && sure.offMg <= Math.min(exact, NEARER * asItIs) ? sure.signs : null;
 }
+
+/** Each axis is a bridge of its own: one that turns over leaves the others where they were, as a vehicle does not. */
+const othersStill = (n: Node, { j }: Step, signs: Triple): boolean =>
+	([0, 1, 2] as const).every((i) => signs[i] < 0 || Math.abs(j[i]) <= 2 * stillMg(n));
 
 /** The set of axes, one of which carries enough, whose change of sign comes nearest to what is known. */
 function bestMirror(

@@ -61,8 +61,20 @@ export function isDeparture(n: Node, step: Step, echoMg = 0): boolean {
 	if (undoes(n, step, arrival.step, echoMg)) return true;
 	const grown = sumSize(step.j, arrival.step) > MOST_GROWTH * size3(arrival.first);
 	if (!grown && undoes(n, step, arrival.first, echoMg)) return true;
-	return apart(n.fast.level, n.fast.baseline) < releaseMg(n) || atReference(n, n.fast.level);
+	return released(n, step) || atReference(n, n.fast.level);
 }
+
+/** The level is under the release threshold, and this step is what brought it there. */
+function released(n: Node, step: Step): boolean {
+	const { level, baseline } = n.fast;
+	const d = apart(level, baseline);
+	if (d >= releaseMg(n)) return false;
+	const left = triple(level).map((v, i) => v - step.j[i as 0]) as Triple;
+	return step.gapS > 0 || d <= MOST_LEFT * apart(left, baseline);
+}
+
+/** A departure that is not known by its arrival takes at least this much of the disturbance with it. */
+const MOST_LEFT = 0.6;
 
 /** A person saw the bay taken while its field stood at the baseline, and nothing was told since. */
 function seenNotFelt(n: Node): boolean {

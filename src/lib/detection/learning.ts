@@ -154,6 +154,8 @@ export function startLearning(g: Group, n: Node, preCommissioned: boolean, atMs:
 	slow.aisle = null;
 	slow.echoes = [];
 	slow.steps = [];
+	slow.parted = null;
+	slow.suspect = null;
 	slow.hours = [];
 	slow.slope = null;
 	slow.window = [];

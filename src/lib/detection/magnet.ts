@@ -21,7 +21,7 @@ const LEFT_SHARE = 0.15;
 const SAME_SHARE = 0.1;
 
 /** Could a weakened or turned film alone have made this step? A vehicle makes some axis grow. */
-function filmCould(n: Node, step: Step): boolean {
+export function filmCould(n: Node, step: Step): boolean {
 	// Without an offset an axis has no zero; after a first magnet the film is no measure any more.
 	if (n.slow.offset === null || n.slow.magnet !== null) return true;
 	const { level } = n.fast;

@@ -1,9 +1,20 @@
+import { noteParting, takeBack } from './afterthought';
 import { enter, lookBy, putBack, putBaselineBack, voidEntry } from './entries';
 import { evidence, named, stepWords } from './evidence';
+import { noteSuspect } from './film-suspect';
 import { isArrival, judge, startStay, takeVacant, type Overlap } from './judge';
 import { watchReference } from './provisional';
 import { aisleLimitMg, takeAisle } from './queue';
-import { summed, touch, type Echo, type Group, type Node, type Step } from './state';
+import {
+	floats,
+	summed,
+	touch,
+	triple,
+	type Echo,
+	type Group,
+	type Node,
+	type Step
+} from './state';
 import { offMg, onMg } from './thresholds';
 import { apart, shift3, size3, sumSize } from './vec';
 
@@ -86,13 +97,9 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 	);
 	const size = size3(step.j);
 	const by = big !== null && isEchoOf(n, step, size, big) ? big : besideUs(n, step, size, others);
-	if (by !== null && !undoesOwn(n, step)) {
-		takeEcho(n, step, by);
-	} else if (!takeAisle(g, n, step, atMs)) {
-		leaveAlone(g, n, step, atMs);
-		judge(g, n, step, others, atMs);
-		watchReference(g, n, step, atMs);
-	}
+	if (takeBack(g, n, step, others, atMs)) watchReference(g, n, step, atMs);
+	else if (by !== null && !undoesOwn(n, step)) takeEcho(n, step, by);
+	else if (!takeAisle(g, n, step, atMs)) judgeAlone(g, n, step, others, atMs);
 	keepInLedger(n, step);
 	for (const o of others) {
 		if (
@@ -104,6 +111,17 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 	}
 	markUndone(n, step);
 	for (const m of n.near) resolve(g, m, atMs, 'neighbour');
+}
+
+/** Neither echo nor aisle: the step is the bay's own. */
+function judgeAlone(g: Group, n: Node, step: Step, others: readonly Overlap[], atMs: number): void {
+	leaveAlone(g, n, step, atMs);
+	const { arrival, sinceMs } = n.slow;
+	const baseline = triple(n.fast.baseline);
+	judge(g, n, step, others, atMs);
+	if (step.became === 'departure') noteParting(n, step, arrival, baseline);
+	noteSuspect(n, step, arrival, sinceMs);
+	watchReference(g, n, step, atMs);
 }
 
 /**
@@ -201,8 +219,8 @@ function rememberEcho(n: Node, step: Step, by: Node, byStep: Step): void {
 	if (size3(step.j) < offMg(n)) return;
 	n.slow.echoes.push({
 		by: by.id,
-		j: step.j,
-		byJ: byStep.j,
+		j: floats(step.j),
+		byJ: floats(byStep.j),
 		atMs: step.atMs,
 		uncertaintyS: step.uncertaintyS,
 		settledMs: step.settledMs,
@@ -318,6 +336,7 @@ function leaveAfterAll(g: Group, n: Node, e: Echo, atMs: number): void {
 		n.slow.arrival = { ...arrival, step: summed(arrival.step, e.j) };
 		return;
 	}
+	const baseline = triple(n.fast.baseline);
 	takeVacant(n);
 	enter(
 		g,
@@ -332,6 +351,7 @@ function leaveAfterAll(g: Group, n: Node, e: Echo, atMs: number): void {
 		},
 		atMs
 	);
+	noteParting(n, e, arrival, baseline);
 }
 
 const afterAll = (e: Echo) =>

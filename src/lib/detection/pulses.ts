@@ -1,4 +1,5 @@
 import { clearDoubt, doubtIt } from './entries';
+import { takeHealed } from './film-suspect';
 import { forgetFilm } from './magnet';
 import { resolve } from './neighbours';
 import { atReference } from './reference';
@@ -63,7 +64,10 @@ export function takePulse(g: Group, n: Node, pulse: PulseItem): void {
 	if (why === null && pulse.setMg !== null && pulse.resetMg !== null) {
 		takeOffset(n, pulse, midOf(pulse.setMg, pulse.resetMg));
 	}
-	if (fast.levelN > 0 && fast.open === 0) carryOver(n, pulse);
+	slow.parted = null;
+	// Its own before and after tell what it did, also while the field moves.
+	const told = pulse.before !== null && (pulse.afterMg ?? pulse.setMg) !== null;
+	if (fast.levelN > 0 && (fast.open === 0 || told)) carryOver(g, n, pulse);
 	forgetFilm(n);
 	slow.refreshWhy = null;
 	if (slow.doubt?.reason === 'magnet') clearDoubt(n);
@@ -107,7 +111,7 @@ function takeOffset(n: Node, pulse: PulseItem, offset: Triple): void {
 }
 
 /** Re-anchoring over the pulse (method 2): by before and after, else by the rows around it. */
-function carryOver(n: Node, pulse: PulseItem): void {
+function carryOver(g: Group, n: Node, pulse: PulseItem): void {
 	const { fast, slow } = n;
 	const after = pulse.afterMg ?? pulse.setMg;
 	fast.boxN = 0;
@@ -118,15 +122,17 @@ function carryOver(n: Node, pulse: PulseItem): void {
 	const before = fieldOf(n, pulse.before.rawMg, polarityBefore(n, pulse), slow.offset);
 	forgetFilm(n);
 	const healed = fieldOf(n, after, pulse.polarityAfter, slow.offset);
+	const by: Triple = [healed[0] - before[0], healed[1] - before[1], healed[2] - before[2]];
 	const occupied = slow.state === 'occupied' || slow.lastKnown?.state === 'occupied';
-	if (occupied && slow.arrival !== null && slow.offset !== null)
+	if (takeHealed(g, n, by, pulse.atMs)) shift3(fast.level, by);
+	else if (occupied && slow.arrival !== null && slow.offset !== null)
 		scaleUnderVehicle(n, before, healed);
 	else {
-		const by: Triple = [healed[0] - before[0], healed[1] - before[1], healed[2] - before[2]];
 		shift3(fast.baseline, by);
 		shift3(fast.level, by);
 	}
-	set3(fast.last, fast.level);
+	if (fast.open === 0) set3(fast.last, fast.level);
+	else shift3(fast.last, by);
 }
 
 /** Baseline, level and arrival step by B_after / B_before, per axis that carries enough to show it. */
@@ -151,16 +157,18 @@ function scaleUnderVehicle(n: Node, before: Triple, healed: Triple): void {
 }
 
 /** Without before and after: the first still level after the pulse stands for the last one before it. */
-export function settleAfterPulse(n: Node, atMs: number): void {
+export function settleAfterPulse(g: Group, n: Node, atMs: number): void {
 	const { fast } = n;
 	fast.reanchor = 0;
 	const { boxSum, boxN, level } = fast;
 	const now: Triple = [boxSum[0] / boxN, boxSum[1] / boxN, boxSum[2] / boxN];
 	const by: Triple = [now[0] - level[0], now[1] - level[1], now[2] - level[2]];
 	if (Math.max(...by.map(Math.abs)) <= stillMg(n)) return;
-	shift3(fast.baseline, by);
+	const healed = takeHealed(g, n, by, atMs);
 	set3(fast.level, now);
 	touch(n);
+	if (healed) return;
+	shift3(fast.baseline, by);
 	if (size3(by) >= n.params.stepRatio * onMg(n) && !atReference(n, now)) {
 		doubtIt(n, 'the field jumped at a pulse without before and after', atMs);
 	}

@@ -115,7 +115,7 @@ function inService(
 	if (dtMs > gapMs(n)) atSilence(g, n, atMs, dtMs);
 	if (fast.reanchor === 1) {
 		extendBox(n, atMs);
-		if (fast.boxN >= 2) settleAfterPulse(n, atMs);
+		if (fast.boxN >= 2) settleAfterPulse(g, n, atMs);
 		return;
 	}
 	if (fast.open === 1) {

@@ -174,6 +174,28 @@ export interface Strange {
 	entries: { type: HistoryType; atMs: number }[];
 }
 
+/** A departure that did not quite fit: what the bay would hold, were it none (afterthought.ts). In float32. */
+export interface Parted {
+	atMs: number;
+	j: Triple;
+	arrival: Arrival;
+	/** The baseline of before less the level that was taken for it. */
+	back: Triple;
+	/** slow.entries just after it. */
+	entries: number;
+}
+
+/** A step that a film could have made alone, and what was held before it (film-suspect.ts). */
+export interface Suspect {
+	j: Triple;
+	atMs: number;
+	became: 'nothing' | 'arrival';
+	arrival: Arrival | null;
+	sinceMs: number | null;
+	/** slow.entries just after it. */
+	entries: number;
+}
+
 /** A magnet's step, and what was known before it. */
 export interface Magnet {
 	atMs: number;
@@ -215,6 +237,8 @@ export interface Slow {
 	returns: number;
 	strange: Strange | null;
 	arrival: Arrival | null;
+	parted: Parted | null;
+	suspect: Suspect | null;
 	steps: Step[];
 	pending: Step | null;
 	pendDeadlineMs: number;
@@ -284,6 +308,8 @@ export function newSlow(): Slow {
 		returns: 0,
 		strange: null,
 		arrival: null,
+		parted: null,
+		suspect: null,
 		steps: [],
 		pending: null,
 		pendDeadlineMs: 0,
@@ -312,6 +338,13 @@ export const triple = (a: Readonly<{ 0: number; 1: number; 2: number }>): Triple
 	a[0],
 	a[1],
 	a[2]
+];
+
+/** In float32, which takes half the room in stored state. */
+export const floats = (a: Triple): Triple => [
+	Math.fround(a[0]),
+	Math.fround(a[1]),
+	Math.fround(a[2])
 ];
 
 export const summed = (a: Triple, b: Triple): Triple => [a[0] + b[0], a[1] + b[1], a[2] + b[2]];

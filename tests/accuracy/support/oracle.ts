@@ -32,10 +32,13 @@ function heardAtMs(generated: Generated, nodeIndex: number): Float64Array {
 	return Float64Array.from(heard).sort();
 }
 
+/** Rows nearer than this belong to one burst, which the change itself set off. */
+const BURST_MS = 5000;
+
 /**
- * What would be said by one who knows the truth at every row heard and nothing between: a change lies in the
- * middle of its two rows, and over the grace time the state is not known (method 4). No detector can be
- * expected to be right more of the time.
+ * What would be said by one who knows the truth at every row heard and nothing between: a change lies at the
+ * first row of its burst, else in the middle of its two rows, and over the grace time the state is not known
+ * (method 4). No detector can be expected to be right for much more of the time.
  */
 function saidByOracle(generated: Generated, nodeIndex: number): Said[] {
 	const truth = truthOf(generated, generated.plan.nodes[nodeIndex]!.bayIndex);
@@ -43,17 +46,20 @@ function saidByOracle(generated: Generated, nodeIndex: number): Said[] {
 	let t = 0;
 	let lastMs = NaN;
 	let lastState: Said['state'] = 'unknown';
-	for (const atMs of heardAtMs(generated, nodeIndex)) {
+	const heard = heardAtMs(generated, nodeIndex);
+	heard.forEach((atMs, i) => {
 		while ((truth[t + 1]?.atMs ?? Infinity) <= atMs) t++;
 		const { state } = truth[t]!;
 		const silent = atMs - lastMs > GRACE_MS;
 		if (silent) said.push({ atMs: lastMs + GRACE_MS, state: 'unknown' });
 		if (silent || state !== lastState) {
-			said.push({ atMs: silent || Number.isNaN(lastMs) ? atMs : (lastMs + atMs) / 2, state });
+			const burst = heard[i + 1]! - atMs < BURST_MS;
+			const sharp = silent || burst || Number.isNaN(lastMs);
+			said.push({ atMs: sharp ? atMs : (lastMs + atMs) / 2, state });
 		}
 		lastMs = atMs;
 		lastState = state;
-	}
+	});
 	return said;
 }
 
