@@ -28,6 +28,7 @@ export interface Recording {
  */
 export async function record(sql: Sql, r: Recording, nowMs: number): Promise<Recorded> {
 	if (r.body.by !== r.me) return { ok: false, why: 'not_yours' };
+	await visits.lockWalk(sql, r.visitId);
 	const bay = await visits.bayOfStop(sql, r.body.stop);
 	const open = bay !== null && r.body.kind === 'outcome' ? await lockNotices(sql, bay) : [];
 	const stop = await visits.lockStop(sql, { ...r, stopId: r.body.stop });

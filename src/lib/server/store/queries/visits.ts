@@ -131,6 +131,11 @@ export async function lockStop(
 	return rows[0] === undefined ? null : { ...rows[0], walkTakenAtMs: walk.takenAtMs };
 }
 
+/** One at a time writes to a walk; the first statement, so that what is read after it is of now. */
+export async function lockWalk(sql: Sql, id: number): Promise<void> {
+	await select(sql, 'SELECT id FROM visit WHERE id = ? FOR UPDATE', [id]);
+}
+
 export async function bayOfStop(sql: Sql, stopId: number): Promise<number | null> {
 	const rows = await select<{ bayId: number }>(
 		sql,
