@@ -18,8 +18,18 @@ const READ = new Set(
 );
 /** Lower-case words with blanks or a capitalized word: 'asking for the bays', 'Close'. */
 const WORDLIKE = /\p{L}{2,}[,:;]? \p{L}{2,}|^\p{Lu}\p{Ll}+|\p{L}{2,}[.…]$/u;
-/** Signs of units and values that are the same in every language. */
-const SIGNS = /^(?:mG|mV|dBm|nT|mm|px|ms|ppm|MHz|kHz|min|km)$/;
+/** In script: a capitalized phrase, or nothing but words with blanks between. */
+const PHRASE = /^\p{Lu}\p{Ll}+.*[ .…]|^[\p{L}’]+(?:[,;:]? [\p{L}’]+)+[ .,…]*$|^\p{L}+ …$/u;
+/** Signs of units, formats and the product's name: the same in every language. */
+const SIGNS = /^(?:mG|mV|dBm|nT|mm|px|ms|min|km|CSV|PNG|API|Lodekeep)$/;
+/** Calls whose text is for the machine: selectors, media, keys of the messages. */
+const MACHINE = new Set([
+	'matchMedia',
+	'querySelector',
+	'querySelectorAll',
+	'closest',
+	'sheetName'
+]);
 
 const lettered = (text: string): boolean =>
 	(text.match(/\p{L}{2,}/gu) ?? []).some((word) => !SIGNS.test(word));
@@ -62,6 +72,7 @@ function branch(node: Branch, walked: Walk): void {
 	else if (node.type === 'Literal') phrase(node['start'], node['value'], walked);
 	else if (node.type === 'TemplateElement')
 		phrase(node['start'], (node['value'] as Branch)['cooked'], walked);
+	else if (node.type === 'CallExpression' && MACHINE.has(calleeOf(node))) return;
 	else if (node.type === 'BinaryExpression' || node.type === 'MemberExpression') {
 		for (const side of ['left', 'right', 'object'] as const)
 			if ((node[side] as Branch | undefined)?.type !== 'Literal') walk(node[side], walked);
@@ -77,6 +88,11 @@ function named(node: Branch, walked: Walk): void {
 	walk(node['value'], { ...walked, read: READ.has(name) });
 }
 
+function calleeOf(call: Branch): string {
+	const callee = call['callee'] as Branch;
+	return keyOf(callee.type === 'MemberExpression' ? (callee['property'] as Branch) : callee);
+}
+
 function keyOf(node: Branch): string {
 	const key: unknown = node['name'] ?? (node['key'] as Branch | undefined)?.['name'];
 	return typeof key === 'string' ? key : '';
@@ -88,6 +104,6 @@ function text(at: unknown, value: unknown, { read, note }: Walk): void {
 
 function phrase(at: unknown, value: unknown, { read, note }: Walk): void {
 	if (typeof value !== 'string' || !lettered(value)) return;
-	if (read ? WORDLIKE.test(value.trim()) || / /.test(value) : /^\p{Lu}\p{Ll}+.*[ .…]/u.test(value))
+	if (read ? WORDLIKE.test(value.trim()) || / /.test(value) : PHRASE.test(value.trim()))
 		note(at, value);
 }

@@ -20,5 +20,5 @@ export function passwordSentence(why: string): string {
 	const said = publicWords().trouble;
 	const [figure] = /\d+/.exec(why) ?? [];
 	if (figure === undefined) return why.startsWith('not') ? said.own : said.different;
-	return why.startsWith('at most') ? said.most(figure) : said.least(figure);
+	return /^at most/.test(why) ? said.most(figure) : said.least(figure);
 }

@@ -1,3 +1,5 @@
+import { words } from '$lib/format/messages';
+
 /** What the application answers its own pages, or why it did not. */
 export class AskError extends Error {
 	constructor(
@@ -34,7 +36,7 @@ export async function ask<T>(
 			signal: init.signal ?? AbortSignal.timeout(ANSWER_WITHIN_MS)
 		});
 	} catch {
-		throw new AskError(0, 'Lodekeep does not answer.');
+		throw new AskError(0, words().signIn.noAnswer);
 	}
 	if (!response.ok) throw await refusal(response);
 	const asOf = response.headers.get('site-as-of');
@@ -65,6 +67,6 @@ async function refusal(response: Response): Promise<AskError> {
 		detail?: string;
 		errors?: { pointer: string; detail: string }[];
 	};
-	const text = problem.detail ?? problem.title ?? `Lodekeep answered ${response.status}.`;
+	const text = problem.detail ?? problem.title ?? words().ui.answered(response.status);
 	return new AskError(response.status, text, problem.errors ?? []);
 }

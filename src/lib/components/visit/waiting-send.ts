@@ -1,3 +1,4 @@
+import { words } from '$lib/format/messages';
 import type { OpenedRow, WaitingRow } from './waiting-store';
 
 /**
@@ -43,7 +44,7 @@ export async function sendOne(
 async function judge(response: Response): Promise<Sent> {
 	const said = (await response.json().catch(() => ({}))) as { verdict?: string; detail?: string };
 	if (response.ok) return { how: said.verdict === 'added' ? 'added' : 'taken' };
-	const why = said.detail ?? `Lodekeep answered ${response.status}.`;
+	const why = said.detail ?? words().ui.answered(response.status);
 	if (response.status === 401 || response.status === 403) return { how: 'held', why };
 	const notNow = response.status >= 500 || [408, 425, 429].includes(response.status);
 	return notNow ? { how: 'later' } : { how: 'refused', why };

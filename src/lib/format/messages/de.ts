@@ -101,6 +101,8 @@ export const de: Messages = {
 		Connections: 'Anbindungen',
 		People: 'Personen',
 		Mail: 'Post',
+		'Mail settings': 'Posteinstellungen',
+		'All notices': 'Alle Meldungen',
 		Parameters: 'Parameter',
 		'How decided': 'Wie entschieden',
 		Notices: 'Meldungen',

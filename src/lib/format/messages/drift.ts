@@ -177,7 +177,7 @@ const de: Widened<typeof en> = {
 	nodeOf: (bay, serial) => `${bay}, Knoten ${serial}`,
 	lineTitle: 'Was der ganze Standort sah',
 	sum: (due, drifting, visit, mute) =>
-		`: Filmauffrischung fällig ${due}, driftend ${drifting}, ein Besuch ${visit}; ${mute} noch nicht zu beurteilen.`,
+		`: Filmauffrischung fällig ${due}, driftend ${drifting}, ein Einsatz ${visit}; ${mute} noch nicht zu beurteilen.`,
 	noHour: 'Noch ist keine Stunde abgeschlossen.',
 	closedTo: 'Abgeschlossen bis',
 	limits: (drifting, refresh, hours) =>
@@ -247,7 +247,7 @@ const de: Widened<typeof en> = {
 		driftingSince: (time) => `Driftet seit ${time}.`,
 		due: (reasons) => `Filmauffrischung fällig: ${reasons}.`,
 		since: (what, time) => `${what} (seit ${time})`,
-		visit: (why) => `Ein Besuch: ${why}.`,
+		visit: (why) => `Ein Einsatz: ${why}.`,
 		rate: (rate, days, limit) => `Rate: ${rate}${days === null ? '' : `, ${days} bis ${limit}`}.`,
 		next: (what) => `Nächstes: ${what}.`,
 		noHour: 'Noch ist keine Stunde beurteilt.',
@@ -335,9 +335,9 @@ const SAYS: Readonly<Record<string, string>> = {
 	'healed by the pulse that measured it': 'geheilt durch den Puls, der es maß',
 	'gain or field: weaker in the same direction':
 		'Verstärkung oder Feld: schwächer in derselben Richtung',
-	'a visit, no pulse cures it': 'ein Besuch, kein Puls heilt es',
+	'a visit, no pulse cures it': 'ein Einsatz, kein Puls heilt es',
 	'consistent with a tilt': 'mit einer Kippung verträglich',
-	'a visit: look whether the node sits level': 'ein Besuch: sehen, ob der Knoten eben sitzt',
+	'a visit: look whether the node sits level': 'ein Einsatz: sehen, ob der Knoten eben sitzt',
 	'steel or works near the node': 'Stahl oder Arbeiten nahe am Knoten',
 	'look at the bay; a new reference once it is seen empty':
 		'den Stellplatz ansehen; ein neuer Bezug, sobald er leer gesehen ist',
@@ -364,7 +364,7 @@ const SAYS: Readonly<Record<string, string>> = {
 		'warten: ein Puls wurde ausgelöst, die nächste Stunde sagt es'
 };
 const HEADS: readonly (readonly [string, string])[] = [
-	['a visit: ', 'ein Besuch: '],
+	['a visit: ', 'ein Einsatz: '],
 	['wait: ', 'warten: ']
 ];
 

@@ -110,6 +110,8 @@ export const en = {
 		Connections: 'Connections',
 		People: 'People',
 		Mail: 'Mail',
+		'Mail settings': 'Mail settings',
+		'All notices': 'All notices',
 		Parameters: 'Parameters',
 		'How decided': 'How decided',
 		Notices: 'Notices',

@@ -15,8 +15,11 @@ const en = {
 	password: 'Change your password first.',
 	noSite: 'This site is not there, or not among your sites.',
 	noBay: (code: string) => `There is no bay ${code} here, or not among your sites.`,
+	noWalk: 'There is no such walk.',
+	noMail: 'There is no such mail.',
 	noWall: 'This wall link is not known, or it was revoked, or its time is over.',
 	attempts: 'Too many attempts. Try again in a minute.',
+	language: 'language: must be en or de.',
 	broke: 'Something broke here.'
 };
 const de: Widened<typeof en> = {
@@ -34,8 +37,11 @@ const de: Widened<typeof en> = {
 	noSite: 'Diesen Standort gibt es nicht, oder er gehört nicht zu Ihren.',
 	noBay: (code) =>
 		`Einen Stellplatz ${code} gibt es hier nicht, oder er gehört nicht zu Ihren Standorten.`,
+	noWalk: 'Diesen Gang gibt es nicht.',
+	noMail: 'Diese Post gibt es nicht.',
 	noWall: 'Diesen Wandlink gibt es nicht, oder er wurde widerrufen, oder seine Zeit ist vorbei.',
 	attempts: 'Zu viele Versuche. Versuchen Sie es in einer Minute wieder.',
+	language: 'language: muss en oder de sein.',
 	broke: 'Hier ist etwas kaputtgegangen.'
 };
 export const errorWords = area(en, de);

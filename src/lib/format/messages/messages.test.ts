@@ -26,6 +26,40 @@ afterEach(() => {
 	speakFrom(() => en);
 });
 
+/** Every area module beside this file that was made by `area`. */
+interface Both {
+	both: { en: object; de: object };
+}
+const AREAS = Object.entries(
+	import.meta.glob<Record<string, unknown>>(['./*.ts', '!./*.test.ts'], { eager: true })
+).flatMap(([file, module]) =>
+	Object.values(module)
+		.filter((value): value is Both => typeof value === 'function' && 'both' in value)
+		.map(({ both }) => ({ file, ...both }))
+);
+
+describe.each(AREAS)('the words of $file', ({ en: english, de: german }) => {
+	test('hold the same keys in both languages, no sentence left in English', () => {
+		expect(leaves(german)).toEqual(leaves(english));
+		const [all, other] = [texts(english), texts(german)];
+		const sentences = all.filter((text) => typeof text === 'string' && /\w+ \w+ \w+/.test(text));
+		expect(sentences.filter((text) => other.includes(text))).toEqual([]);
+	});
+	test('use the reserved words: never refresh alone, never cancelled', () => {
+		for (const text of texts(english)) {
+			const said = typeof text === 'function' ? text.toString() : String(text);
+			expect(said).not.toMatch(/cancel/i);
+			if (typeof text === 'string' && !/^refresh: /.test(text))
+				expect(text).not.toMatch(/(?<!film )\brefresh/i);
+		}
+		for (const text of texts(german))
+			if (typeof text === 'string') expect(text).not.toMatch(/(?<!Film)auffrischung|storniert/i);
+	});
+});
+test('there are area modules to look at', () => {
+	expect(AREAS.length).toBeGreaterThan(10);
+});
+
 describe('both languages', () => {
 	test('hold the same keys, and functions of the same values', () => {
 		expect(leaves(de)).toEqual(leaves(en));

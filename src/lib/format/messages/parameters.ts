@@ -223,7 +223,7 @@ const de: Widened<typeof en> = {
 		readings: ['Messung', 'Messungen'],
 		returns: ['Rückkehr', 'Rückkehren'],
 		periods: ['Periode', 'Perioden'],
-		visits: ['Besuch', 'Besuche']
+		visits: ['Wiederkehr', 'Wiederkehren']
 	},
 	group: {
 		taken: 'Wann ein Stellplatz als belegt gilt',
@@ -284,7 +284,7 @@ const de: Widened<typeof en> = {
 		learnSigmaMg: 'Rauschen höchstens',
 		returnMg: 'Zurück am Bezug innerhalb',
 		returnsToProve: 'Rückkehren, die einen vorläufigen bestätigen',
-		swapVisits: 'Besuche, die einen vorläufigen ersetzen',
+		swapVisits: 'Wiederkehren, die einen vorläufigen ersetzen',
 		longStayH: 'Lang ab',
 		longStayFactor: 'Lang gegen das Übliche des Platzes',
 		longStayMaxH: 'Geprüft spätestens nach',
@@ -295,9 +295,9 @@ const de: Widened<typeof en> = {
 		driftingHours: 'Driftet seit',
 		refreshMg: 'Filmauffrischung fällig ab',
 		refreshHours: 'Filmauffrischung fällig nach',
-		visitOffsetMg: 'Sprung des Offsets, der einen Besuch heißt',
+		visitOffsetMg: 'Sprung des Offsets, der einen Einsatz heißt',
 		visitOffsetDays: 'Zwei solche Sprünge binnen',
-		visitGain: 'Fehler der Verstärkung, der einen Besuch heißt',
+		visitGain: 'Fehler der Verstärkung, der einen Einsatz heißt',
 		tripleDenominatorC: 'Die Temperatur muss sich biegen um',
 		minTriples: 'Tripel von Stunden mindestens',
 		slopeDays: 'Tage zurück',

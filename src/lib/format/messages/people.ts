@@ -79,7 +79,7 @@ const de: Widened<typeof en> = {
 	switchOn: 'Einschalten',
 	may: {
 		operator: 'Betrieb: sieht Pläne, stellt fest, sperrt, ruft jemanden',
-		maintenance: 'Instandhaltung: all das, dazu Knoten, Filmauffrischungen, Besuche',
+		maintenance: 'Instandhaltung: all das, dazu Knoten, Filmauffrischungen, Einsätze',
 		integrator: 'Anbindung: Schlüssel und Webhooks, liest Belegung und Telemetrie',
 		admin: 'Verwaltung: alles, dazu Personen und Standorte'
 	},

@@ -29,6 +29,7 @@ const en = {
 	leaveDemoWhat: (names: string) =>
 		`${names}: its site, nodes, people and keys go, and its simulator ends. It does not come back; your own sites stay as they are.`,
 	leave: 'Take it away',
+	needsAdmin: 'This needs an admin of all sites.',
 	demoGone: 'The demo is gone.'
 };
 const de: Widened<typeof en> = {
@@ -59,6 +60,7 @@ const de: Widened<typeof en> = {
 	leaveDemoWhat: (names) =>
 		`${names}: Standort, Knoten, Personen und Schlüssel gehen, und der Simulator endet. Sie kommt nicht wieder; Ihre eigenen Standorte bleiben, wie sie sind.`,
 	leave: 'Entfernen',
+	needsAdmin: 'Das braucht jemanden aus der Verwaltung mit allen Standorten.',
 	demoGone: 'Die Vorführung ist fort.'
 };
 export const sitesWords = area(en, de);

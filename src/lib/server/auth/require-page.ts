@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { error } from '@sveltejs/kit';
 import type { Role } from '$lib/schemas/roles';
 import { instance } from '$lib/server/api/instance';
@@ -28,14 +29,14 @@ export async function requirePage(
 	rule: PageRule & { site?: string } = {}
 ): Promise<PageReach> {
 	const { reach } = locals;
-	if (reach?.role == null) error(401, 'Sign in first.');
-	if (reach.mustChangePassword) error(403, 'Change your password first.');
+	if (reach?.role == null) error(401, errorWords().signIn);
+	if (reach.mustChangePassword) error(403, errorWords().password);
 	if (rule.roles !== undefined && !rule.roles.includes(reach.role)) {
-		error(403, `This sheet is not for the role '${reach.role}'.`);
+		error(403, errorWords().role);
 	}
 	const known = { ...reach, role: reach.role };
 	if (rule.site === undefined) return { reach: known, site: null };
 	const site = await sites.bySlug(instance().store.db, rule.site);
-	if (site === null || !reaches(reach, site.id)) error(404, 'Not there, or not among your sites.');
+	if (site === null || !reaches(reach, site.id)) error(404, errorWords().noSite);
 	return { reach: known, site };
 }

@@ -16,7 +16,7 @@ export const actions: Actions = {
 		if (personId === null) error(401, errorWords().signIn);
 		const wanted = (await request.formData()).get('language');
 		if (typeof wanted !== 'string' || !isLanguage(wanted))
-			return fail(400, { trouble: 'language: must be en or de.' });
+			return fail(400, { trouble: errorWords().language });
 		const app = instance();
 		await keepLanguage(app.store.db, personId, wanted);
 		setLanguage(cookies, wanted, app.secureCookies);

@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { mailSheetWords } from '$lib/format/messages/mail-sheets';
 import { mailForm, settingsFrom } from '$lib/server/notices/settings-form';
 import { saveSettings } from '$lib/server/notices/settings';
@@ -16,7 +17,7 @@ async function own(locals: App.Locals) {
 	const { pool } = instance().store;
 	const all = (await mailPeople.all(pool)).map(recipientOf);
 	const me = all.find(({ id }) => id === personIdOf(reach));
-	if (me === undefined) error(401, 'Sign in first.');
+	if (me === undefined) error(401, errorWords().signIn);
 	return { reach, me, all };
 }
 

@@ -1,3 +1,4 @@
+import { sitesWords } from '$lib/format/messages/sites';
 import { instance } from '$lib/server/api/instance';
 import { requireRole } from '$lib/server/auth/page-guard';
 import * as audit from '$lib/server/store/queries/audit';
@@ -10,7 +11,7 @@ export const actions: Actions = {
 	/** The demo leaves in one step: sites, nodes, people, keys. Its simulator ends by itself. */
 	leaveDemo: async ({ locals }) => {
 		const { actor, sites } = requireRole(locals, ['admin']);
-		if (sites !== 'all') return fail(403, { trouble: 'This needs an admin of all sites.' });
+		if (sites !== 'all') return fail(403, { trouble: sitesWords().needsAdmin });
 		const app = instance();
 		const nowMs = Date.now();
 		const left = await transaction(app.store, async (tx) => {

@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { instance } from '$lib/server/api/instance';
 import { requireRole } from '$lib/server/auth/page-guard';
 import { read } from '$lib/server/outbox/catcher';
@@ -8,6 +9,6 @@ export const load: PageServerLoad = async ({ locals, params, setHeaders }) => {
 	requireRole(locals, ['admin']);
 	setHeaders({ 'cache-control': 'no-store' });
 	const mail = await read(instance().config.dataDir, params.id);
-	if (mail === null) error(404, 'There is no such mail.');
+	if (mail === null) error(404, errorWords().noMail);
 	return { mail };
 };

@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { instance } from '$lib/server/api/instance';
 import { requireRole } from '$lib/server/auth/page-guard';
 import { readDrawn } from '$lib/server/outbox/catcher';
@@ -17,7 +18,7 @@ const CSP = [
 export const GET: RequestHandler = async ({ locals, params }) => {
 	requireRole(locals, ['admin']);
 	const html = await readDrawn(instance().config.dataDir, params.id);
-	if (html === null) error(404, 'There is no such mail.');
+	if (html === null) error(404, errorWords().noMail);
 	return new Response(html, {
 		headers: {
 			...{ 'content-type': 'text/html; charset=utf-8', 'cache-control': 'no-store' },

@@ -120,7 +120,7 @@ export const CHAPTERS_DE: readonly Chapter[] = [
 				title: 'Wann eine Filmauffrischung fällig ist',
 				text: (say) => [
 					`Nach einer Übersteuerung ohne Puls seitdem, bei umgeklapptem Film, oder bei ${say('refreshMg')} unerklärt während ${say('refreshHours')} und keinem Puls, seit es begann. Ein Offset oder eine Verstärkung, die wanderte, ist kein Grund: Kein Puls heilt sie.`,
-					`Ein Offset, der binnen ${say('visitOffsetDays')} zweimal um ${say('visitOffsetMg')} springt, oder eine Verstärkung, die nach einem Puls um ${say('visitGain')} daneben ist, heißt einen Besuch.`
+					`Ein Offset, der binnen ${say('visitOffsetDays')} zweimal um ${say('visitOffsetMg')} springt, oder eine Verstärkung, die nach einem Puls um ${say('visitGain')} daneben ist, heißt einen Einsatz.`
 				]
 			}
 		]

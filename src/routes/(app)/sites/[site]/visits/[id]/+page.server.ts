@@ -1,3 +1,4 @@
+import { errorWords } from '$lib/format/messages/error';
 import { error } from '@sveltejs/kit';
 import { FITTERS } from '$lib/schemas/visits';
 import { instance } from '$lib/server/api/instance';
@@ -11,6 +12,6 @@ export const load: PageServerLoad = async ({ locals, params }) => {
 	const walk = Number.isInteger(visitId)
 		? await walkView(instance().store, { site, reach, visitId }, Date.now())
 		: null;
-	if (walk === null) error(404, 'There is no such walk.');
+	if (walk === null) error(404, errorWords().noWalk);
 	return { walk };
 };
