@@ -1,5 +1,6 @@
 import { send } from '$lib/components/live/ask';
 import { session } from '$lib/components/live/session.svelte';
+import { words } from '$lib/format/messages';
 import { marginNotes } from '$lib/ui/margin-notes.svelte';
 
 /** One deed at a time: whether it is under way and what went wrong. */
@@ -28,7 +29,7 @@ export function deed() {
 				return true;
 			} catch (error) {
 				session.heed(error);
-				trouble = error instanceof Error ? error.message : 'That did not work.';
+				trouble = error instanceof Error ? error.message : words().signIn.failed;
 				return false;
 			} finally {
 				busy = false;
