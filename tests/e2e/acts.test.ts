@@ -97,11 +97,11 @@ test('somebody sent for is seen by the other, taken by one, and only once', asyn
 	await dialog.getByLabel('What is to be done there').fill('look whether the node is still there');
 	await dialog.getByRole('button', { name: 'Send someone' }).click();
 	await dialog.waitFor({ state: 'detached' });
-	await fitter.goto('/sites/tallow-yard/sent-for');
+	await fitter.goto('/sites/tallow-yard/visits');
 	await alive(fitter);
-	await fitter.getByRole('button', { name: /Take or end/ }).click();
-	await fitter.getByRole('button', { name: 'I take it' }).click();
-	await fitter.getByText('You have A-05.').waitFor();
+	await fitter.getByLabel('Take A-05 along').check();
+	await fitter.getByRole('button', { name: 'Take 1 bay into my walk' }).click();
+	await fitter.getByRole('heading', { name: /^Walk \d+ at/ }).waitFor();
 	await note.getByText(/Mads Tense \(MT\) has it/).waitFor({ timeout: 20_000 });
 	const twice = await operator.request.post(
 		`${office.app.origin}/api/desk/sites/tallow-yard/requests`,
