@@ -5,6 +5,7 @@ import { composeDue } from '$lib/server/notices/compose-mail';
 import { apply } from '$lib/server/notices/apply';
 import { recipientOf } from '$lib/server/notices/people';
 import type { Step } from '$lib/server/notices/reconcile';
+import { openDelivery, type Delivery } from '$lib/server/outbox/transport';
 import { startSender } from '$lib/server/outbox/sender';
 import { createSecret } from '$lib/server/secret';
 import { connect, type Store } from '$lib/server/store/connect';
@@ -77,6 +78,25 @@ async function countingServer() {
 	return { ids, server, url: `smtp://127.0.0.1:${port}` };
 }
 
+/** Hands over and notes how long each mail took, ms. */
+function timed(delivery: Delivery, tookMs: number[]): Delivery {
+	return {
+		deliver: async (mail) => {
+			const begun = performance.now();
+			await delivery.deliver(mail);
+			tookMs.push(performance.now() - begun);
+		},
+		close: () => {
+			delivery.close();
+		}
+	};
+}
+
+function p99(values: readonly number[]): number {
+	const sorted = [...values].sort((a, b) => a - b);
+	return Math.round((sorted[Math.ceil(0.99 * sorted.length) - 1] ?? 0) * 10) / 10;
+}
+
 async function main(): Promise<void> {
 	const database = await startDatabase({ disk: true });
 	const store = connect(database.url, { connections: 20 });
@@ -90,8 +110,12 @@ async function main(): Promise<void> {
 		await openNotices(store, siteIds, nowMs);
 		const opened = performance.now();
 		let composed = 0;
-		for (let n = -1; n !== 0; composed += n)
+		const roundMs: number[] = [];
+		for (let n = -1; n !== 0; composed += n) {
+			const from = performance.now();
 			n = await composeDue({ store, secret, origin: 'https://keep.example' }, nowMs);
+			if (n > 0) roundMs.push((performance.now() - from) / n);
+		}
 		const written = performance.now();
 		const parts = {
 			...{
@@ -102,7 +126,10 @@ async function main(): Promise<void> {
 			},
 			config: { smtpUrl: mailServer.url, mailFrom: 'keep@lodekeep.example', mailCatcherPort: 0 }
 		};
-		const senders = [startSender(parts), startSender(parts)];
+		const tookMs: number[] = [];
+		const senders = [1, 2].map(() =>
+			startSender({ ...parts, delivery: timed(openDelivery(parts.config), tookMs) })
+		);
 		while (mailServer.ids.size < MAILS && performance.now() - written < 600_000)
 			await new Promise((go) => setTimeout(go, 100));
 		const arrived = performance.now();
@@ -119,6 +146,7 @@ async function main(): Promise<void> {
 			...{ openS: seconds(begun, opened), composeS: seconds(opened, written) },
 			...{ sendS: seconds(written, arrived), composedPerS: rate(composed, opened, written) },
 			sentPerS: rate(mailServer.ids.size, written, arrived),
+			...{ composeP99Ms: p99(roundMs), deliverP99Ms: p99(tookMs) },
 			lost: MAILS - mailServer.ids.size,
 			doubled: [...mailServer.ids.values()].filter((n) => n > 1).length
 		};

@@ -103,10 +103,11 @@ export async function thread(
 ): Promise<string[]> {
 	const rows = await select<{ messageId: string }>(
 		sql,
-		`SELECT w.message_id AS messageId FROM mail_wish w JOIN notice n ON n.id = w.notice_id
-		 WHERE w.person_id = ? AND w.message_id IS NOT NULL AND (n.node_id IN (?) OR n.id IN (?))
+		`SELECT w.message_id AS messageId
+		 FROM (SELECT id FROM notice WHERE id IN (?) UNION SELECT id FROM notice WHERE node_id IN (?)) n
+		 JOIN mail_wish w ON w.notice_id = n.id AND w.person_id = ? AND w.message_id IS NOT NULL
 		 GROUP BY w.message_id ORDER BY MIN(w.id) LIMIT 50`,
-		[personId, of.nodeIds.length === 0 ? [0] : of.nodeIds, of.noticeIds]
+		[of.noticeIds, of.nodeIds.length === 0 ? [0] : of.nodeIds, personId]
 	);
 	return rows.map(({ messageId }) => messageId);
 }
