@@ -69,6 +69,8 @@ const PRINTS = [
 /** Share of pixels that differ by more than a shade, told by the browser itself. */
 async function difference(browser: Browser, a: Buffer, b: Buffer): Promise<number> {
 	const page = await browser.newPage();
+	// tsx names functions through this helper, which a page does not have.
+	await page.evaluate('globalThis.__name = (named) => named');
 	const share = await page.evaluate(
 		async ([one, other]) => {
 			const pixels = async (data: string) => {

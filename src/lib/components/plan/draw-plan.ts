@@ -8,16 +8,13 @@ import {
 	type SeenBay
 } from './draw-bays';
 import { drawArrows, type DriftArrow } from './drift-arrows';
+import { drawFlag, type Flag } from './flags';
 import { closedPath, line, textWidth, type Path, type Pen } from './pen';
 import type { PlanLayout, Xy } from './types';
 import { BORDER_PX, stepM, toPage, toScreen, type Size, type View } from './view';
+import { drawZoneNames } from './zone-names';
 
-export interface Flag {
-	/** Index of the bay. */
-	bay: number;
-	/** Initials of who has it; null = nobody yet. */
-	initials: string | null;
-}
+export type { Flag } from './flags';
 export interface Scene {
 	layout: PlanLayout;
 	view: View;
@@ -90,31 +87,6 @@ function seenBays({ layout, view, size, marks }: Scene): (SeenBay | null)[] {
 	});
 }
 
-function drawZoneNames(pen: Pen, { layout, view, zoneNames, letterLeastPx }: Scene): void {
-	const tops = new Map<string, { x: number; y: number }>();
-	for (const bay of layout.bays) {
-		const [top, left] = [
-			Math.min(...bay.corners.map((c) => c.y)),
-			Math.min(...bay.corners.map((c) => c.x))
-		];
-		const old = tops.get(bay.zone);
-		tops.set(bay.zone, { x: Math.min(left, old?.x ?? left), y: Math.min(top, old?.y ?? top) });
-	}
-	const sizePx = Math.max(12, letterLeastPx ?? 0);
-	for (const [zone, corner] of tops) {
-		const at = toScreen(view, corner);
-		pen.text(
-			zoneNames.get(zone) ?? zone,
-			{ x: at.x, y: at.y - 4 - sizePx / 2 },
-			{
-				ink: 'ink-2',
-				sizePx,
-				bold: true
-			}
-		);
-	}
-}
-
 /** A thin revision cloud around what changed in the last minute. */
 function drawRevisions(pen: Pen, { layout, view, revised }: Scene): void {
 	const clouds = revised.flatMap((at) => {
@@ -150,46 +122,6 @@ function cloud(corners: readonly Xy[]): Path {
 		}
 	});
 	return closedPath(points);
-}
-
-/** The datum triangle: ochre while nobody has it, open in ink with initials once somebody has. */
-function drawFlag(pen: Pen, { layout, view, letterLeastPx }: Scene, flag: Flag): void {
-	const bay = layout.bays[flag.bay];
-	if (bay === undefined) return;
-	const corners = bay.corners.map((c) => toScreen(view, c));
-	const centre = toScreen(view, bay.centre);
-	const large = sizeOf(bay.shortM * view.scale) === 'large';
-	const [w, h] = large ? [6, 10] : [4.5, 8];
-	// On the rim straight above the middle: at a corner it could be the neighbour's.
-	const tip = large ? { x: centre.x, y: rimAbove(corners, centre) + 4 } : centre;
-	const triangle = closedPath([
-		{ x: tip.x - w, y: tip.y - h },
-		{ x: tip.x + w, y: tip.y - h },
-		tip
-	]);
-	pen.fill([triangle], flag.initials === null ? 'accent' : 'paper');
-	pen.stroke([triangle], { ink: flag.initials === null ? 'paper' : 'ink', width: 1.2 });
-	if (flag.initials === null) pen.stroke([triangle], { ink: 'accent', width: 0.8 });
-	else
-		pen.text(
-			flag.initials,
-			{ x: tip.x + w + 3, y: tip.y - h / 2 },
-			{
-				ink: 'ink',
-				sizePx: Math.max(10, letterLeastPx ?? 0),
-				cleared: true
-			}
-		);
-}
-
-/** Where a line straight up from inside leaves an outline, px. */
-function rimAbove(corners: readonly { x: number; y: number }[], from: { x: number; y: number }) {
-	const crossings = corners.flatMap((a, at) => {
-		const b = corners[(at + 1) % corners.length] ?? a;
-		if (a.x > from.x === b.x > from.x) return [];
-		return [a.y + ((from.x - a.x) / (b.x - a.x)) * (b.y - a.y)];
-	});
-	return Math.min(from.y, ...crossings);
 }
 
 function drawPicked(pen: Pen, scene: Scene): void {

@@ -231,6 +231,15 @@ export const de: Messages = {
 		noLongerKnown: (bays, codes) => `${bays} nicht mehr bekannt: ${codes}`,
 		noDoubt: 'kein neuer Zweifel',
 		noBay: 'Dieser Standort hat noch keinen Stellplatz.',
+		notDrawn: (n) =>
+			n === 1
+				? 'Ein Stellplatz, sein Umriss ist nicht eingetragen.'
+				: `${n} Stellplätze, ihre Umrisse sind nicht eingetragen.`,
+		notDrawnCure: 'Sie stehen in der Tabelle; Umrisse kommen als GeoJSON über die API.',
+		alsoNotDrawn: (n) =>
+			n === 1
+				? 'Ein Stellplatz ohne Umriss steht nur in der Tabelle.'
+				: `${n} Stellplätze ohne Umriss stehen nur in der Tabelle.`,
 		noBayCure: 'Stellplätze kommen über die API hinzu, als GeoJSON.',
 		gone: (code) => `Einen Stellplatz ${code} gibt es hier nicht (mehr).`,
 		keyPlan: 'Übersicht: der gezeigte Teil des Standorts',

@@ -241,6 +241,15 @@ export const en = {
 		noLongerKnown: (bays: string, codes: string) => `${bays} no longer known: ${codes}`,
 		noDoubt: 'no new doubt',
 		noBay: 'This site has no bay yet.',
+		notDrawn: (n: number) =>
+			n === 1
+				? 'One bay, and no outline of it is entered.'
+				: `${n} bays, and no outline of them is entered.`,
+		notDrawnCure: 'They are in the table; outlines come as GeoJSON through the API.',
+		alsoNotDrawn: (n: number) =>
+			n === 1
+				? 'One bay without an outline stands only in the table.'
+				: `${n} bays without an outline stand only in the table.`,
 		noBayCure: 'Bays are added through the API, as GeoJSON.',
 		gone: (code: string) => `There is no bay ${code} here (any more).`,
 		keyPlan: 'Key plan: the part of the site that is shown',
