@@ -95,7 +95,10 @@ function leavesNow(n: Node, step: Step, { back, arrival, j }: Parted): boolean {
 
 /** What moved the field then has moved on: the vehicle's level is back, within the time of a queue. */
 function undoesParting(n: Node, step: Step, { j, atMs }: Parted): boolean {
-	if (step.atMs - atMs > n.params.queueMaxS * MS_PER_S) return false;
+	const { queueMaxS, queueFlatOnRatio } = n.params;
+	if (step.atMs - atMs > queueMaxS * MS_PER_S) return false;
+	// More than that does not come from the lane.
+	if (size3(j) >= queueFlatOnRatio * onMg(n)) return false;
 	return sumSize(step.j, j) <= EXACT_SHARE * size3(j);
 }
 

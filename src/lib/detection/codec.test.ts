@@ -157,6 +157,8 @@ function fullest(): Slow {
 		strange: {
 			visits: 2,
 			out: [0.1, 0.2, 0.3],
+			first: floats([0.1, 0.2, 0.3]),
+			differ: true,
 			moves: Array.from({ length: 8 }, () => ({
 				to: 'empty' as const,
 				atMs: 1_795_593_001_923,

@@ -194,23 +194,51 @@ function learnedUnderVehicle(visits: number): Street {
 	return street;
 }
 
-test('a field that the reference lacks and that visits return to: the reference may hold a vehicle', () => {
-	expect(learnedUnderVehicle(0).view().doubt).toBeNull();
-	expect(learnedUnderVehicle(1).view().doubt?.reason).toBe('reference may hold a vehicle');
+test('the third spell that ends at one field that the reference lacks: the reference may hold a vehicle', () => {
+	expect(learnedUnderVehicle(2).view().doubt).toBeNull();
+	expect(learnedUnderVehicle(3).view().doubt?.reason).toBe('reference may hold a vehicle');
 });
 
-test('seen three times that field takes the place of the provisional reference and history is told anew', () => {
-	const street = learnedUnderVehicle(2);
+/** One and the same vehicle comes six times to a bay whose returns lie `offMg` from its provisional reference. */
+function sameVehicle(offMg: number): Street {
+	const street = new Street().commission('rule');
+	const home = plus(QUIET, [offMg, 0, 0]);
+	const taken = plus(QUIET, OTHER[0]!);
+	for (let k = 0; k < 6; k++) {
+		const atMs = READY + k * 20 * MIN;
+		street.play(
+			drives(1, atMs, k === 0 ? QUIET : home, taken),
+			beats(1, atMs + MIN, atMs + 10 * MIN, taken),
+			drives(1, atMs + 10 * MIN, taken, home),
+			beats(1, atMs + 11 * MIN, atMs + 20 * MIN, home)
+		);
+	}
+	return street;
+}
+
+test.each([5, 15, 28])(
+	'one vehicle that parks alike six times never takes the reference’s place, returns %i mG off it',
+	(offMg) => {
+		const street = sameVehicle(offMg);
+		expect(street.told.filter(({ kind }) => kind === 'accepted')).toHaveLength(1);
+		expect(street.voids()).toEqual([]);
+		expect(street.view().state).toBe('vacant');
+	}
+);
+
+test('seen five times between vehicles that differ, that field takes the place of the provisional reference and history is told anew', () => {
+	const street = learnedUnderVehicle(4);
 	expect(street.view()).toMatchObject({ state: 'vacant', doubt: null });
 	expect(street.voids().map(({ type }) => type)).toContain('known');
-	const anew = street.entries().slice(-6);
+	const anew = street.entries().slice(-10);
+	const visit = [
+		['arrival', 'occupied'],
+		['departure', 'vacant']
+	];
 	expect(anew.map(({ type, state }) => [type, state])).toEqual([
 		['known', 'occupied'],
 		['departure', 'vacant'],
-		['arrival', 'occupied'],
-		['departure', 'vacant'],
-		['arrival', 'occupied'],
-		['departure', 'vacant']
+		...[1, 2, 3, 4].flatMap(() => visit)
 	]);
 	for (const { confidence } of anew) expect(confidence).toBeLessThanOrEqual(0.9);
 });

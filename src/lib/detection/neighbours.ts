@@ -4,7 +4,7 @@ import { evidence, named, stepWords } from './evidence';
 import { noteSuspect } from './film-suspect';
 import { isArrival, judge, startStay, takeVacant, type Overlap } from './judge';
 import { watchReference } from './provisional';
-import { aisleLimitMg, takeAisle } from './queue';
+import { aisleLimitMg, markAisleUndone, takeAisle } from './queue';
 import {
 	floats,
 	summed,
@@ -110,6 +110,7 @@ function decide(g: Group, n: Node, step: Step, atMs: number): void {
 		}
 	}
 	markUndone(n, step);
+	markAisleUndone(n, step);
 	for (const m of n.near) resolve(g, m, atMs, 'neighbour');
 }
 

@@ -11,7 +11,7 @@ const KEYS: readonly string[] =
 	aisle refreshWhy slope settle closedUntilMs longCheckMs longAsked longStay stayNo lastPulseMs cap stays sampled
 	entries j fromMs toMs newMs burst uncertaintyS settledMs gapS riseS peakMg clipped became before by byJ
 	checkAfterMs step deadlineMs learnedAtMs fieldMg sigmaMg tempC offsetMg readings
-	magnet baseline parted suspect back first`.split(/\s+/);
+	magnet baseline parted suspect back first differ`.split(/\s+/);
 const KEY_INDEX = new Map(KEYS.map((key, index) => [key, index]));
 const OTHER_KEY = 255;
 /** Strings that can be named again by one byte. */

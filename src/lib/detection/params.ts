@@ -96,9 +96,9 @@ export const PARAMS = {
 	learnSigmaMg: spec(3, 0.5, 10, 'mG', 'a field noisier than this is not quiet'),
 	returnMg: spec(10, 3, 50, 'mG', 'a field this near to the reference has come back to it'),
 	swapVisits: spec(
-		3,
+		5,
 		0,
-		10,
+		5,
 		'visits',
 		'a provisional reference gives way to a field that stays return to so often; 0 = never'
 	),

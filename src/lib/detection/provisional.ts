@@ -1,14 +1,28 @@
 import { carriedConfidence, HOLDS_VEHICLE } from './confidence';
 import { doubtIt, enter, voidEntry } from './entries';
 import { evidence } from './evidence';
-import { summed, touch, triple, type Group, type Node, type Step, type Strange } from './state';
+import { atReference } from './reference';
+import {
+	floats,
+	summed,
+	touch,
+	triple,
+	type Group,
+	type Node,
+	type Step,
+	type Strange
+} from './state';
 import { onMg } from './thresholds';
-import { set3, size3, sumSize } from './vec';
+import { apart, set3, size3, sumSize } from './vec';
 
 /** A vehicle's step here is at least this many thresholds: what passes beside the bay is smaller. */
 const VEHICLE_ON = 2;
 /** A vehicle's leaving repeats its coming within this share. */
-const SAME_SHARE = 0.15;
+const SAME_SHARE = 0.05;
+/** Visits to an empty bay are by vehicles that differ by this share of their field, or one of them is no vehicle. */
+const OTHER_SHARE = 0.25;
+/** The third occupied spell that ends at the strange field; the first time it was only come upon. */
+const DOUBT_VISITS = 4;
 const MOST_MOVES = 8;
 
 const doubtful = (n: Node): boolean =>
@@ -16,8 +30,10 @@ const doubtful = (n: Node): boolean =>
 
 /**
  * A provisional reference may have been learned under a vehicle (method 3). Then the field it lacks, the empty
- * bay's, is the one that comes back after every visit. Seen twice that is a doubt, seen `swapVisits` times it
- * takes the reference's place, and the history since the first time is told anew.
+ * bay's, is the one that comes back after every visit. The third spell that ends there is a doubt; seen
+ * `swapVisits` times, between vehicles that differ, it takes the reference's place and the history since the first
+ * time is told anew. One and the same vehicle, however often it comes, leaves the field at the reference or at one
+ * other field, never at several.
  */
 export function watchReference(g: Group, n: Node, step: Step, atMs: number): void {
 	const { slow } = n;
@@ -27,7 +43,14 @@ export function watchReference(g: Group, n: Node, step: Step, atMs: number): voi
 	}
 	if (slow.strange === null) {
 		if (step.became === 'arrival') {
-			slow.strange = { visits: 1, out: null, moves: [move('empty', step)], entries: [] };
+			slow.strange = {
+				visits: 1,
+				out: null,
+				first: null,
+				differ: false,
+				moves: [move('empty', step)],
+				entries: []
+			};
 			slow.strange.entries.push({ type: 'arrival', atMs: step.atMs });
 			touch(n);
 		}
@@ -50,7 +73,7 @@ function forget(n: Node): void {
 
 function leave(n: Node, strange: Strange, step: Step): void {
 	if (size3(step.j) < VEHICLE_ON * onMg(n)) return;
-	if (strange.moves.length >= MOST_MOVES) {
+	if (strange.moves.length >= MOST_MOVES || atReference(n, n.fast.level)) {
 		forget(n);
 		return;
 	}
@@ -67,15 +90,20 @@ function comeBack(g: Group, n: Node, strange: Strange, step: Step, atMs: number)
 		return;
 	}
 	const visits = strange.visits + 1;
+	const full = strange.moves.length >= MOST_MOVES;
+	const first = strange.first ?? floats(out);
 	const back: Strange = {
 		...strange,
 		visits,
 		out: null,
+		first,
+		differ: strange.differ || apart(out, first) > OTHER_SHARE * size3(first),
 		moves: [...strange.moves, move('empty', step)]
 	};
-	n.slow.strange = back;
-	if (n.params.swapVisits > 0 && visits >= n.params.swapVisits) swap(g, n, back, atMs);
-	else if (visits >= 2) doubtIt(n, HOLDS_VEHICLE, atMs);
+	n.slow.strange = full ? strange : back;
+	const { swapVisits } = n.params;
+	if (swapVisits > 0 && visits >= swapVisits && back.differ) swap(g, n, back, atMs);
+	else if (visits >= DOUBT_VISITS) doubtIt(n, HOLDS_VEHICLE, atMs);
 }
 
 /** The field that keeps coming back is the empty bay's: reference and history are put right. */

@@ -93,6 +93,20 @@ describe('queue in the aisle', () => {
 	});
 });
 
+test('what stays when the like step elsewhere in the row is undone is parked, since its own time', () => {
+	const street = row();
+	queueStands(street, 4);
+	const t = READY + 4 * MIN;
+	street.play(
+		drives(2, t, LIKE, QUIET, QUIET),
+		beats(2, t + 30 * S, t + 4 * MIN, QUIET, 10 * S),
+		beats(1, t, t + 4 * MIN, LOW, 10 * S)
+	);
+	expect(street.moves(2)).toEqual([]);
+	expect(street.moves(1)).toEqual(['arrival']);
+	expect(street.entries(1).at(-1)?.atMs).toBeLessThan(READY + 3 * S);
+});
+
 describe('a kerb: no other node of the row within reach', () => {
 	/** Steel beside the node: the induced dipole takes from the vertical (−m/r³ where it adds 2m/r³ above). */
 	const BESIDE = plus(QUIET, [25, 0, -35]);

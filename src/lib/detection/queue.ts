@@ -2,7 +2,7 @@ import { lookBy } from './entries';
 import { arrive, isArrival } from './judge';
 import { touch, type Group, type Node, type Step } from './state';
 import { offMg, onMg } from './thresholds';
-import { apart, size3 } from './vec';
+import { apart, size3, sumSize } from './vec';
 
 const MS_PER_S = 1000;
 
@@ -103,6 +103,24 @@ export function moveUp(n: Node, atMs: number): void {
 	const { openOldAtMs, openNewAtMs } = n.fast;
 	startAgain(n, { ...aisle.step, fromMs: openOldAtMs, newMs: openNewAtMs, toMs: atMs, atMs });
 	touch(n);
+}
+
+/** Those of a queue leave one by one: what stands this many times queueS after the other has gone is not of it. */
+const LEFT_BEHIND = 6;
+
+/** The like step elsewhere in the row is undone: what stood with it in the lane must move on now, or it is parked. */
+export function markAisleUndone(n: Node, step: Step): void {
+	for (const m of n.mates) {
+		const { aisle } = m.slow;
+		if (aisle?.by !== n.id) continue;
+		const undone = Math.max(offMg(n), n.params.undoRatio * size3(aisle.byJ));
+		if (sumSize(step.j, aisle.byJ) > undone) continue;
+		const deadlineMs = step.toMs + LEFT_BEHIND * m.params.queueS * MS_PER_S;
+		if (deadlineMs >= aisle.deadlineMs) continue;
+		m.slow.aisle = { ...aisle, deadlineMs };
+		lookBy(m, deadlineMs);
+		touch(m);
+	}
 }
 
 /** What outlasts the queue is parked, since its own time. */

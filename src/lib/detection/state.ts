@@ -169,6 +169,9 @@ export interface Strange {
 	visits: number;
 	/** Sum of the steps since it was left; null while the field stands on it. */
 	out: Triple | null;
+	/** How the first visit changed the field, in float32; a later one that differs shows that these are vehicles. */
+	first: Triple | null;
+	differ: boolean;
 	moves: { to: 'empty' | 'taken'; atMs: number; uncertaintyS: number }[];
 	/** What history was told since it was first seen. */
 	entries: { type: HistoryType; atMs: number }[];
