@@ -93,7 +93,8 @@ describe('links of a mail, without a session', () => {
 	test('‘I take it’ shows what it is, changes nothing by being opened, and takes when confirmed', async () => {
 		const { people } = room.seeded;
 		const id = await mailed('A-10');
-		const link = { does: 'acknowledge', personId: people.maintenance, noticeIds: [id] } as const;
+		const does = 'acknowledge' as const;
+		const link = { does, personId: people.maintenance, noticeIds: [id] };
 		const token = makeToken(secret, { ...link, expiresAtMs: Date.now() + DAY });
 		const page = await room.app.ask(`/acknowledge?token=${token}`);
 		expect(page.status).toBe(200);
