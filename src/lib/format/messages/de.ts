@@ -258,7 +258,7 @@ export const de: Messages = {
 		driftPartly: (n) => `nur Länge, wo die Richtung nicht eingetragen ist (${n})`,
 		driftArrows: (which) => `Driftpfeile: ${which}`,
 		drift: (which) => `Drift: ${which}`,
-		arrowChoice: { past: 'über der Grenze', all: 'alle', none: 'keine' },
+		arrowChoice: { past: 'über Grenze', all: 'alle', none: 'keine' },
 		oldOf: (site) => `${site}, alt`,
 		wasThen: (what) => `war ${what}`,
 		wereThen: (sum) => `war: ${sum}`

@@ -35,7 +35,7 @@ const en = {
 const de: Widened<typeof en> = {
 	noAnswer: (length) => `keine Antwort von Lodekeep seit ${length}`,
 	allLive: (sites) => `${sites}, alle aktuell`,
-	away: (n, sites) => `${n} von ${sites} verspätet oder verloren`,
+	away: (n, sites) => `${sites}, davon ${n} verspätet oder verloren`,
 	status: { late: 'verspätet', lost: 'verloren', live: 'aktuell' },
 	heard: (status, ago) => `${status}, ${ago}`,
 	since: (status, time) => `${status} seit ${time}`,
@@ -54,7 +54,7 @@ const de: Widened<typeof en> = {
 	noneCure: 'Ein Standort entsteht über die API oder mit der Vorführung. Das Handbuch sagt wie.',
 	asking: 'die Standorte werden gefragt …',
 	inAll: 'Insgesamt',
-	sum: (bays, sites) => `${bays} an ${sites}`,
+	sum: (bays, sites) => `${bays}, ${sites}`,
 	demoNever: '; ein Standort der Vorführung zählt nie mit',
 	leaveDemo: 'Vorführung entfernen',
 	leaveDemoWhat: (names) =>
