@@ -5,11 +5,14 @@ import { rfc3339, rfc3339OrNull } from '$lib/server/api/time';
 import type { Sql } from '$lib/server/store/queries/bulk';
 import * as state from '$lib/server/store/queries/drift-state';
 import * as views from '$lib/server/store/queries/drift-view';
+import { BoardMemo, settingsKeys } from './board-memo';
 import { HOUR_MS } from './node-hours';
 import { rounded, roundedVector, rowView } from './row-view';
-import { settingsAt } from './site-nodes';
+import { settingsAt, type SiteSettings } from './site-nodes';
 
 const BATCH_ROWS = 200;
+/** Working out so many rows takes some 10 ms: then others have their turn. */
+const BREATHE_ROWS = 20;
 const WINDOW_MS = 3 * HOUR_MS;
 
 /** The Drift board of one site: nodes ranked, and the site's geomagnetic line with the K scale's limits. */
@@ -20,11 +23,7 @@ export async function driftBoard(
 	nowMs: number
 ): Promise<DriftBoard> {
 	const settings = await settingsAt(sql, site.id, nowMs);
-	const rows: DriftRow[] = [];
-	for (const [i, row] of (await views.ofSite(sql, site.id)).entries()) {
-		rows.push(rowView(row, settings.of(row.nodeId)));
-		if (i % BATCH_ROWS === BATCH_ROWS - 1) await breathe();
-	}
+	const rows = await rowsOf(sql, site.id, settings);
 	const closed = await state.siteOf(sql, site.id);
 	const toMs = closed?.closedToMs ?? nowMs;
 	const line = await state.lines(sql, site.id, toMs - lineHours * HOUR_MS, toMs);
@@ -47,6 +46,34 @@ export async function driftBoard(
 			kLimitsMg: [...K_LOWER_LIMITS_MG]
 		}
 	};
+}
+
+const memo = new BoardMemo();
+
+/** All rows of the site; only those are worked out of which anything has changed since they were last asked for. */
+async function rowsOf(sql: Sql, siteId: number, settings: SiteSettings): Promise<DriftRow[]> {
+	const keyOf = settingsKeys(settings.site);
+	const rows = await views.markedOfSite(sql, siteId);
+	const made = rows.map((row) => memo.rowOf(row, keyOf(settings.of(row.nodeId))));
+	const missing = rows.flatMap((row, i) => (made[i] === null ? [{ row, i }] : []));
+	for (let at = 0; at < missing.length; at += BATCH_ROWS) {
+		const batch = missing.slice(at, at + BATCH_ROWS);
+		const ids = batch.flatMap(({ row }) => (row.memoryMark === null ? [] : [row.nodeId]));
+		const memories = await views.memoriesOf(sql, ids);
+		for (const [k, { row, i }] of batch.entries()) {
+			if (k % BREATHE_ROWS === 0) await breathe();
+			const own = settings.of(row.nodeId);
+			const view = rowView({ ...row, memory: memories.get(row.nodeId) ?? null }, own);
+			memo.keep(row, keyOf(own), view);
+			made[i] = view;
+		}
+	}
+	return made.filter((row) => row !== null);
+}
+
+/** Works a site's rows out ahead, after its hour was closed: whoever opens the board then does not wait for them. */
+export async function prepareBoard(sql: Sql, siteId: number, nowMs: number): Promise<void> {
+	await rowsOf(sql, siteId, await settingsAt(sql, siteId, nowMs));
 }
 
 const urgency = (row: DriftRow): number =>

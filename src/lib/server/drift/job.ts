@@ -2,6 +2,7 @@ import type { Transactions } from '$lib/server/ingest/transaction';
 import type { NodeEntry } from '$lib/server/ingest/node-entry';
 import type { Pipeline } from '$lib/server/ingest/pipeline';
 import * as state from '$lib/server/store/queries/drift-state';
+import { prepareBoard } from './board-view';
 import { closeSiteHour, type Closing, type ClosingSite } from './close-hour';
 import { tellConditions } from './conditions';
 import { HOUR_MS } from './node-hours';
@@ -58,6 +59,7 @@ export class DriftJob {
 		const nodes = nodesBySite(registry);
 		const marks = new Map((await state.marks(pool)).map((mark) => [mark.siteId, mark]));
 		const upToDate: state.DriftSite[] = [];
+		const moved: number[] = [];
 		let hours = 0;
 		for (const row of await state.sites(pool)) {
 			const own = nodes.get(row.siteId) ?? [];
@@ -68,6 +70,7 @@ export class DriftJob {
 			if (this.#waits(row.siteId, nowMs)) continue;
 			const closed = await this.#bringUp(site, found.closedToMs, mark ?? null, nowMs);
 			hours += closed.hours;
+			if (closed.hours > 0) moved.push(row.siteId);
 			if (closed.done) upToDate.push({ ...row, ...found });
 		}
 		await tellConditions(
@@ -76,6 +79,7 @@ export class DriftJob {
 			nowMs
 		);
 		for (const site of upToDate) await orderPairs(this.#pipeline, site, nowMs);
+		for (const siteId of moved) if (!this.#closed) await prepareBoard(pool, siteId, nowMs);
 		return hours;
 	}
 

@@ -15,13 +15,20 @@ export interface ViewRow {
 	memory: Uint8Array | null;
 }
 
-const VIEW = `SELECT n.id AS nodeId, n.serial, b.code AS bay, z.code AS zone, n.heading_deg AS headingDeg, s.condition, s.also,
-	c.recorded_at_ms AS changedAtMs, d.memory
- FROM node n JOIN bay b ON b.id = n.bay_id JOIN zone z ON z.id = b.zone_id
+/** The same with a checksum for the memory, which need not travel. */
+export interface MarkedRow extends Omit<ViewRow, 'memory'> {
+	/** Null before the first closed hour of this placing. */
+	memoryMark: string | null;
+}
+
+const SHOWN = `n.id AS nodeId, n.serial, b.code AS bay, z.code AS zone, n.heading_deg AS headingDeg, s.condition, s.also,
+	c.recorded_at_ms AS changedAtMs`;
+const FROM = ` FROM node n JOIN bay b ON b.id = n.bay_id JOIN zone z ON z.id = b.zone_id
  LEFT JOIN bay_state s ON s.bay_id = b.id AND s.node_id = n.id
  LEFT JOIN \`change\` c ON c.site_id = s.site_id AND c.id = s.change_id
  LEFT JOIN drift_node d ON d.node_id = n.id AND d.placed_at_ms = n.placed_at_ms
  WHERE n.withdrawn_at_ms IS NULL`;
+const VIEW = `SELECT ${SHOWN}, d.memory ${FROM}`;
 
 /** Nodes of a site that lie in a bay, by bay. */
 export async function ofSite(sql: Sql, siteId: number): Promise<ViewRow[]> {
@@ -31,4 +38,28 @@ export async function ofSite(sql: Sql, siteId: number): Promise<ViewRow[]> {
 export async function ofNode(sql: Sql, nodeId: number): Promise<ViewRow | null> {
 	const rows = await select<ViewRow>(sql, `${VIEW} AND n.id = ?`, [nodeId]);
 	return rows[0] ?? null;
+}
+
+/** Nodes of a site that lie in a bay, by bay, without their memories. */
+export async function markedOfSite(sql: Sql, siteId: number): Promise<MarkedRow[]> {
+	return await select(
+		sql,
+		`SELECT ${SHOWN}, CONCAT(CRC32(d.memory), ' ', LENGTH(d.memory)) AS memoryMark ${FROM}
+		 AND n.site_id = ? ORDER BY b.code, n.id`,
+		[siteId]
+	);
+}
+
+/** Memories of some nodes. */
+export async function memoriesOf(
+	sql: Sql,
+	nodeIds: readonly number[]
+): Promise<Map<number, Uint8Array>> {
+	if (nodeIds.length === 0) return new Map();
+	const rows = await select<{ nodeId: number; memory: Uint8Array }>(
+		sql,
+		`SELECT node_id AS nodeId, memory FROM drift_node WHERE node_id IN (?)`,
+		[nodeIds]
+	);
+	return new Map(rows.map(({ nodeId, memory }) => [nodeId, memory]));
 }
