@@ -20,7 +20,7 @@ test.each([
 	],
 	[
 		'not cured: 12 still readings of at least 60; its offset is in use',
-		'nicht behoben: 12 ruhige Messungen von mindestens 60; sein Nullpunkt gilt'
+		'nicht behoben: 12 ruhige Messungen von mindestens 60; sein Offset gilt'
 	],
 	['by schedule: the film is flipped', 'nach Zeitplan: der Film ist umgeklappt'],
 	['mostly Tue 10–14 h; every day 0–6 h', 'meist Di 10–14 h; täglich 0–6 h'],

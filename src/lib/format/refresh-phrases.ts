@@ -40,10 +40,10 @@ const PHRASES: Readonly<Record<string, string>> = {
 	'the bay is empty: still readings are counted':
 		'der Stellplatz ist leer: ruhige Messungen werden gezählt',
 	'the bulk order was called off': 'der Sammelauftrag wurde abgesagt',
-	'pair by rule: the offset is looked after': 'Pulspaar nach Regel: der Nullpunkt wird gepflegt',
+	'pair by rule: the offset is looked after': 'Pulspaar nach Regel: der Offset wird gepflegt',
 	'pair by rule: what does the drift come from?': 'Pulspaar nach Regel: woher kommt die Drift?',
-	'pair at learning: the first offset': 'Pulspaar beim Lernen: der erste Nullpunkt',
-	'its offset is in use': 'sein Nullpunkt gilt',
+	'pair at learning: the first offset': 'Pulspaar beim Lernen: der erste Offset',
+	'its offset is in use': 'sein Offset gilt',
 	'no reading after the last pulse came with the pair':
 		'mit dem Pulspaar kam keine Messung nach dem letzten Puls',
 	'the noise after is not known': 'das Rauschen danach ist nicht bekannt',
@@ -106,7 +106,7 @@ const SENTENCES: readonly (readonly [RegExp, Said])[] = [
 		new RegExp(`^noise ${N} mG; before not known, nothing to hold it to$`),
 		(mg = '') => `Rauschen ${comma(mg)} mG; vorher nicht bekannt, kein Vergleich`
 	],
-	[/^its offset is not in use: (.*)$/, (why = '') => `sein Nullpunkt gilt nicht: ${german(why)}`],
+	[/^its offset is not in use: (.*)$/, (why = '') => `sein Offset gilt nicht: ${german(why)}`],
 	[/^mostly (.*)$/, (when = '') => `meist ${weekdays(when)}`]
 ];
 

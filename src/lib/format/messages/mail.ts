@@ -122,7 +122,7 @@ export const mailWords = area(
 			underWay: 'eine Filmauffrischung ist im Gang'
 		},
 		cause: {
-			bridge: 'der Nullpunkt von Brücke und Elektronik hat sich verschoben',
+			bridge: 'der Offset von Brücke und Elektronik hat sich verschoben',
 			film: 'der Film hat Magnetisierung verloren, wie ein Puls gemessen hat',
 			gain_or_field:
 				'Empfindlichkeit oder Feld: schwächer in gleicher Richtung; kein Puls behebt das',

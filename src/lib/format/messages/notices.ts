@@ -220,7 +220,7 @@ export const noticesWords = area(
 			silent: 'nach dem Funkzugang sehen, dann jemanden schicken',
 			inverted: 'eine Filmauffrischung genehmigen',
 			clipped: 'jemanden schicken, der nach einem Magneten oder Stahl sieht',
-			refresh_not_cured: 'einen Besuch planen',
+			refresh_not_cured: 'einen Einsatz planen',
 			refresh_due: 'eine Filmauffrischung genehmigen',
 			drifting: 'beobachten; ein Pulspaar nennt die Ursache',
 			reference_vehicle: 'den Stellplatz ansehen und klären',
@@ -261,15 +261,15 @@ export const noticesWords = area(
 		together: {
 			refresh_due: 'gemeinsam genehmigen',
 			inverted: 'gemeinsam genehmigen',
-			clipped: 'ein Besuch',
-			low_cell: 'ein Besuch',
-			refresh_not_cured: 'ein Besuch',
-			silent: 'ansehen, was sie teilen, dann ein Besuch'
+			clipped: 'ein Einsatz',
+			low_cell: 'ein Einsatz',
+			refresh_not_cured: 'ein Einsatz',
+			silent: 'ansehen, was sie teilen, dann ein Einsatz'
 		},
 		how: {
 			healed: 'von selbst vergangen',
 			proved: 'nachweislich behoben',
-			visit: 'durch einen Besuch erledigt',
+			visit: 'durch einen Einsatz erledigt',
 			removed: 'der Knoten wurde ausgebaut',
 			folded: 'mit anderen zusammen gemeldet'
 		},

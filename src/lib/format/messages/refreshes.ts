@@ -269,7 +269,7 @@ export const refreshWords = area(
 			noneEnded: 'In den letzten 30 Tagen endete keine.',
 			noneBulk: 'Kein Sammelauftrag in den letzten 30 Tagen.',
 			rulesBy: 'Instandhaltung und Verwaltung setzen die Regeln dieses Standorts.',
-			note: 'Eine Filmauffrischung gibt dem Film mit einem Puls seine Magnetisierung zurück. Sie wartet auf einen leeren Stellplatz, die ruhigen Stunden, eine gute Zelle und eine Stunde ohne Puls; dann weisen mindestens 60 ruhige Messungen sie nach. Zweimal nicht behoben heißt Besuch, nicht dritter Puls.',
+			note: 'Eine Filmauffrischung gibt dem Film mit einem Puls seine Magnetisierung zurück. Sie wartet auf einen leeren Stellplatz, die ruhigen Stunden, eine gute Zelle und eine Stunde ohne Puls; dann weisen mindestens 60 ruhige Messungen sie nach. Zweimal nicht behoben heißt Einsatz, nicht dritter Puls.',
 			kept: 'Beendete Filmauffrischungen bleiben so lange wie die Ereignisse dieses Standorts.'
 		},
 		detail: {
@@ -287,7 +287,7 @@ export const refreshWords = area(
 			notKnown: 'nicht bekannt',
 			fieldXyz: 'Feld x, y, z',
 			fieldSize: 'Feld, Betrag',
-			offsetXyz: 'Nullpunkt x, y, z',
+			offsetXyz: 'Offset x, y, z',
 			noise: 'Rauschen',
 			unexplained: 'Nicht erklärte Drift',
 			lost: 'Verlust des Films',
@@ -386,7 +386,7 @@ export const refreshWords = area(
 			aNight: 'Wie viele in einer Nacht',
 			pairs: 'Pulspaare nach Regel',
 			pair: {
-				calibrate: 'wöchentlich, für den Nullpunkt',
+				calibrate: 'wöchentlich, für den Offset',
 				diagnose: 'auch bei Drift, höchstens einmal in 6 h',
 				never: 'nie'
 			},
