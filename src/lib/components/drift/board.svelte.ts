@@ -1,5 +1,4 @@
-import { ask } from '$lib/components/live/ask';
-import { session } from '$lib/components/live/session.svelte';
+import { heeded, quietly } from '$lib/components/live/polled';
 import type { DriftBoard } from '$lib/schemas/desk-drift';
 import { createQuery, keepPreviousData } from '@tanstack/svelte-query';
 
@@ -11,24 +10,15 @@ export function boardOf(site: () => string, lineHours: () => number, wanted: () 
 	let answeredAtMs = $state<number | null>(null);
 	const query = createQuery(() => ({
 		queryKey: ['drift', site(), lineHours()],
-		queryFn: async () => {
-			try {
-				const { body } = await ask<DriftBoard>(
-					`/api/desk/sites/${site()}/drift?lineHours=${lineHours()}`
-				);
-				session.answered();
-				answeredAtMs = Date.now();
-				return body;
-			} catch (error) {
-				session.heed(error);
-				throw error;
-			}
-		},
+		queryFn: async () =>
+			await heeded<DriftBoard>(
+				`/api/desk/sites/${site()}/drift?lineHours=${lineHours()}`,
+				(atMs) => (answeredAtMs = atMs)
+			),
 		enabled: wanted(),
 		placeholderData: keepPreviousData,
 		refetchInterval: EVERY_MS,
-		retry: false,
-		networkMode: 'always' as const
+		...quietly
 	}));
 	return {
 		get board(): DriftBoard | undefined {

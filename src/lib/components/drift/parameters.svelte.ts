@@ -1,4 +1,5 @@
-import { ask, send } from '$lib/components/live/ask';
+import { send } from '$lib/components/live/ask';
+import { heeded, quietly } from '$lib/components/live/polled';
 import { session } from '$lib/components/live/session.svelte';
 import { words } from '$lib/format/messages';
 import { parametersWords } from '$lib/format/messages/parameters';
@@ -17,21 +18,13 @@ export function parametersOf(site: () => string, node: () => string | null) {
 		queryKey: ['parameters', site(), node()],
 		queryFn: async () => {
 			const serial = node();
-			try {
-				const { body } = await ask<ParameterSheet>(
-					path() + (serial === null ? '' : `?node=${encodeURIComponent(serial)}`)
-				);
-				session.answered();
-				answeredAtMs = Date.now();
-				return body;
-			} catch (error) {
-				session.heed(error);
-				throw error;
-			}
+			return await heeded<ParameterSheet>(
+				path() + (serial === null ? '' : `?node=${encodeURIComponent(serial)}`),
+				(atMs) => (answeredAtMs = atMs)
+			);
 		},
 		refetchInterval: EVERY_MS,
-		retry: false,
-		networkMode: 'always' as const
+		...quietly
 	}));
 	return {
 		get sheet(): ParameterSheet | undefined {

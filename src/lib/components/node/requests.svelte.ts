@@ -1,5 +1,4 @@
-import { ask } from '$lib/components/live/ask';
-import { session } from '$lib/components/live/session.svelte';
+import { heeded, quietly } from '$lib/components/live/polled';
 import { createQuery } from '@tanstack/svelte-query';
 import { holdersByBay, requestsByBay, type OpenRequest } from './open-request';
 
@@ -9,18 +8,10 @@ const EVERY_MS = 10_000;
 export function openRequests(site: () => string) {
 	const query = createQuery(() => ({
 		queryKey: ['requests', site()],
-		queryFn: async () => {
-			try {
-				const { body } = await ask<{ items: OpenRequest[] }>(`/api/desk/sites/${site()}/requests`);
-				return body.items;
-			} catch (error) {
-				session.heed(error);
-				throw error;
-			}
-		},
+		queryFn: async () =>
+			(await heeded<{ items: OpenRequest[] }>(`/api/desk/sites/${site()}/requests`)).items,
 		refetchInterval: EVERY_MS,
-		retry: false,
-		networkMode: 'always' as const
+		...quietly
 	}));
 	const byBay = $derived(requestsByBay(query.data ?? []));
 	const holders = $derived(holdersByBay(query.data ?? []));
