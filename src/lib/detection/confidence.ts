@@ -65,7 +65,7 @@ function isDoubted({ slow }: Node): boolean {
 }
 
 /** A step away from the state: settled but not decided, or still moving by what could be a vehicle. */
-function isMoving(n: Node): boolean {
+export function isMoving(n: Node): boolean {
 	const { fast, slow } = n;
 	return slow.pending !== null || (fast.open === 1 && apart(fast.last, fast.level) >= offMg(n));
 }

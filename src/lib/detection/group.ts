@@ -1,6 +1,6 @@
 import { takeAct } from './acts';
 import { decodeFastState, decodeSlowState, encodeFastState, encodeSlowState } from './codec';
-import { presentConfidence } from './confidence';
+import { isMoving, presentConfidence } from './confidence';
 import { conditionsOf } from './conditions';
 import { resolveParams } from './params';
 import { takePulse } from './pulses';
@@ -194,6 +194,7 @@ export function view(group: Group, nodeId: number): NodeView {
 		state: slow.state,
 		sinceMs: slow.sinceMs,
 		confidence: slow.state === 'unknown' ? null : presentConfidence(n),
+		moving: isMoving(n),
 		doubt: slow.doubt,
 		conditions: conditionsOf(n),
 		lastKnown: slow.lastKnown,

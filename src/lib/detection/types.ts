@@ -132,6 +132,8 @@ export interface NodeView {
 	state: BayState;
 	sinceMs: number | null;
 	confidence: number | null;
+	/** A step away from the state is seen and not yet judged: for that time confidence is low. */
+	moving: boolean;
 	doubt: { reason: string; sinceMs: number } | null;
 	/** Every condition that holds, most serious first; the first is shown. */
 	conditions: Condition[];

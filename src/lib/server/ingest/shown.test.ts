@@ -9,6 +9,7 @@ const view: NodeView = {
 	state: 'occupied',
 	sinceMs: 1_000,
 	confidence: 0.95,
+	moving: false,
 	doubt: null,
 	conditions: ['in_service'],
 	lastKnown: null,
@@ -109,4 +110,15 @@ test('what a reader cannot see is no change', () => {
 	expect(changeBetween(before, { ...before, also: 'low_cell' })).toBe('condition');
 	expect(changeBetween(before, { ...before, state: 'vacant', also: 'low_cell' })).toBe('bay');
 	expect(changeBetween(null, before)).toBe('bay');
+});
+
+test('a movement that is not yet judged is no change of the bay, and what comes of it is', () => {
+	const seen = entry();
+	seen.live.shown = show(seen);
+	const moving = show(seen, { confidence: 0.37, moving: true });
+	expect(changeBetween(seen.live.shown, moving)).toBeNull();
+	expect(changeBetween(seen.live.shown, show(seen, { confidence: 0.37 }))).toBe('bay');
+	const gone = show(seen, { state: 'vacant', sinceMs: 2_000, confidence: 0.5, moving: true });
+	expect(changeBetween(seen.live.shown, gone)).toBe('bay');
+	expect(gone.confidence20).toBe(10);
 });

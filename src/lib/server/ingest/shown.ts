@@ -51,14 +51,14 @@ export function shownOf(
 	const lost = live.silence.unknown;
 	const state = lost === null ? view.state : 'unknown';
 	const lastKnown = lost === null ? view.lastKnown : lastKnownOf(view, live.pointer?.atMs ?? null);
+	const confidence20 = lost === null ? shownStep(view, live.shown) : null;
 	return {
 		bayId,
 		siteId: config.siteId,
 		nodeId: entry.id,
 		state,
 		sinceMs: lost === null ? view.sinceMs : lost.atMs,
-		confidence20:
-			lost === null ? confidenceStep(view.confidence, live.shown?.confidence20 ?? null) : null,
+		confidence20,
 		doubtReason: view.doubt?.reason.slice(0, 64) ?? null,
 		doubtSinceMs: view.doubt?.sinceMs ?? null,
 		condition: condition ?? 'in_service',
@@ -67,6 +67,16 @@ export function shownOf(
 		lastKnownAtMs: state === 'unknown' ? (lastKnown?.atMs ?? null) : null,
 		evidence: evidenceText(view.evidence, bayOf)
 	};
+}
+
+/**
+ * A movement is judged within seconds: shown, its low confidence would be one more change of the bay for each. The
+ * step shown stays until the state is another or the movement is over.
+ */
+function shownStep(view: NodeView, shown: ShownRow | null): number | null {
+	const before = shown?.confidence20 ?? null;
+	if (view.moving && before !== null && shown?.state === view.state) return before;
+	return confidenceStep(view.confidence, before);
 }
 
 const lastKnownOf = (view: NodeView, heardToMs: number | null): NodeView['lastKnown'] =>
