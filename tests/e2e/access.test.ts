@@ -139,11 +139,16 @@ test('on a phone no sheet is wider than the screen, and targets of the bar are 4
 	await page.context().close();
 });
 
-test('at 320 px the sheets reflow', async () => {
+test.each(['en', 'de'])('at 320 px the sheets reflow, language %s', async (language) => {
 	const page = await office.signIn('operator', { width: 320, height: 640 });
-	for (const path of [`${SITE}/bays/A-09`, `${SITE}/plan`, '/sites', '/desk']) {
+	await page
+		.context()
+		.addCookies([{ name: 'lodekeep-language', value: language, url: office.app.origin }]);
+	const long = language === 'de' ? [`${SITE}/parameters`, `${SITE}/refreshes`] : [];
+	for (const path of [`${SITE}/bays/A-09`, `${SITE}/plan`, '/sites', '/desk', ...long]) {
 		await page.goto(path);
 		await alive(page);
+		expect(await page.locator('html').getAttribute('lang')).toBe(language);
 		const over = await page.evaluate(
 			() => document.documentElement.scrollWidth - window.innerWidth
 		);

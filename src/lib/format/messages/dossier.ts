@@ -205,7 +205,7 @@ const de: Widened<typeof en> = {
 	nobodyHas: 'Noch hat es niemand.',
 	has: (name) => `${name} hat es.`,
 	onPlan: 'Auf dem Plan',
-	askRefresh: 'Filmauffrischung erbitten',
+	askRefresh: 'Um eine Filmauffrischung bitten',
 	record: 'Platzprotokoll',
 	field: 'Feld',
 	drift: 'Drift',
