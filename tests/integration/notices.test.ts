@@ -1,6 +1,8 @@
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import type { ParsedMail } from 'mailparser';
 import { readToken } from '$lib/server/outbox/link-token';
+import { noteNetworks } from '$lib/server/store/queries/node-networks';
+import { stormNodeIds } from '$lib/server/store/queries/notices';
 import { NoticeRoom, showCondition } from '../support/notices';
 
 const MIN = 60_000;
@@ -169,6 +171,38 @@ test('silent nodes of one gateway are one notice that closes by itself; singles 
 			"SELECT w.id FROM mail_wish w JOIN notice n ON n.id = w.notice_id WHERE n.about LIKE 'storm:%' AND w.message_id IS NOT NULL"
 		)
 	).toEqual([]);
+});
+
+test('nodes without a label that connected from one address are told together too', async () => {
+	const nowMs = Date.parse('2026-12-03T14:00:00Z');
+	const codes = ['B-01', 'B-02', 'B-05', 'B-06', 'B-07', 'B-08'];
+	await heardAt(nowMs);
+	await room.rows('UPDATE node SET gateway = NULL');
+	// Addresses of RFC 5737, for documentation.
+	const serials = codes.map((code): [string, string] => [`SEED-${code}`, '192.0.2.7']);
+	const told = new Map([...serials, ['SEED-A-01', '198.51.100.4'], ['NOBODY-1', '192.0.2.7']]);
+	await noteNetworks(room.store.pool, told, nowMs);
+	await noteNetworks(room.store.pool, told, nowMs + 1);
+	expect(
+		await room.rows('SELECT since_ms FROM node_network WHERE since_ms = ?', [nowMs])
+	).toHaveLength(7);
+	await heardAt(nowMs - 20 * MIN, '');
+	await heardAt(nowMs, codes.join());
+	for (const code of codes) await showCondition(room, code, { condition: 'silent' }, nowMs);
+	await room.look(nowMs);
+	const [storm] = await room.rows<{ facts: string }>(
+		"SELECT facts FROM notice WHERE about LIKE 'storm:%' AND closed_at_ms IS NULL"
+	);
+	expect(JSON.parse(storm!.facts)).toMatchObject({
+		count: 6,
+		shared: 'network',
+		label: '192.0.2.7'
+	});
+	const held = await stormNodeIds(room.store.pool, [room.seeded.sites.yard]);
+	expect(held.size).toBe(6);
+	for (const code of codes) await showCondition(room, code, { condition: 'in_service' }, nowMs);
+	await heardAt(nowMs + MIN);
+	await room.look(nowMs + MIN);
 });
 
 test('a site not heard at all is late: one notice, mailed to everybody of it at any hour', async () => {

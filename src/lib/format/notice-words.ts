@@ -47,9 +47,11 @@ export function stormSentence(since: string, f: StormFacts): string {
 	const by =
 		f.shared === 'gateway'
 			? said.sharedGateway(label)
-			: f.shared === 'zone'
-				? said.sharedZone(label)
-				: said.sharedSite;
+			: f.shared === 'network'
+				? said.sharedNetwork(label)
+				: f.shared === 'zone'
+					? said.sharedZone(label)
+					: said.sharedSite;
 	return said.storm(since, f.count ?? 0, f.of ?? 0, by);
 }
 

@@ -23,7 +23,7 @@ export const noticeFacts = z.object({
 	/** Of many: how many of how many, by what they share. */
 	count: z.number().optional(),
 	of: z.number().optional(),
-	shared: z.enum(['site', 'gateway', 'zone']).optional(),
+	shared: z.enum(['site', 'gateway', 'network', 'zone']).optional(),
 	label: z.string().optional(),
 	/** Codes of the first bays concerned. */
 	bays: z.array(z.string()).optional(),

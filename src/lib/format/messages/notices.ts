@@ -89,6 +89,7 @@ export const noticesWords = area(
 		daysBetween: (from: number, to: number) => `${from} to ${to} days left`,
 		sharedSite: 'from all over the site',
 		sharedGateway: (label: string) => `all by ${label}`,
+		sharedNetwork: (label: string) => `all behind ${label}`,
 		sharedZone: (label: string) => `all in ${label}`,
 		storm: (since: string, n: number, of: number, by: string) =>
 			`Since ${since}, ${n} of ${of} nodes not heard, ${by}`,
@@ -279,6 +280,7 @@ export const noticesWords = area(
 		daysBetween: (from, to) => `noch ${from} bis ${to} Tage`,
 		sharedSite: 'am ganzen Standort',
 		sharedGateway: (label) => `alle über ${label}`,
+		sharedNetwork: (label) => `alle hinter ${label}`,
 		sharedZone: (label) => `alle in ${label}`,
 		storm: (since, n, of, by) => `Seit ${since} sind ${n} von ${of} Knoten nicht zu hören, ${by}`,
 		notices: (n) => many(n, 'Meldung', 'Meldungen'),

@@ -4,6 +4,7 @@ import type { NodeDirectory } from './directory';
 import type { Intake } from './intake';
 import { decodeReceipts, encodeBatch, LINK_TOPIC } from './link-codec';
 import { linkOf } from './authenticate';
+import { Networks } from './networks';
 import type { NodeLink } from './node-link';
 
 const entries = z.array(z.object({ serial: z.string(), hashes: z.array(z.string()) }));
@@ -13,8 +14,12 @@ const directoryWord = z.discriminatedUnion('op', [
 	z.object({ op: z.literal('vouch'), current: z.boolean() })
 ]);
 
+/** Well under the packet limit: a serial has 32 characters, an address 45. */
+const NETWORKS_AT_ONCE = 1_000;
+
 /** The one session of the app: hands it what is held, hears its receipts and its directory. */
 export class AppSession {
+	readonly networks = new Networks();
 	#client: Client | null = null;
 	#scheduled = false;
 	#statsTimer: NodeJS.Timeout;
@@ -37,6 +42,7 @@ export class AppSession {
 	begin(client: Client): void {
 		this.#client = client;
 		this.intake.held.rewind();
+		this.networks.tellAll();
 		this.#tell();
 		this.#schedule();
 	}
@@ -86,6 +92,8 @@ export class AppSession {
 			LINK_TOPIC.stats,
 			Buffer.from(JSON.stringify(this.intake.stats(this.directory.size)))
 		);
+		const changed = this.networks.take(NETWORKS_AT_ONCE);
+		if (changed.length > 0) this.#send(LINK_TOPIC.networks, Buffer.from(JSON.stringify(changed)));
 	}
 
 	#hear(topic: string, payload: Buffer, answer: () => void): boolean {

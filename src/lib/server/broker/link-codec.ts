@@ -10,7 +10,8 @@ export const LINK_TOPIC = {
 	held: 'lodekeep/link/held',
 	receipt: 'lodekeep/link/receipt',
 	directory: 'lodekeep/link/directory',
-	stats: 'lodekeep/link/stats'
+	stats: 'lodekeep/link/stats',
+	networks: 'lodekeep/link/networks'
 } as const;
 const VERSION = 1;
 const HEAD_BYTES = 21;

@@ -122,6 +122,7 @@ async function makeAedes(
 		if (link.role?.kind === 'app') session.begin(client);
 		if (link.role?.kind === 'node') {
 			intake.nodes.set(link.role.serial, link);
+			session.networks.note(link.role.serial, link.socket.remoteAddress);
 			commands.isBack(link.role.serial);
 		}
 		link.open();

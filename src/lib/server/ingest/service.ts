@@ -3,6 +3,7 @@ import type { Log } from '$lib/server/log';
 import { RefreshWorker } from '$lib/server/refreshes/worker';
 import type { Secret } from '$lib/server/secret';
 import type { Store } from '$lib/server/store/connect';
+import { noteNetworks } from '$lib/server/store/queries/node-networks';
 import { endClosures } from './closure-ends';
 import { CommandSender } from './command-sender';
 import { replayMarked } from './far-replay';
@@ -34,6 +35,7 @@ export interface Every {
 	habitsMs: number;
 	replayMs: number;
 	closuresMs: number;
+	networksMs: number;
 	refreshesMs: number;
 	driftMs: number;
 }
@@ -46,12 +48,15 @@ export const EVERY: Every = {
 	habitsMs: 15_000,
 	replayMs: 5_000,
 	closuresMs: 5_000,
+	networksMs: 5_000,
 	refreshesMs: 2_000,
 	driftMs: 15_000
 };
 
 /** A backlog older than this is still being worked off: silence cannot be judged yet. */
 const CAUGHT_UP_MS = 15_000;
+
+const NETWORKS_AT_ONCE = 1_000;
 
 /** The pipeline with all its periodic work: what runs while this copy holds the lease. */
 export interface IngestService {
@@ -98,6 +103,14 @@ export async function startService(deps: ServiceDeps): Promise<IngestService> {
 		await lookForSilence(pipeline, watch, nowMs);
 		await sites.look(pipeline, nowMs);
 	};
+	/** Kept until it is written: the broker tells a change once. */
+	const untold = new Map<string, string>();
+	const networks = async (): Promise<void> => {
+		for (const [serial, network] of subscriber.takeNetworks()) untold.set(serial, network);
+		const part = new Map([...untold].slice(0, NETWORKS_AT_ONCE));
+		await noteNetworks(pool, part, Date.now());
+		for (const [serial, network] of part) if (untold.get(serial) === network) untold.delete(serial);
+	};
 	const works: Periodic[] = [
 		periodic('directory', every.directoryMs, log, tellDirectory),
 		periodic('silence', every.hearingMs, log, judge),
@@ -105,6 +118,7 @@ export async function startService(deps: ServiceDeps): Promise<IngestService> {
 			while (await replayMarked(pipeline));
 		}),
 		periodic('habits', every.habitsMs, log, async () => await keepHabits(pipeline, Date.now())),
+		periodic('networks', every.networksMs, log, networks),
 		periodic('closures', every.closuresMs, log, async () => await endClosures(pipeline, Date.now()))
 	];
 	const worker = new RefreshWorker(deps.store, log);

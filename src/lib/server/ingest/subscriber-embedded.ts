@@ -27,6 +27,7 @@ export function startEmbedded(config: EmbeddedConfig): Subscriber {
 	const queue = new SubscriberQueue();
 	const state = new LinkState();
 	let stats: BrokerStats | null = null;
+	let networks = new Map<string, string>();
 	/** The whole directory once it was given, so that a broker started anew gets it at once. */
 	let directory: Map<string, NodeDirectoryEntry> | null = null;
 	let vouched = true;
@@ -75,6 +76,9 @@ export function startEmbedded(config: EmbeddedConfig): Subscriber {
 	client.on('error', () => undefined);
 	client.on('message', (topic, payload) => {
 		if (topic === LINK_TOPIC.stats) stats = JSON.parse(payload.toString('utf8')) as BrokerStats;
+		if (topic === LINK_TOPIC.networks)
+			for (const [serial, network] of JSON.parse(payload.toString('utf8')) as [string, string][])
+				networks.set(serial, network);
 		if (topic !== LINK_TOPIC.held) return;
 		const batch = decodeBatch(payload);
 		// Another build's broker: everything stays held there until both are of one build.
@@ -107,6 +111,11 @@ export function startEmbedded(config: EmbeddedConfig): Subscriber {
 			return await say({ op: 'vouch', current });
 		},
 		stats: () => stats,
+		takeNetworks() {
+			const told = networks;
+			networks = new Map();
+			return told;
+		},
 		get connected() {
 			return state.connected;
 		},

@@ -102,6 +102,7 @@ export function startExternal(config: ExternalConfig): Subscriber {
 		updateDirectory: async () => true,
 		vouchDirectory: async () => true,
 		stats: () => null,
+		takeNetworks: () => new Map(),
 		get connected() {
 			return state.connected;
 		},

@@ -40,6 +40,11 @@ export interface Subscriber {
 	vouchDirectory(current: boolean): Promise<boolean>;
 	/** The embedded broker's counters, at most about 1 s old; null while not connected or with an external broker. */
 	stats(): BrokerStats | null;
+	/**
+	 * From where nodes signed in, serial → network, that was told since the last call; handed over once. Empty with
+	 * an external broker, which keeps that to itself.
+	 */
+	takeNetworks(): Map<string, string>;
 	readonly connected: boolean;
 	onConnected(listener: (connected: boolean) => void): void;
 	/** Forgets what was taken and not settled: it comes again, in order. */

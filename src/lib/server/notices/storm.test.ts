@@ -4,7 +4,7 @@ import { stormSentence } from '$lib/format/notice-words';
 import { sortSilent, type SilentNode, type Totals } from './storm';
 
 const node = (nodeId: number, gateway: string, zone = 'N', sinceMs = 0): SilentNode => ({
-	...{ nodeId, gateway, zone, sinceMs }
+	...{ nodeId, gateway, network: null, zone, sinceMs }
 });
 const range = (from: number, n: number, gateway: string, zone?: string) =>
 	Array.from({ length: n }, (_, i) => node(from + i, gateway, zone));
@@ -13,6 +13,10 @@ const totals: Totals = {
 	gateway: new Map([
 		['G1', 400],
 		['G2', 100]
+	]),
+	network: new Map([
+		['192.0.2.7', 60],
+		['198.51.100.4', 60]
 	]),
 	zone: new Map([
 		['N', 250],
@@ -36,6 +40,17 @@ describe('silent nodes are grouped by what they share (issue 6)', () => {
 	test('few of many by one gateway are no storm of it', () => {
 		expect(sortSilent(range(1, 8, 'G1'), totals, NONE).storms).toEqual([]);
 	});
+	test('nodes without a label that connected from one network address are one notice of it', () => {
+		// Addresses of RFC 5737, for documentation.
+		const behind = range(1, 40, '').map((one) => ({ ...one, gateway: null, network: '192.0.2.7' }));
+		const { storms, singles } = sortSilent(behind, totals, NONE);
+		expect(singles).toEqual([]);
+		expect(storms.map(({ shared, label }) => [shared, label])).toEqual([['network', '192.0.2.7']]);
+		const facts = { count: 40, of: 500, shared: 'network', label: '192.0.2.7' };
+		expect(stormSentence('08:12', facts)).toBe(
+			'Since 08:12, 40 of 500 nodes not heard, all behind 192.0.2.7'
+		);
+	});
 	test('a stray node of another gateway stays single beside a storm', () => {
 		const { storms, singles } = sortSilent([...range(1, 84, 'G2'), node(900, 'G1')], totals, NONE);
 		expect(storms).toHaveLength(1);
@@ -56,6 +71,7 @@ describe('silent nodes are grouped by what they share (issue 6)', () => {
 			fc.record({
 				nodeId: fc.integer({ min: 1, max: 500 }),
 				gateway: fc.constantFrom('G1', 'G2', null),
+				network: fc.constantFrom('192.0.2.7', null),
 				zone: fc.constantFrom('N', 'S'),
 				sinceMs: fc.nat()
 			}),

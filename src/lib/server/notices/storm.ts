@@ -2,16 +2,19 @@
 export interface SilentNode {
 	nodeId: number;
 	gateway: string | null;
+	/** From where it last connected. */
+	network: string | null;
 	zone: string;
 	/** When it was last heard. */
 	sinceMs: number;
 }
-export type Shared = 'site' | 'gateway' | 'zone';
+export type Shared = 'site' | 'gateway' | 'network' | 'zone';
 
 /** How many nodes a site has in all and by each label. */
 export interface Totals {
 	all: number;
 	gateway: ReadonlyMap<string, number>;
+	network: ReadonlyMap<string, number>;
 	zone: ReadonlyMap<string, number>;
 }
 
@@ -40,7 +43,8 @@ export interface Sorted {
 }
 
 /**
- * Groups silent nodes by what they share: all over the site first, then one gateway, then one zone.
+ * Groups silent nodes by what they share: all over the site first, then one gateway, then one
+ * network address, then one zone.
  * `open` are storms told already ('gateway:G2'): they go on until few are left, so that one that
  * flickers around the limit is told once.
  */
@@ -64,7 +68,7 @@ export function sortSilent(
 		open.has(key) ? n >= LEAST - 2 && n >= ENDS * of : n >= LEAST && n >= begins * of;
 
 	if (holds('site:', left.length, totals.all, SITE_BEGINS)) take('site', '', left);
-	for (const shared of ['gateway', 'zone'] as const)
+	for (const shared of ['gateway', 'network', 'zone'] as const)
 		for (const [label, members] of byLabel(left, shared))
 			if (holds(`${shared}:${label}`, members.length, totals[shared].get(label) ?? 0, BEGINS))
 				take(shared, label, members);
@@ -72,7 +76,7 @@ export function sortSilent(
 	return { storms, singles: left };
 }
 
-function byLabel(nodes: readonly SilentNode[], shared: 'gateway' | 'zone') {
+function byLabel(nodes: readonly SilentNode[], shared: Exclude<Shared, 'site'>) {
 	const labels = new Map<string, SilentNode[]>();
 	for (const node of nodes) {
 		const label = node[shared];

@@ -9,6 +9,7 @@ export interface TroubledNode {
 	bay: string;
 	zone: string;
 	gateway: string | null;
+	network: string | null;
 	condition: string;
 	/** Comma separated. */
 	also: string;
@@ -102,8 +103,8 @@ export function subjectsOf(look: SiteLook): { subjects: Subject[]; folded: Set<s
 	const about = (nodeId: number) => `node:${nodeId}`;
 	const silent: SilentNode[] = look.nodes
 		.filter((node) => kindsOf(node, look.extra).includes('silent'))
-		.map(({ nodeId, gateway, zone, heardAtMs }) => ({
-			...{ nodeId, gateway, zone, sinceMs: heardAtMs ?? look.nowMs }
+		.map(({ nodeId, gateway, network, zone, heardAtMs }) => ({
+			...{ nodeId, gateway, network, zone, sinceMs: heardAtMs ?? look.nowMs }
 		}));
 	// A site not heard at all is one notice: its nodes say nothing more.
 	const late = look.lateSinceMs !== null;

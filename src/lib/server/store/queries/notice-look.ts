@@ -60,6 +60,7 @@ export interface TroubledRow {
 	bay: string;
 	zone: string;
 	gateway: string | null;
+	network: string | null;
 	condition: string;
 	also: string;
 	doubtReason: string | null;
@@ -73,6 +74,7 @@ const NODES = `FROM node n
 	JOIN zone z ON z.id = b.zone_id
 	JOIN bay_state s ON s.bay_id = b.id
 	LEFT JOIN node_fast f ON f.node_id = n.id
+	LEFT JOIN node_network w ON w.node_id = n.id
 	WHERE n.site_id = ? AND n.withdrawn_at_ms IS NULL`;
 
 /**
@@ -86,7 +88,7 @@ export async function troubled(
 ): Promise<TroubledRow[]> {
 	return await select<TroubledRow>(
 		sql,
-		`SELECT n.id AS nodeId, b.id AS bayId, b.code AS bay, z.code AS zone, n.gateway, s.condition, s.also,
+		`SELECT n.id AS nodeId, b.id AS bayId, b.code AS bay, z.code AS zone, n.gateway, w.network, s.condition, s.also,
 			s.doubt_reason AS doubtReason, s.doubt_since_ms AS doubtSinceMs, f.heard_at_ms AS heardAtMs,
 			f.battery_mv AS batteryMv
 		 ${NODES}
@@ -99,11 +101,17 @@ export async function troubled(
 	);
 }
 
-/** Placed nodes of a site in all, by gateway label and by zone. */
+/** Placed nodes of a site in all, by gateway label, network address and zone. */
 export async function totals(sql: Sql, siteId: number) {
-	const rows = await select<{ gateway: string | null; zone: string; n: number }>(
+	const rows = await select<{
+		gateway: string | null;
+		network: string | null;
+		zone: string;
+		n: number;
+	}>(
 		sql,
-		`SELECT n.gateway, z.code AS zone, COUNT(*) AS n ${NODES} GROUP BY n.gateway, z.code`,
+		`SELECT n.gateway, w.network, z.code AS zone, COUNT(*) AS n ${NODES}
+		 GROUP BY n.gateway, w.network, z.code`,
 		[siteId]
 	);
 	const by = (label: (row: (typeof rows)[number]) => string | null) => {
@@ -117,6 +125,7 @@ export async function totals(sql: Sql, siteId: number) {
 	return {
 		all: rows.reduce((sum, { n }) => sum + Number(n), 0),
 		gateway: by(({ gateway }) => gateway),
+		network: by(({ network }) => network),
 		zone: by(({ zone }) => zone)
 	};
 }

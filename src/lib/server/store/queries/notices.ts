@@ -223,10 +223,12 @@ export async function stormNodeIds(sql: Sql, siteIds: readonly number[]): Promis
 		 JOIN node n ON n.site_id = t.site_id
 		 JOIN bay b ON b.id = n.bay_id
 		 JOIN zone z ON z.id = b.zone_id
+		 LEFT JOIN node_network w ON w.node_id = n.id
 		 JOIN bay_state s ON s.bay_id = b.id AND FIND_IN_SET('silent', CONCAT(s.condition, ',', s.also))
 		 WHERE t.site_id IN (?) AND t.closed_at_ms IS NULL AND t.kind IN ('silent', 'site_late') AND t.node_id IS NULL
 			AND (t.kind = 'site_late' OR t.about IN (CONCAT('storm:', t.site_id, ':site:'),
-				CONCAT('storm:', t.site_id, ':gateway:', n.gateway), CONCAT('storm:', t.site_id, ':zone:', z.code)))`,
+				CONCAT('storm:', t.site_id, ':gateway:', n.gateway),
+				CONCAT('storm:', t.site_id, ':network:', w.network), CONCAT('storm:', t.site_id, ':zone:', z.code)))`,
 		[siteIds]
 	);
 	return new Set(rows.map(({ id }) => id));

@@ -66,6 +66,16 @@ export const node = mysqlTable(
 	(t) => [index('node_site').on(t.siteId), index('node_bay').on(t.bayId)]
 );
 
+/** From where a node last signed in at the embedded broker: what it may share with others that fall silent. */
+export const nodeNetwork = mysqlTable('node_network', {
+	nodeId: int('node_id')
+		.primaryKey()
+		.references(() => node.id),
+	/** An IPv4 address, or the /64 of an IPv6 one. */
+	network: varchar('network', { length: 45 }).notNull(),
+	sinceMs: atMs('since_ms').notNull()
+});
+
 /** Written with every batch: at most 300 bytes, binary, layout number first. Only the pipeline writes it. */
 export const nodeFast = mysqlTable('node_fast', {
 	nodeId: int('node_id')
