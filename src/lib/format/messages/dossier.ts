@@ -24,6 +24,16 @@ const en = {
 	noEvidence: 'An occupancy record alone is not evidence of an offence.',
 	node: 'Node',
 	noNode: 'No node is placed here.',
+	accept: {
+		ask: 'Accept the reference',
+		title: (code: string) => `Accept the reference of ${code}`,
+		what: (field: string) =>
+			`${field} becomes what the bay is held against. The former reference is kept with its time.`,
+		caution:
+			'A new reference only with the bay seen empty, also after works or new steel. Look from the footway.',
+		seen: 'I see the bay empty now',
+		done: (code: string) => `The reference of ${code} is accepted.`
+	},
 	earth: {
 		title: 'Against the Earth',
 		model: (field: string, dip: string) => `Model ${field}, dip ${dip}°`,
@@ -214,6 +224,16 @@ const de: Widened<typeof en> = {
 	noEvidence: 'Eine Aufzeichnung der Belegung allein beweist keine Ordnungswidrigkeit.',
 	node: 'Knoten',
 	noNode: 'Hier ist kein Knoten eingesetzt.',
+	accept: {
+		ask: 'Bezug annehmen',
+		title: (code) => `Bezug von ${code} annehmen`,
+		what: (field) =>
+			`${field} wird das, woran der Stellplatz gemessen wird. Der frühere Bezug bleibt mit seiner Zeit erhalten.`,
+		caution:
+			'Ein neuer Bezug nur, wenn der Stellplatz leer gesehen wird, auch nach Arbeiten oder neuem Stahl. Schauen Sie vom Gehweg aus.',
+		seen: 'Ich sehe: der Stellplatz ist jetzt leer',
+		done: (code) => `Der Bezug von ${code} ist angenommen.`
+	},
 	earth: {
 		title: 'Gegen das Erdfeld',
 		model: (field, dip) => `Modell ${field}, Neigung ${dip}°`,

@@ -24,6 +24,7 @@ const en = {
 	limits: (drifting: string, refresh: string, hours: number) =>
 		`Drifting from ${drifting}, film refresh due from ${refresh} for ${hours} h, both less two standard errors.`,
 	pairsByRule: 'Pairs by rule:',
+	changeRule: 'Change the rule',
 	pairRule: { never: 'never', calibrate: 'calibrate', diagnose: 'diagnose' },
 	pairRuleSays: {
 		never: '. Causes that only a pair tells stay unexplained.',
@@ -183,6 +184,7 @@ const de: Widened<typeof en> = {
 	limits: (drifting, refresh, hours) =>
 		`Driftend ab ${drifting}, Filmauffrischung fällig ab ${refresh} während ${hours} h, beides abzüglich zweier Standardfehler.`,
 	pairsByRule: 'Paare durch Regel:',
+	changeRule: 'Regel ändern',
 	pairRule: { never: 'nie', calibrate: 'Abgleich', diagnose: 'Diagnose' },
 	pairRuleSays: {
 		never: '. Ursachen, die nur ein Paar sagt, bleiben unerklärt.',
