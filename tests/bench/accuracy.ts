@@ -15,7 +15,7 @@ import { runRound, type Round } from '../accuracy/support/round';
 
 /**
  * npm run bench:accuracy -- [--scenarios hard,echo] [--seed 1 | --fresh] [--rounds 1] [--misses 5] [--alone]
- *                           [--set onPassFactor=1.2,stillSigma=4]
+ *                           [--set onPassFactor=1.2,stillSigma=4] [--site-line]
  *
  * Every line of method.md 11 and their mixture: events matched as section 9 says, Wilson limits, share
  * of time in the right state, confidence as section 4 judges it, and beside them the published methods of
@@ -29,7 +29,8 @@ const { values } = parseArgs({
 		rounds: { type: 'string', default: '1' },
 		misses: { type: 'string', default: '0' },
 		alone: { type: 'boolean', default: false },
-		set: { type: 'string', default: '' }
+		set: { type: 'string', default: '' },
+		'site-line': { type: 'boolean', default: false }
 	}
 });
 
@@ -52,7 +53,11 @@ function bench(name: string): Round[] {
 	if (scenario === undefined) throw new Error(`no scenario is called ${name}`);
 	const seeds = Array.from({ length: Number(values.rounds) }, (_, i) => seed + i);
 	const rounds = seeds.map((one) =>
-		runRound(scenario, one, values.alone ? { params } : { params, published: 'with' })
+		runRound(scenario, one, {
+			params,
+			withSiteLine: values['site-line'],
+			...(values.alone ? {} : { published: 'with' })
+		})
 	);
 	const score = addScores(rounds.map((round) => round.score));
 	print([scoreLine(name, score), ...rounds.flatMap(detailLines)]);

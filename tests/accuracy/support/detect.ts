@@ -4,6 +4,7 @@ import type { ActItem, BayState, HistoryEntry, Outcome } from '$lib/detection/ty
 import { builtInProfile, type SensorProfile } from '$lib/magnetics/sensor-profile';
 import { chain } from '$lib/server/ingest/chain';
 import type { Generated, PlannedAct } from '../../../simulator/generate';
+import type { GeomagneticSeries } from '../../../simulator/geomagnetic';
 import { inEventOrder } from '../../../simulator/items';
 import { pulseItem, rowItem } from './group-items';
 import { inServerOrder } from './server-times';
@@ -39,7 +40,12 @@ const GRACE_S = 900;
 
 export interface DetectOptions {
 	params?: Readonly<Record<string, number>>;
+	/** The site's true variation, told hour by hour as a closed hour would be: what an occupied baseline could follow. */
+	siteLine?: GeomagneticSeries | undefined;
 }
+const HOUR_MS = 3_600_000;
+/** A closed hour is known so long after its end (server/drift/job.ts). */
+const CLOSED_AFTER_MS = 900_000;
 
 /** Runs a generated site through detection, group by group, in event time as the server sees it. */
 export function detect(generated: Generated, options: DetectOptions = {}): Detected {
@@ -123,6 +129,8 @@ function detectGroup(
 		.filter((planned) => nodes.includes(planned.nodeIndex))
 		.sort((a, b) => a.atMs - b.atMs);
 	const profiles = generated.plan.nodes.map((node) => builtInProfile(node.profileCode)!);
+	const line = options.siteLine === undefined ? null : hourlyLine(options.siteLine);
+	let nextHour = 0;
 	let nextAct = 0;
 	let nextLookMs = generated.truth.judgedFromMs + LOOK_EVERY_MS;
 	const startedAt = performance.now();
@@ -134,6 +142,11 @@ function detectGroup(
 		while (nextAct < acts.length && acts[nextAct]!.atMs <= item.atMs) {
 			take(detected, live, advance(group, act(acts[nextAct]!, nextAct + 1)));
 			nextAct++;
+		}
+		for (; line !== null && (line[nextHour]?.atMs ?? Infinity) <= item.atMs; nextHour++) {
+			const { atMs, gMg } = line[nextHour]!;
+			for (const nodeId of nodes)
+				take(detected, live, advance(group, { kind: 'site_line', nodeId, atMs, gMg }));
 		}
 		if (item.atMs >= nextLookMs) {
 			look(generated, group, nodes, nextLookMs, detected);
@@ -148,6 +161,21 @@ function detectGroup(
 	for (const entry of live.values()) {
 		const { bayIndex } = generated.plan.nodes[entry.nodeId]!;
 		detected.entries.push({ ...entry, bayIndex });
+	}
+}
+
+/** Hourly means of the variation (h, e, z), mG, each at the time at which it would be known. */
+function hourlyLine({ startMs, north, east, down }: GeomagneticSeries) {
+	const line: { atMs: number; gMg: [number, number, number] }[] = [];
+	const first = Math.ceil(startMs / HOUR_MS) * HOUR_MS;
+	for (let hourMs = first; ; hourMs += HOUR_MS) {
+		const from = Math.round((hourMs - startMs) / 60_000);
+		if (from + 60 > north.length) return line;
+		const mean = (of: Float64Array) => of.subarray(from, from + 60).reduce((s, v) => s + v, 0) / 60;
+		line.push({
+			atMs: hourMs + HOUR_MS + CLOSED_AFTER_MS,
+			gMg: [mean(north), mean(east), mean(down)]
+		});
 	}
 }
 

@@ -1,5 +1,7 @@
 import { generate, type Generated } from '../../../simulator/generate';
+import type { GeomagneticSeries } from '../../../simulator/geomagnetic';
 import type { Scenario } from '../../../simulator/scenarios/types';
+import { weatherOfSpace } from '../../../simulator/space-weather';
 import type { Facts } from '../../../simulator/truth';
 import { gradePublished } from '../published/run';
 import { judgeLooks, type JudgedLooks } from './confidence';
@@ -31,13 +33,21 @@ export interface Round {
 
 export interface RoundOptions extends DetectOptions {
 	published?: 'with';
+	/** Tells the detector the site's true variation hour by hour. */
+	withSiteLine?: boolean;
+}
+
+/** The same series that the scenario was invented with: it hangs on scenario, seed and times alone. */
+function variationOf({ scenario, truth }: Generated, seed: number): GeomagneticSeries {
+	return weatherOfSpace(scenario, seed, { ...truth, facts: { ...truth.facts } });
 }
 
 export function runRound(scenario: Scenario, seed: number, options: RoundOptions = {}): Round {
 	const startedAt = performance.now();
 	const generated = generate(scenario, seed);
 	const generateMs = performance.now() - startedAt;
-	const detected = detect(generated, options);
+	const siteLine = options.withSiteLine === true ? variationOf(generated, seed) : undefined;
+	const detected = detect(generated, { ...options, siteLine });
 	const { rows, detectMs, voided, fastBytes, slowBytes, pulsesRefused } = detected;
 	return {
 		scenario,
