@@ -149,7 +149,7 @@ test('drift grows, a mail comes, its link is opened, the film refresh is approve
 	await page
 		.getByText(/of 60 still readings/)
 		.first()
-		.waitFor({ timeout: 15_000 });
+		.waitFor({ timeout: 40_000 });
 	await street.obey();
 	// Its clock may run ahead of the server's by the minute that the protocol allows.
 	setHabit(street.state, { periodS: 0.5, deltaMg: 8 }, street.atMs);
