@@ -8,6 +8,7 @@ import {
 	temperaturePart,
 	type Decomposed
 } from './decompose';
+import { unflipped } from './flipped';
 import { frameOf, intoFrame, type Frame } from './frame';
 import {
 	diagnose,
@@ -105,7 +106,8 @@ function voteFromStay({ frame, slope, stay }: NodeDrift, hour: HourRecord): Line
 }
 
 /** What the node says of the site's line in this hour; null when it has nothing to say (method 5.2). */
-export function voteOf(drift: NodeDrift, hour: HourRecord): LineVote | null {
+export function voteOf(drift: NodeDrift, read: HourRecord): LineVote | null {
+	const hour = unflipped(read, drift.reference);
 	if (hour.stay !== null) return voteFromStay(drift, hour);
 	const { reference, frame, slope } = drift;
 	if (frame === null || reference.offsetMg === null || slope === null) return null;
@@ -148,10 +150,11 @@ function learnSlope(drift: NodeDrift, hour: HourRecord, settings: DriftSettings)
  */
 export function closeHour(
 	drift: NodeDrift,
-	hour: HourRecord,
+	read: HourRecord,
 	line: SiteLine,
 	settings: DriftSettings
 ): { drift: NodeDrift; parts: HourParts | null } {
+	const hour = unflipped(read, drift.reference);
 	const geomagneticMg = geomagneticPart(drift.frame, line, drift.reference).partMg;
 	const learned: NodeDrift = {
 		...learnSlope(drift, hour, settings),
