@@ -23,6 +23,11 @@ function quantile(values: readonly number[], q: number): number {
 }
 const pause = async (ms: number) => await new Promise((go) => setTimeout(go, ms));
 
+const scriptMs = async (cdp: CDPSession): Promise<number> => {
+	const { metrics } = await cdp.send('Performance.getMetrics');
+	return (metrics.find(({ name }) => name === 'ScriptDuration')?.value ?? 0) * 1000;
+};
+
 /** Collects what the page says of its own painting, from its first moment. */
 const WATCH = `window.__seen = { lcp: 0, shift: 0, paint: 0, event: 0 };
 const on = (type, take, more) => new PerformanceObserver((list) => list.getEntries().forEach(take)).observe({ type, buffered: true, ...more });
@@ -69,6 +74,8 @@ try {
 		await context.addCookies(cookies);
 		const page = await context.newPage();
 		await page.addInitScript(WATCH);
+		// tsx names functions through this helper, which a page does not have.
+		await page.addInitScript('globalThis.__name = (named) => named');
 		return {
 			page,
 			cdp: await context.newCDPSession(page),
@@ -141,11 +148,6 @@ async function opening(fresh: Fresh, drawn: Drawn, slug: string): Promise<void> 
 		layoutShift: Math.max(...runs.map((s) => s.shift))
 	});
 }
-
-const scriptMs = async (cdp: CDPSession): Promise<number> => {
-	const { metrics } = await cdp.send('Performance.getMetrics');
-	return (metrics.find(({ name }) => name === 'ScriptDuration')?.value ?? 0) * 1000;
-};
 
 async function wide(fresh: Fresh, drawn: Drawn, turn: () => Promise<void>): Promise<void> {
 	const { page, cdp, close } = await fresh();
